@@ -1,0 +1,58 @@
+// Package study decides which conditions of a supply to solve and gathers the worst stress of every
+// part over them into the table that the checks read.
+package study
+
+import "railproof/netlist/quantity"
+
+// Quantity names a stress; the values below are part of the stable machine interface.
+type Quantity string
+
+// The stress quantities.
+const (
+	PeakReverseVoltage Quantity = "peak-reverse-voltage"
+	MeanCurrent        Quantity = "mean-current"
+	RMSCurrent         Quantity = "rms-current"
+	PeakCurrent        Quantity = "peak-current"
+	MinCurrent         Quantity = "min-current"
+	MeanPower          Quantity = "mean-power"
+	SurgeCurrent       Quantity = "surge-current"
+	SurgeI2t           Quantity = "surge-i2t"
+	MaxVoltage         Quantity = "max-voltage"
+	MinVoltage         Quantity = "min-voltage"
+	MeanVoltage        Quantity = "mean-voltage"
+	PeakVoltage        Quantity = "peak-voltage"
+	RippleCurrentRMS   Quantity = "ripple-current-rms"
+	RippleRMS          Quantity = "ripple-rms"
+	RipplePeakToPeak   Quantity = "ripple-peak-to-peak"
+	RippleFactor       Quantity = "ripple-factor"
+	MinDifferential    Quantity = "min-differential"
+	MinHeadroom        Quantity = "min-headroom"
+	MaxInputVoltage    Quantity = "max-input-voltage"
+	MaxOutputCurrent   Quantity = "max-output-current"
+	MaxVCE             Quantity = "max-vce"
+	MaxVDS             Quantity = "max-vds"
+)
+
+// Condition is one solved combination of circumstances.
+type Condition struct {
+	Name  string // in words: "high line, light load"
+	Line  string // low, nominal, high, as-written
+	Load  string // light, full, as-written, or the combination in words
+	Start string // steady or cold
+	// Also lists further circumstances in words: "C1 at -20 %", "ambient 45 degC".
+	Also []string
+}
+
+// Stress is what one element is subjected to in its worst condition.
+type Stress struct {
+	Element   string // full path, or "node:NAME"
+	Quantity  Quantity
+	Value     float64 // SI
+	Unit      quantity.Unit
+	Error     float64 // numerical error estimate, same unit, >= 0
+	Phase     float64 // s into the period (or from switch-on) at which an extremum occurs; NaN if none
+	Condition Condition
+	// Unproven says why the value proves nothing (no convergence, unknown element in the island,
+	// source impedance unknown); empty when it is good.
+	Unproven string
+}
