@@ -1,0 +1,132 @@
+package solver
+
+import "math"
+
+// Law is the nonlinear characteristic of a device with one or more ports.
+// Implementations keep no state: the currents depend on the present port voltages and the time only.
+type Law interface {
+	// Evaluate writes the port currents i[k] (A, into the first node of the port; or, for a port that
+	// puts out a voltage, that voltage) and the partial derivatives g[k*len(v)+j] = di[k]/dv[j].
+	Evaluate(v []float64, t float64, i, g []float64)
+	// Limit moves the proposed port voltages v towards old where the law is too steep for Newton's
+	// step to be trusted, and reports whether it moved any.
+	Limit(v, old []float64) bool
+}
+
+// gmin is the conductance across every junction, S (SPICE convention).
+const gmin = 1e-12
+
+// stampGuess is the conductance that stands in for a junction in the linear part, S. Its only effect is on
+// the conditioning of the reduced equations: it keeps nodes that hang on junctions alone defined.
+const stampGuess = 1e-6
+
+// Diode is a junction diode: i = IS (exp(v/(N VT)) - 1) + gmin v, and -IBV exp(-(v+BV)/(NBV VT)) beyond the
+// breakdown voltage BV (0: none). The series resistance RS is stamped by AddDiode.
+type Diode struct {
+	IS, N, RS    float64
+	BV, IBV, NBV float64
+	VT           float64 // thermal voltage, V
+}
+
+// AddDiode adds a diode from anode to cathode.
+func (n *Network) AddDiode(anode, cathode Node, d Diode) Device {
+	inner := anode
+	if d.RS > 0 {
+		inner = n.internalNode()
+		n.AddResistor(anode, inner, d.RS)
+	}
+	if d.NBV == 0 {
+		d.NBV = 1
+	}
+	j := &junction{Diode: d}
+	j.scale, j.knee = d.N*d.VT, criticalVoltage(d.IS, d.N*d.VT)
+	if d.BV > 0 {
+		j.reverseScale, j.reverseKnee = d.NBV*d.VT, criticalVoltage(d.IBV, d.NBV*d.VT)
+	}
+	return n.add(device{
+		kind: nonlinear, branches: []Branch{{anode, cathode}}, law: j,
+		ports: []port{{sense: Branch{inner, cathode}, guess: stampGuess}},
+	})
+}
+
+type junction struct {
+	Diode
+	scale, knee               float64
+	reverseScale, reverseKnee float64
+}
+
+// criticalVoltage is the junction voltage of greatest curvature (Nagel, UCB/ERL M520, 1975).
+func criticalVoltage(is, scale float64) float64 { return scale * math.Log(scale/(math.Sqrt2*is)) }
+
+// negligible is how many thermal voltages below zero an exponential counts as zero beside 1: exp(-40) = 4e-18.
+const negligible = -40
+
+func (d *junction) Evaluate(v []float64, _ float64, i, g []float64) {
+	x := v[0] / d.scale
+	current, slope := -d.IS, 0.0
+	if x > negligible {
+		e := d.IS * math.Exp(x)
+		current, slope = e-d.IS, e/d.scale
+	}
+	if d.BV > 0 {
+		if y := -(v[0] + d.BV) / d.reverseScale; y > negligible {
+			e := d.IBV * math.Exp(y)
+			current -= e
+			slope += e / d.reverseScale
+		}
+	}
+	i[0], g[0] = current+gmin*v[0], slope+gmin
+}
+
+func (d *junction) Limit(v, old []float64) bool {
+	if limited, moved := limitJunction(v[0], old[0], d.scale, d.knee); moved {
+		v[0] = limited
+		return true
+	}
+	if d.BV > 0 {
+		if limited, moved := limitJunction(-(v[0] + d.BV), -(old[0] + d.BV), d.reverseScale, d.reverseKnee); moved {
+			v[0] = -limited - d.BV
+			return true
+		}
+	}
+	return false
+}
+
+// limitJunction limits a Newton step on an exponential junction by linearising the logarithm of its current
+// beyond the knee (the rule of Nagel's thesis).
+func limitJunction(v, old, scale, knee float64) (float64, bool) {
+	if v <= knee || math.Abs(v-old) <= 2*scale {
+		return v, false
+	}
+	if old <= 0 {
+		if start := knee; v > start {
+			return start, true
+		}
+		return v, false
+	}
+	arg := 1 + (v-old)/scale
+	if arg <= 0 {
+		return knee, true
+	}
+	return old + scale*math.Log(arg), true
+}
+
+// smoothMin is a smooth minimum of a and b with corner width w: it lies below both by at most w/2.
+// The derivatives by a and b are returned too.
+func smoothMin(a, b, w float64) (m, da, db float64) {
+	d := a - b
+	r := math.Sqrt(d*d + w*w)
+	m = 0.5 * (a + b - r)
+	da = 0.5 * (1 - d/r)
+	return m, da, 1 - da
+}
+
+// smoothPositive is a smooth max(x, 0) with corner width w and its derivative.
+func smoothPositive(x, w float64) (y, dy float64) {
+	r := math.Sqrt(x*x + w*w)
+	if x > 0 {
+		return 0.5 * (x + r), 0.5 * (1 + x/r)
+	}
+	// Avoid cancellation: (x + r)/2 = w^2 / (2 (r - x)).
+	return 0.5 * w * w / (r - x), 0.5 * w * w / (r * (r - x))
+}

@@ -1,0 +1,141 @@
+package solver
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"math"
+
+	"gonum.org/v1/gonum/mat"
+)
+
+// ErrUnsettled says that no periodic steady state was found within the allowed number of periods.
+var ErrUnsettled = errors.New("no periodic steady state was found")
+
+const (
+	plainPeriods  = 2   // integrated before Newton's method starts
+	maxPeriods    = 600 // integrated in all before the search is given up
+	stuckPeriods  = 12  // plain periods after a Newton step that made things worse
+	relativeState = 1e-7
+	absoluteState = 1e-8 // in units of stateScale
+	// neutral: directions in which a period changes the state by less than this fraction are left where
+	// they are (an isolated node between capacitors; the direct current in a winding without resistance).
+	neutral = 1e-11
+)
+
+// search is the state of a periodicity search.
+type search struct {
+	m       *march
+	steps   int
+	scale   []float64
+	periods int // integrated so far
+}
+
+// settle finds the state from which a period returns to itself, starting at x (overwritten).
+// It returns the number of periods integrated.
+func (s *search) settle(ctx context.Context, x []float64, plain int) error {
+	n := len(x)
+	residual := make([]float64, n)
+	best, worse := math.Inf(1), 0
+	for s.periods < maxPeriods {
+		track := plain <= 0
+		copy(s.m.x, x)
+		if err := s.m.period(ctx, 0, s.steps, track); err != nil {
+			return err
+		}
+		s.periods++
+		norm := 0.0
+		for k := range x {
+			residual[k] = s.m.x[k] - x[k]
+			norm = math.Max(norm, math.Abs(residual[k])/(s.scale[k]*absoluteState+relativeState*math.Abs(x[k])))
+		}
+		if n == 0 {
+			return nil
+		}
+		if math.IsNaN(norm) {
+			return ErrUnsettled
+		}
+		if !track {
+			plain--
+			copy(x, s.m.x)
+			continue
+		}
+		if norm > 2*best {
+			if worse++; worse > 3 {
+				// Newton's method does not contract here: let the circuit settle by itself for a while.
+				plain, worse, best = stuckPeriods, 0, math.Inf(1)
+				copy(x, s.m.x)
+				continue
+			}
+		} else {
+			best, worse = math.Min(best, norm), 0
+		}
+		step, err := s.newton(residual)
+		if err != nil {
+			copy(x, s.m.x)
+			plain = 1
+			continue
+		}
+		size := 0.0
+		for k := range x {
+			size = math.Max(size, math.Abs(step[k])/(s.scale[k]*absoluteState+relativeState*math.Abs(x[k])))
+			x[k] += step[k]
+		}
+		if size < 1 {
+			return nil
+		}
+	}
+	return fmt.Errorf("%w in %d periods", ErrUnsettled, s.periods)
+}
+
+// newton solves (I - flow) step = residual in the scaled states; neutral directions get no step.
+func (s *search) newton(residual []float64) ([]float64, error) {
+	n := len(residual)
+	a := mat.NewDense(n, n, nil)
+	for r := range n {
+		for c := range n {
+			v := -s.m.flow.data[r*n+c] * s.scale[c] / s.scale[r]
+			if r == c {
+				v++
+			}
+			a.Set(r, c, v)
+		}
+	}
+	b := mat.NewVecDense(n, nil)
+	for k := range n {
+		b.SetVec(k, residual[k]/s.scale[k])
+	}
+	var step mat.VecDense
+	if n == 1 {
+		if d := a.At(0, 0); math.Abs(d) > neutral {
+			return []float64{residual[0] / d}, nil
+		}
+		return []float64{0}, nil
+	}
+	var lu mat.LU
+	lu.Factorize(a)
+	if lu.Cond() > 1/(neutral*1e3) {
+		var svd mat.SVD
+		if !svd.Factorize(a, mat.SVDThin) {
+			return nil, ErrUnsettled
+		}
+		values := svd.Values(nil)
+		rank := 0
+		for _, v := range values {
+			if v > neutral*math.Max(1, values[0]) {
+				rank++
+			}
+		}
+		if rank == 0 {
+			return make([]float64, n), nil
+		}
+		svd.SolveVecTo(&step, b, rank)
+	} else if err := lu.SolveVecTo(&step, false, b); err != nil {
+		return nil, err
+	}
+	out := make([]float64, n)
+	for k := range out {
+		out[k] = step.AtVec(k) * s.scale[k]
+	}
+	return out, nil
+}

@@ -1,0 +1,260 @@
+package solver
+
+import (
+	"errors"
+	"math"
+)
+
+// ErrNewton says that the nonlinear equations of one time step could not be solved.
+var ErrNewton = errors.New("the nonlinear equations of a time step did not converge")
+
+const (
+	maxNewton = 200 // iterations of one stage before it is given up
+	// relativeCurrent and absoluteCurrent bound the error of the port currents against the last
+	// linearisation, absoluteVoltage what that error may do to the port voltages.
+	relativeCurrent = 1e-9
+	absoluteCurrent = 1e-12 // A
+	absoluteVoltage = 1e-10 // V
+)
+
+// stage solves one implicit stage after another. It owns all storage, so that stepping allocates nothing.
+type stage struct {
+	r *reduced
+
+	v     []float64 // port voltages, the solution of the last stage
+	w     []float64 // port outputs beyond the stand-in
+	i, g  []float64 // port outputs and, law by law, their derivatives
+	slope dense     // dw/dv, block diagonal
+	open  []float64 // port voltages with all w zero
+	dv    []float64
+	next  []float64 // proposed port voltages
+	lin   []float64 // outputs predicted by the linearisation
+
+	jac      *factor   // I - k slope
+	jacSlope []float64 // the slope jac was factorised for
+	jacValid bool
+	flow     dense // d state' / d state for jacSlope
+	flowOK   bool
+	column   []float64
+
+	iterations int
+}
+
+func newStage(r *reduced) *stage {
+	d, m := len(r.sys.ports), r.sys.states()
+	p := r.sys.maxPorts
+	return &stage{
+		r: r,
+		v: make([]float64, d), w: make([]float64, d), i: make([]float64, p), g: make([]float64, p*p),
+		slope: newDense(d, d), open: make([]float64, d), dv: make([]float64, d), next: make([]float64, d),
+		lin: make([]float64, d), jac: newFactor(d), jacSlope: make([]float64, d*d), flow: newDense(m, m),
+		column: make([]float64, d),
+	}
+}
+
+// evaluate computes w and its derivatives at port voltages v.
+func (st *stage) evaluate(v []float64, t float64) {
+	d := len(v)
+	for _, l := range st.r.sys.laws {
+		i, g := st.i[:l.count], st.g[:l.count*l.count]
+		l.law.Evaluate(v[l.first:l.first+l.count], t, i, g)
+		for a := range l.count {
+			p := l.first + a
+			guess := st.r.sys.ports[p].guess
+			st.w[p] = i[a] - guess*v[p]
+			row := st.slope.data[p*d+l.first : p*d+l.first+l.count]
+			copy(row, g[a*l.count:(a+1)*l.count])
+			row[a] -= guess
+		}
+	}
+}
+
+// stale reports whether the factorised Jacobian differs from the present slopes by more than counts.
+func (st *stage) stale(tolerance float64) bool {
+	if !st.jacValid {
+		return true
+	}
+	d := len(st.v)
+	for _, l := range st.r.sys.laws {
+		for p := l.first; p < l.first+l.count; p++ {
+			for q := l.first; q < l.first+l.count; q++ {
+				a, b := st.slope.data[p*d+q], st.jacSlope[p*d+q]
+				if a == b {
+					continue
+				}
+				guess := st.r.sys.ports[p].guess
+				if math.Abs(a-b) > tolerance*(math.Min(math.Abs(a+guess), math.Abs(b+guess))+gmin) {
+					return true
+				}
+			}
+		}
+	}
+	return false
+}
+
+func (st *stage) factorise() error {
+	d := len(st.v)
+	k := st.r.k.data
+	a := st.jac.lu
+	for row := range d {
+		out := a[row*d : row*d+d]
+		for c := range out {
+			out[c] = 0
+		}
+		out[row] = 1
+		for _, l := range st.r.sys.laws {
+			for p := l.first; p < l.first+l.count; p++ {
+				kv := k[row*d+p]
+				if kv == 0 {
+					continue
+				}
+				for c := l.first; c < l.first+l.count; c++ {
+					out[c] -= kv * st.slope.data[p*d+c]
+				}
+			}
+		}
+	}
+	copy(st.jacSlope, st.slope.data)
+	st.jacValid, st.flowOK = false, false
+	if err := st.jac.factorise(); err != nil {
+		return err
+	}
+	st.jacValid = true
+	return nil
+}
+
+// solve finds the port voltages of a stage with predicted states x and inputs u at time t, starting from the
+// last solution. Afterwards v, w and slope hold the solution.
+func (st *stage) solve(x, u []float64, t float64) error {
+	for j := range st.open {
+		st.open[j] = 0
+	}
+	st.r.px.addTo(st.open, x)
+	st.r.pu.addTo(st.open, u)
+	if len(st.v) == 0 {
+		return nil
+	}
+	st.evaluate(st.v, t)
+	for iteration := range maxNewton {
+		// Residual of v = open + k w at the present v.
+		for j := range st.dv {
+			st.dv[j] = st.open[j] - st.v[j]
+		}
+		st.r.k.addTo(st.dv, st.w)
+		// A Jacobian that is off by a part in a thousand still contracts by that factor.
+		tolerance := 1e-3
+		if iteration > 8 {
+			tolerance = 0
+		}
+		if st.stale(tolerance) {
+			if err := st.factorise(); err != nil {
+				return err
+			}
+		}
+		st.jac.solve(st.dv)
+		for j := range st.v {
+			st.next[j] = st.v[j] + st.dv[j]
+			if math.IsNaN(st.next[j]) || math.IsInf(st.next[j], 0) {
+				return ErrNewton
+			}
+		}
+		limited := false
+		for _, l := range st.r.sys.laws {
+			if l.law.Limit(st.next[l.first:l.first+l.count], st.v[l.first:l.first+l.count]) {
+				limited = true
+			}
+		}
+		st.iterations++
+		if limited {
+			copy(st.v, st.next)
+			st.evaluate(st.v, t)
+			continue
+		}
+		// Outputs that the linearisation predicts at the new point.
+		d := len(st.v)
+		for _, l := range st.r.sys.laws {
+			for p := l.first; p < l.first+l.count; p++ {
+				sum := st.w[p]
+				for q := l.first; q < l.first+l.count; q++ {
+					sum += st.jacSlope[p*d+q] * st.dv[q]
+				}
+				st.lin[p] = sum
+			}
+		}
+		copy(st.v, st.next)
+		st.evaluate(st.v, t)
+		done := true
+		for p := range st.w {
+			port := &st.r.sys.ports[p]
+			if port.output == outNone {
+				continue
+			}
+			e := math.Abs(st.w[p] - st.lin[p])
+			size := math.Abs(st.w[p] + port.guess*st.v[p])
+			if e > relativeCurrent*size+absoluteCurrent && e*st.r.impedance[p] > absoluteVoltage+1e-12*math.Abs(st.v[p]) {
+				done = false
+				break
+			}
+		}
+		if done {
+			return nil
+		}
+	}
+	return ErrNewton
+}
+
+// states writes the states after the stage with predicted states x and inputs u.
+func (st *stage) states(out, x, u []float64) {
+	for k := range out {
+		out[k] = 0
+	}
+	st.r.sx.addTo(out, x)
+	st.r.su.addTo(out, u)
+	st.r.sw.addTo(out, st.w)
+}
+
+// unknowns writes all node potentials and branch currents after the stage.
+func (st *stage) unknowns(out, x, u []float64) {
+	for k := range out {
+		out[k] = 0
+	}
+	st.r.zx.addTo(out, x)
+	st.r.zu.addTo(out, u)
+	st.r.zw.addTo(out, st.w)
+}
+
+// transition returns the derivative of the states after the stage by the predicted states, m x m.
+func (st *stage) transition() (dense, error) {
+	if st.stale(1e-6) {
+		if err := st.factorise(); err != nil {
+			return dense{}, err
+		}
+	}
+	if st.flowOK {
+		return st.flow, nil
+	}
+	m, d := st.r.sys.states(), len(st.v)
+	copy(st.flow.data, st.r.sx.data)
+	for c := range m {
+		for j := range d {
+			st.column[j] = st.r.px.data[j*m+c]
+		}
+		st.jac.solve(st.column)
+		for _, l := range st.r.sys.laws {
+			for p := l.first; p < l.first+l.count; p++ {
+				dw := 0.0
+				for q := l.first; q < l.first+l.count; q++ {
+					dw += st.jacSlope[p*d+q] * st.column[q]
+				}
+				if dw == 0 {
+					continue
+				}
+				for k := range m {
+					st.flow.data[k*m+c] += st.r.sw.data[k*d+p] * dw
+				}
+			}
+		}
+	}
+	st.flowOK = true
+	return st.flow, nil
+}

@@ -1,0 +1,194 @@
+package solver
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"math"
+)
+
+// Options bounds the effort of a solution. The zero value asks for the defaults.
+type Options struct {
+	Steps    int // steps a period of the first grid; default 128
+	MaxSteps int // steps a period at which refinement ends; default 8192
+	// Start holds the states at the start of the period of a neighbouring solution (Solution.States), from
+	// which the search may start; nil or of another length: ignored.
+	Start []float64
+}
+
+const (
+	defaultSteps    = 128
+	defaultMaxSteps = 8192
+	// VoltageTolerance and CurrentTolerance are the relative changes between two grids below which a
+	// solution counts as accurate: of voltages and mean values, and of peak and RMS currents.
+	VoltageTolerance = 1e-3
+	CurrentTolerance = 5e-3
+	// PowerTolerance bounds the mean power into capacitors and inductors, which is zero in the periodic
+	// steady state, against the power of the sources.
+	PowerTolerance = 1e-4
+	powerFloor     = 1e-9 // W; below this the power balance is not judged
+	voltageFloor   = 1e-6 // V
+	currentFloor   = 1e-9 // A
+)
+
+// ErrInaccurate says that two grids still differ by more than the tolerance at the largest number of steps.
+var ErrInaccurate = errors.New("the solution changes with the step beyond the tolerance")
+
+// Solution is a periodic steady state or operating point on two grids.
+type Solution struct {
+	Fine, Coarse *Trajectory // one period at N and N/2 steps; the same for an operating point
+	States       []float64   // at the start of the period
+	Periods      int         // integrated in all
+	Iterations   int         // of the port equations, in all
+	Imbalance    float64     // |mean power into C and L| / source power; see PowerTolerance
+}
+
+// Measure evaluates a statistic on both grids: the value on the fine one and the difference to the coarse
+// one as its numerical error.
+func (s *Solution) Measure(statistic func(tr *Trajectory) float64) (value, err float64) {
+	value = statistic(s.Fine)
+	if s.Coarse == nil || s.Coarse == s.Fine {
+		return value, 0
+	}
+	return value, math.Abs(value - statistic(s.Coarse))
+}
+
+// SteadyState finds the periodic steady state of the network, or its operating point if it has no period.
+// The step is halved until the results of two grids agree to the tolerances.
+//
+// Errors: ErrSingular, ErrNewton, ErrUnsettled and ErrInaccurate, wrapped with the place.
+// With ErrInaccurate the solution is returned too.
+func SteadyState(ctx context.Context, n *Network, o Options) (*Solution, error) {
+	if n.Period == 0 {
+		return OperatingPoint(ctx, n)
+	}
+	if o.Steps == 0 {
+		o.Steps = defaultSteps
+	}
+	if o.MaxSteps == 0 {
+		o.MaxSteps = defaultMaxSteps
+	}
+	sys, err := newSystem(n)
+	if err != nil {
+		return nil, err
+	}
+	x := make([]float64, sys.states())
+	plain := plainPeriods
+	if len(o.Start) == len(x) {
+		copy(x, o.Start)
+		plain = 0
+	}
+	sol := &Solution{}
+	for steps := o.Steps; steps <= o.MaxSteps; steps *= 2 {
+		tr, err := sol.grid(ctx, sys, x, steps, plain)
+		if err != nil {
+			if (errors.Is(err, ErrNewton) || errors.Is(err, ErrUnsettled)) && steps*2 <= o.MaxSteps && sol.Fine == nil && steps < 4*o.Steps {
+				// A finer step may carry Newton's method over what a coarse one could not.
+				for k := range x {
+					x[k] = 0
+				}
+				plain = plainPeriods
+				continue
+			}
+			return nil, err
+		}
+		sol.Coarse, sol.Fine = sol.Fine, tr
+		plain = 0
+		if sol.Coarse == nil {
+			continue
+		}
+		sol.States = append(sol.States[:0], x...)
+		sol.Imbalance = imbalance(n, sol.Fine)
+		if sol.Imbalance <= PowerTolerance && sol.agree(n) {
+			return sol, nil
+		}
+	}
+	if sol.Coarse == nil {
+		return nil, fmt.Errorf("%w: only one grid could be solved", ErrInaccurate)
+	}
+	return sol, fmt.Errorf("%w at %d steps a period (power imbalance %.2g)", ErrInaccurate, sol.Fine.Samples()-1, sol.Imbalance)
+}
+
+// grid solves on one grid, from state x, which it moves to the solution.
+func (s *Solution) grid(ctx context.Context, sys *system, x []float64, steps, plain int) (*Trajectory, error) {
+	m, err := newMarch(sys, sys.net.Period/float64(steps))
+	if err != nil {
+		return nil, err
+	}
+	find := &search{m: m, steps: steps, scale: sys.stateScale()}
+	err = find.settle(ctx, x, plain)
+	s.Periods += find.periods
+	s.Iterations += m.stage.iterations
+	if err != nil {
+		return nil, err
+	}
+	tr, err := m.record(ctx, 0, steps, false)
+	if err != nil {
+		return nil, err
+	}
+	copy(x, m.x)
+	tr.Periodic = true
+	s.Periods++
+	return tr, nil
+}
+
+// agree compares the branch voltages and currents of the two grids.
+func (s *Solution) agree(n *Network) bool {
+	for d := range n.devices {
+		for k := range n.devices[d].branches {
+			v1, i1, p1 := s.Fine.branchStats(Device(d), k)
+			v0, i0, p0 := s.Coarse.branchStats(Device(d), k)
+			size := math.Max(math.Abs(v1.Max.Value), math.Abs(v1.Min.Value))
+			tol := VoltageTolerance*size + voltageFloor
+			if differ(v1.Max.Value, v0.Max.Value, tol) || differ(v1.Min.Value, v0.Min.Value, tol) || differ(v1.Mean, v0.Mean, tol) {
+				return false
+			}
+			peak := math.Max(math.Abs(i1.Max.Value), math.Abs(i1.Min.Value))
+			if differ(i1.Max.Value, i0.Max.Value, CurrentTolerance*peak+currentFloor) ||
+				differ(i1.Min.Value, i0.Min.Value, CurrentTolerance*peak+currentFloor) ||
+				differ(i1.RMS, i0.RMS, CurrentTolerance*i1.RMS+currentFloor) ||
+				differ(i1.Mean, i0.Mean, VoltageTolerance*i1.RMS+currentFloor) {
+				return false
+			}
+			if differ(p1, p0, VoltageTolerance*v1.RMS*i1.RMS+powerFloor) {
+				return false
+			}
+		}
+	}
+	return true
+}
+
+func differ(a, b, tolerance float64) bool { return !(math.Abs(a-b) <= tolerance) }
+
+// branchStats summarises the voltage and current of a branch and its mean power.
+func (tr *Trajectory) branchStats(d Device, k int) (v, i Stats, power float64) {
+	b, current := tr.BranchOf(d, k)
+	voltage := func(n int) float64 { return tr.Voltage(b, n) }
+	v = tr.Summary(voltage)
+	i = tr.Summary(func(n int) float64 { return current[n] })
+	return v, i, tr.Mean(func(n int) float64 { return voltage(n) * current[n] })
+}
+
+// imbalance is the mean power into the energy stores over the power that the sources deliver.
+func imbalance(n *Network, tr *Trajectory) float64 {
+	var stored, delivered float64
+	for d := range n.devices {
+		kind := n.devices[d].kind
+		for k := range n.devices[d].branches {
+			b, current := tr.BranchOf(Device(d), k)
+			power := tr.Mean(func(s int) float64 { return tr.Voltage(b, s) * current[s] })
+			switch kind {
+			case capacitor, inductor:
+				stored += power
+			default:
+				if power < 0 {
+					delivered -= power
+				}
+			}
+		}
+	}
+	if math.Abs(stored) < powerFloor {
+		return 0
+	}
+	return math.Abs(stored) / math.Max(delivered, powerFloor)
+}

@@ -1,0 +1,204 @@
+package solver
+
+import (
+	"context"
+	"math"
+)
+
+// Trajectory is a solution sampled at uniform times.
+type Trajectory struct {
+	Start, Step float64     // s
+	Periodic    bool        // the last sample is the first of the next period
+	Nodes       [][]float64 // Nodes[n][k]: potential of node n at Start + k Step, V
+	Currents    [][]float64 // Currents[c][k]: current of a branch, A; see Network.Branch
+	branches    []Branch
+	offset      []int // device -> first branch
+}
+
+// Samples returns the number of samples, both ends of the interval included.
+func (tr *Trajectory) Samples() int {
+	if len(tr.Nodes) == 0 {
+		return 0
+	}
+	return len(tr.Nodes[0])
+}
+
+// Voltage returns the voltage of b at sample k.
+func (tr *Trajectory) Voltage(b Branch, k int) float64 { return tr.Nodes[b.A][k] - tr.Nodes[b.B][k] }
+
+// BranchOf returns the branch and the current samples of branch k of device d.
+func (tr *Trajectory) BranchOf(d Device, k int) (Branch, []float64) {
+	c := tr.offset[d] + k
+	return tr.branches[c], tr.Currents[c]
+}
+
+func newTrajectory(n *Network, start, step float64, samples int) *Trajectory {
+	tr := &Trajectory{Start: start, Step: step, offset: make([]int, len(n.devices))}
+	for k := range n.devices {
+		tr.offset[k] = len(tr.branches)
+		tr.branches = append(tr.branches, n.devices[k].branches...)
+	}
+	signals := n.nodes + len(tr.branches)
+	block := make([]float64, signals*samples)
+	cut := func() []float64 {
+		s := block[:samples:samples]
+		block = block[samples:]
+		return s
+	}
+	for range n.nodes {
+		tr.Nodes = append(tr.Nodes, cut())
+	}
+	for range tr.branches {
+		tr.Currents = append(tr.Currents, cut())
+	}
+	return tr
+}
+
+// record integrates steps steps from state a.x at time start, with every unknown sampled at each step.
+// The first sample is the state at start as seen by the last stage before it, so a.stage must stand at start
+// (after a period that ended there); for a cold start it is taken from the first step instead.
+func (a *march) record(ctx context.Context, start float64, steps int, cold bool) (*Trajectory, error) {
+	tr := newTrajectory(a.sys.net, start, a.step, steps+1)
+	z := make([]float64, a.sys.unknowns)
+	if !cold {
+		a.sample(tr, 0, z)
+	}
+	for k := range steps {
+		if k&63 == 0 && ctx.Err() != nil {
+			return nil, ctx.Err()
+		}
+		if err := a.advance(start+float64(k)*a.step, false); err != nil {
+			return nil, err
+		}
+		a.sample(tr, k+1, z)
+	}
+	return tr, nil
+}
+
+// sample writes the solution of the last stage into column k.
+func (a *march) sample(tr *Trajectory, k int, z []float64) {
+	st, s := a.stage, a.sys
+	st.unknowns(z, a.pred, a.u)
+	for n := 1; n < s.net.nodes; n++ {
+		tr.Nodes[n][k] = z[n-1]
+	}
+	capacitorIndex, sourceIndex, portIndex := 0, 0, 0
+	for d := range s.net.devices {
+		dev := &s.net.devices[d]
+		c := tr.offset[d]
+		switch dev.kind {
+		case resistor:
+			if dev.value != 0 {
+				b := dev.branches[0]
+				tr.Currents[c][k] = (at(z, b.A) - at(z, b.B)) / dev.value
+			} else {
+				tr.Currents[c][k] = z[s.current[d]]
+			}
+		case capacitor:
+			b := dev.branches[0]
+			tr.Currents[c][k] = dev.value / st.r.sigma * (at(z, b.A) - at(z, b.B) - a.pred[capacitorIndex])
+			capacitorIndex++
+		case currentSource:
+			tr.Currents[c][k] = a.u[sourceIndex]
+			sourceIndex++
+		case voltageSource:
+			tr.Currents[c][k] = z[s.current[d]]
+			sourceIndex++
+		case inductor, voltageControlledVoltage, currentControlledVoltage:
+			tr.Currents[c][k] = z[s.current[d]]
+		case voltageControlledCurrent:
+			tr.Currents[c][k] = dev.value * (at(z, dev.control.A) - at(z, dev.control.B))
+		case currentControlledCurrent:
+			tr.Currents[c][k] = dev.value * z[s.current[dev.partner]]
+		case nonlinear:
+			for p := range dev.branches {
+				port := &dev.ports[p]
+				switch port.output {
+				case outVoltage:
+					tr.Currents[c+p][k] = z[s.current[d]]
+				case outCurrent:
+					j := portIndex + p
+					tr.Currents[c+p][k] = st.w[j] + port.guess*st.v[j]
+				}
+			}
+			portIndex += len(dev.ports)
+		}
+	}
+}
+
+// Extreme is a largest or smallest value and when it occurs.
+type Extreme struct{ Value, At float64 }
+
+// Stats summarises a sampled signal over its interval.
+type Stats struct {
+	Max, Min  Extreme
+	Mean, RMS float64
+}
+
+// Summary computes the statistics of a signal; value(k) is its sample k. Means are by the trapezoidal rule,
+// which for a periodic signal is also the most accurate; extrema inside the interval are refined by the
+// parabola through the three samples around them.
+func (tr *Trajectory) Summary(value func(k int) float64) Stats {
+	n := tr.Samples()
+	st := Stats{Max: Extreme{math.Inf(-1), 0}, Min: Extreme{math.Inf(1), 0}}
+	maxAt, minAt := 0, 0
+	var sum, square float64
+	for k := range n {
+		v := value(k)
+		if v > st.Max.Value {
+			st.Max.Value, maxAt = v, k
+		}
+		if v < st.Min.Value {
+			st.Min.Value, minAt = v, k
+		}
+		weight := 1.0
+		if k == 0 || k == n-1 {
+			weight = 0.5
+		}
+		sum += weight * v
+		square += weight * v * v
+	}
+	if n > 1 {
+		sum /= float64(n - 1)
+		square /= float64(n - 1)
+	}
+	st.Mean, st.RMS = sum, math.Sqrt(square)
+	st.Max = tr.refine(value, maxAt)
+	st.Min = tr.refine(value, minAt)
+	return st
+}
+
+// refine returns the vertex of the parabola through samples k-1, k, k+1 where k holds an extremum.
+func (tr *Trajectory) refine(value func(k int) float64, k int) Extreme {
+	e := Extreme{value(k), tr.Start + float64(k)*tr.Step}
+	before, after, last := k-1, k+1, tr.Samples()-1
+	if last < 2 {
+		return e
+	}
+	if k == 0 || k == last {
+		if !tr.Periodic {
+			return e
+		}
+		before, after = last-1, 1
+	}
+	a, b, c := value(before), value(k), value(after)
+	curve := a - 2*b + c
+	if curve == 0 {
+		return e
+	}
+	shift := 0.5 * (a - c) / curve
+	if math.Abs(shift) > 1 {
+		return e
+	}
+	return Extreme{b - 0.25*(a-c)*shift, e.At + shift*tr.Step}
+}
+
+// Mean returns the mean of a signal over the interval, by the trapezoidal rule.
+func (tr *Trajectory) Mean(value func(k int) float64) float64 {
+	n := tr.Samples()
+	sum := 0.5 * (value(0) + value(n-1))
+	for k := 1; k < n-1; k++ {
+		sum += value(k)
+	}
+	return sum / float64(n-1)
+}
