@@ -1,0 +1,161 @@
+package parts
+
+import (
+	"strings"
+	"testing"
+
+	"railproof/netlist"
+)
+
+// Names as exporters, libraries and people write them, and the row that each means.
+func TestFindAcceptsTradeNames(t *testing.T) {
+	accepted := map[string]string{
+		// rectifiers
+		"1N4007": "1N4007", "1n4007": "1N4007", "D1N4007": "1N4007", "D1n4001rl": "1N4001", "DI_1N4007": "1N4007",
+		"1N4007G": "1N4007", "1N4007GP-E3/54": "1N4007", "1N4007-T": "1N4007", "1N4007_DO41": "1N4007", "X_1N4007": "1N4007",
+		"__1N4007": "1N4007", "DIODE_1N4002": "1N4002", "XD_1N4007": "", "1N4148W-7-F": "1N4148", "1N4148WS": "1N4148", "1N914B": "1N914",
+		"1N5822": "1N5822", "1N5819HW": "1N5819", "1N5404-G": "1N5404", "UF4007": "UF4007", "DUF4004": "UF4004", "MUR120RLG": "MUR120",
+		"BYV27-200": "BYV27-200", "BYV27_200": "BYV27-200", "BYV27200": "BYV27-200", "BYV26C-TAP": "BYV26C", "BY255": "BY255",
+		"S1M": "S1M", "S1M-13-F": "S1M", "US1G": "US1G", "SS14": "SS14", "P600J": "P600J", "6A10": "P600M", "6A05G": "P600A",
+		// bridges
+		"KBP307": "KBP307", "KBP307G": "KBP307", "KBPC3510": "KBPC3510", "KBPC3510W": "KBPC3510", "GBU8J": "GBU8J", "GBU8J-BP": "GBU8J",
+		"DB107S": "DB107", "W04M": "W04", "W10G": "W10", "2KBP06M": "2KBP06", "KBP206G": "2KBP06", "KBP2005": "2KBP005", "BR_DB107": "DB107", "GBPC2510W": "GBPC2510",
+		// zeners
+		"1N4734A": "1N4734A", "1N4734A-T": "1N4734A", "DI_1N4734A": "1N4734A", "D1N4734A": "1N4734A", "1N4734ATR": "1N4734A", "1N4734": "1N4734",
+		"1N4734G": "1N4734", "1N4734CTR": "1N4734C", "1N4764A": "1N4764A", "1N750": "1N750", "1N750A": "1N750A", "D1N750": "1N750", "1N5231B": "1N5231B", "1N5231BTR": "1N5231B",
+		"1N5349BRLG": "1N5349B", "1N5349": "1N5349",
+		"BZX84C6V2L": "BZX84C6V2", "BZX84-C6V2": "BZX84C6V2", "BZX84C12LT1G": "BZX84C12", "BZX84B12": "BZX84B12", "BZX85C5V1": "BZX85C5V1", "BZX85C3V0": "BZX85C3V0",
+		"BZX85C3": "BZX85C3V0", "BZX85C5.1": "BZX85C5V1", "BZX55C12-TAP": "BZX55C12", "BZX55-C5V6": "BZX55C5V6", "BZX85-12": "BZX85D12",
+		"BZX79C12": "ZENER12C", "BZX79-B5V1": "ZENER5V1B", "BZV85C6V8": "ZENER6V8C", "BZT52C3V3": "ZENER3V3C", "BZX85C150": "ZENER150C",
+		"ZENER_12": "ZENER12", "ZENER12": "ZENER12", "ZENER_5V1": "ZENER5V1", "ZENER-5.1": "ZENER5V1", "ZENER_5.1V": "ZENER5V1", "ZENER_3V": "ZENER3", "X_ZENER_12": "ZENER12", "DZ5V1": "ZENER5V1", "ZD12V": "ZENER12", "5V1_ZENER": "ZENER5V1",
+		// regulators
+		"7812": "7812", "LM7812": "7812", "LM7812CT": "7812", "L7805CV": "7805", "MC7805BTG": "7805", "uA7812": "7812", "µA7805": "7805", "UA7805CKCS": "7805",
+		"KA7809": "7809", "NJM7805FA": "7805", "L7805CD2T-TR": "7805", "LM7805_TO220": "7805", "LM7812C/TO220": "7812", "X_LM7805": "7805", "7805A": "7805", "LM7812ACT": "7812",
+		"78L05": "78L05", "78L05ACZ": "78L05", "LM78L12ACM": "78L12", "78M05": "78M05", "MC78M15BTG": "78M15", "78L12": "78L12",
+		"7912": "7912", "LM7912": "7912", "LM7905CT": "7905", "LM79L05ACZ": "79L05", "79M12": "79M12",
+		"LM340T-12": "7812", "LM340-5.0": "7805", "LM340T-5": "7805", "LM340K-15": "7815",
+		"LM317": "317", "LM317T": "317", "LM317LZ": "317L", "LM317L": "317L", "LM317MDT": "317M", "LM317K": "317", "LM317_TO220": "317", "317": "",
+		"LM337": "337", "LM337T": "337", "LM338K": "338", "LM350AT": "350",
+		"TL431": "431", "TL431A": "431A", "TL431ACLP": "431A", "TL431BIDBZR": "431B", "TL431CLP": "431", "KA431AZ": "431A",
+		"LM1117-3.3": "LM1117-3.3", "LM1117MPX-5.0": "LM1117-5", "LM1117T-ADJ": "LM1117-ADJ", "AMS1117-3.3": "1117-3.3", "LM1117_3V3": "LM1117-3.3", "LD1117V33": "",
+		"LM1086CT-3.3": "1086-3.3", "LM1085IT-12": "1085-12", "LM2940CT-12": "2940-12", "LM2940-5.0": "2940-5", "LP2950CZ-5.0": "2950-5", "LM2931Z-5.0": "2931-5",
+	}
+	for _, name := range sortedKeys(accepted) {
+		want := accepted[name]
+		row, ok := Default().Find(name)
+		if want == "" {
+			if ok {
+				t.Errorf("%q was read as %s, want refusal", name, row.Type)
+			}
+			continue
+		}
+		if !ok {
+			t.Errorf("%q was refused, want %s", name, want)
+		} else if row.Type != want {
+			t.Errorf("%q was read as %s, want %s", name, row.Type, want)
+		}
+	}
+}
+
+// Names that mean something else, or may: finding a part in them would prove what is not known.
+func TestFindRefusesOtherNames(t *testing.T) {
+	refused := []string{
+		"", " ", "D", "D1", "DX", "DZ", "DZ1", "DZ12", "D12", "DMOD", "Default", "Q1", "X1", "N4001", "4001", "4007", "1N", "1N4", "1N400", "1N40071", "1N400X", "11N4007", "MY1N4007", "1N4007X2", "1N4007_X4",
+		"N$12", "Net-(D1-K)", "VCC", "+5V", "R7805", "780", "78", "7800", "78XX", "7801", "7805V5X12345678901", "780512", "78051", "17805", "78S05", "78H05", "LM78T05", "LM7805-12", "LM7805-3.3", "AB7805", "7705", "TL7705",
+		"LM317HV", "LM317HVT", "LM317-12", "LM3177", "LM117", "LM1117", "LM1117-4.1", "TLV1117-3.3", "LM337L", "LM337MT", "LM350M", "1317", "431", "TLV431", "TL432", "LM4310", "TL4311", "LM2595", "LM2940", "LM2940-7", "LM723",
+		"M1", "M7", "M4", "W1", "W100", "W011", "DS1M", "S1", "S1C", "DW04", "KBP308", "KBP3070", "GBU8", "GBU8Z", "DB108", "2KBP3",
+		"1N4727", "1N4765", "1N4734B", "1N5220B", "1N5282B", "1N5389B", "1N745", "1N760", "BZX84", "BZX84C", "BZX84C0V5", "BZX85C999",
+		"ZENER", "ZENER_2", "ZENER_5", "ZENER_1", "ZENER_0", "ZENER_999V", "ZENER_14", "Z5", "Z12", "ZD5", "12V", "5V1",
+		"2N3055", "TIP41", "BC547", strings.Repeat("1N4007", 20),
+	}
+	for _, name := range refused {
+		if row, ok := Default().Find(name); ok {
+			t.Errorf("%q was read as %s, want refusal", name, row.Type)
+		}
+	}
+}
+
+func TestRecogniseGivesRolePolarityAndPins(t *testing.T) {
+	type want struct {
+		role     netlist.Role
+		polarity netlist.Polarity
+		pins     []netlist.Pin
+	}
+	in, ref, out := netlist.PinIn, netlist.PinReference, netlist.PinOut
+	for _, c := range []struct {
+		name string
+		want want
+	}{
+		// Netlist lines of fixed regulators run IN GND OUT, of negative ones too.
+		{"LM7805", want{netlist.RoleRegulator, netlist.Positive, []netlist.Pin{in, ref, out}}},
+		{"LM7912CT", want{netlist.RoleRegulator, netlist.Negative, []netlist.Pin{in, ref, out}}},
+		{"LM317T", want{netlist.RoleAdjustable, netlist.Positive, []netlist.Pin{in, ref, out}}},
+		{"LM337T", want{netlist.RoleAdjustable, netlist.Negative, []netlist.Pin{in, ref, out}}},
+		{"TL431", want{netlist.RoleShunt, netlist.Positive, []netlist.Pin{ref, netlist.PinAnode, netlist.PinCathode}}},
+		{"KBP307", want{netlist.RoleBridge, 0, []netlist.Pin{netlist.PinAC1, netlist.PinAC2, netlist.PinPlus, netlist.PinMinus}}},
+		{"1N4007", want{netlist.RoleRectifier, 0, []netlist.Pin{netlist.PinAnode, netlist.PinCathode}}},
+		{"ZENER_12", want{netlist.RoleZener, 0, []netlist.Pin{netlist.PinAnode, netlist.PinCathode}}},
+	} {
+		part, ok := Default().Recognise(c.name)
+		if !ok || part.Role != c.want.role || part.Polarity != c.want.polarity || len(part.Pins) != len(c.want.pins) {
+			t.Errorf("%s: got %+v, want %+v", c.name, part, c.want)
+			continue
+		}
+		for i, pin := range part.Pins {
+			if pin != c.want.pins[i] {
+				t.Errorf("%s: pin %d is %d, want %d", c.name, i, pin, c.want.pins[i])
+			}
+		}
+	}
+	if row, _ := Default().Find("1N4734A"); !row.PinsDoubtful {
+		t.Error("the pins of a zener drawn as a subcircuit call must be doubtful")
+	}
+	if row, _ := Default().Find("7805"); row.PinsDoubtful {
+		t.Error("the pins of a fixed regulator are customary, not doubtful")
+	}
+}
+
+// Every row that may be recognised is found by its own name, and by no other row's.
+func TestEveryRowIsFoundByItsName(t *testing.T) {
+	bare := map[string]bool{"317": true, "317L": true, "317M": true, "337": true, "338": true, "350": true, "431": true, "431A": true, "431B": true}
+	for _, row := range Default().Rows() {
+		found, ok := Default().Find(row.Type)
+		switch {
+		case tooShort.MatchString(row.Type) || bare[row.Type]:
+			if ok {
+				t.Errorf("%s is too short a name to be recognised, read as %s", row.Type, found.Type)
+			}
+		case !ok || found != row:
+			t.Errorf("%s is not found by its own name", row.Type)
+		}
+		if listed, ok := Default().Lookup(row.Type); !ok || listed != row {
+			t.Errorf("Lookup does not know %s", row.Type)
+		}
+	}
+}
+
+func FuzzFind(f *testing.F) {
+	for _, seed := range []string{"1N4007", "DI_1N4734A", "BZX84C6V2L", "LM7812CT", "ZENER_5V1", "TL431ACLP", "LM1117-3.3", "KBPC3510W", "µA7805", "1N\x00", "78L05#", "\xff1N4007"} {
+		f.Add(seed)
+	}
+	f.Fuzz(func(t *testing.T, name string) {
+		row, ok := Default().Find(name)
+		if !ok {
+			return
+		}
+		again, known := Default().Lookup(row.Type)
+		if !known || again.Type != row.Type {
+			t.Fatalf("%q gave %q, which Lookup does not know", name, row.Type)
+		}
+		if len(row.Symbols()) == 0 {
+			t.Fatalf("%q gave a row without values", name)
+		}
+		if !strings.ContainsAny(name, "0123456789") {
+			t.Fatalf("%q has no number in it and was read as %s", name, row.Type)
+		}
+		spaced, ok := Default().Find("  " + strings.ToLower(name) + " ")
+		if upper := strings.ToUpper(name); upper == strings.ToUpper(strings.ToLower(upper)) && (!ok || spaced.Type != row.Type) {
+			t.Fatalf("%q depends on case or blanks", name)
+		}
+	})
+}
