@@ -189,6 +189,26 @@ var zenerFamilies = []family{
 		}
 		return zenerName(volts, europeanLetter(m[2]))
 	}},
+	// Surface-mount twins of the 1N5221 series, other in power: MMSZ5231B. Only the voltage is theirs.
+	{regexp.MustCompile(`^` + diodePrefix + `MM[SB]Z(52[2-8]\d)(B?)` + suffix + `$`), func(m []string) string {
+		row, ok := Default().Lookup("1N" + m[1] + "B")
+		if !ok || another.MatchString(m[3]) {
+			return ""
+		}
+		v, _ := row.Value(VZ)
+		if m[2] == "B" {
+			return zenerName(v.Number, "C") // 5 %
+		}
+		return zenerName(v.Number, "")
+	}},
+	// Trade numbers that carry the voltage: ZMM5V1, ZPD12, ZPY6.8.
+	{regexp.MustCompile(`^` + diodePrefix + `Z(?:MM|PD|PY)(\d{1,3})(?:[V.](\d{1,2}))?` + suffix + `$`), func(m []string) string {
+		volts, ok := zenerVolts(m[1], m[2])
+		if !ok || another.MatchString(m[3]) {
+			return ""
+		}
+		return zenerName(volts, "")
+	}},
 	// Named by voltage: ZENER_12, ZENER5V1, ZENER-5.1V.
 	{regexp.MustCompile(`^(?:X|D|DI|D_|X_)?ZENER[-_ ]?(\d{1,3})(?:([V.])(\d{1,2})?)?(V?)$`), func(m []string) string {
 		volts, ok := zenerVolts(m[1], m[3])

@@ -75,6 +75,7 @@ const (
 	ESRmax  netlist.Symbol = "ESRmax"
 	PSRR    netlist.Symbol = "PSRR"    // typical ripple rejection at 120 Hz, as a ratio; dB in the file
 	PSRRmin netlist.Symbol = "PSRRmin" // least ripple rejection at 120 Hz, as a ratio; dB in the file
+	VOI     netlist.Symbol = "VOI"     // highest voltage of the output above the input
 	VKA     netlist.Symbol = "VKA"     // highest cathode voltage of a shunt reference
 	IKA     netlist.Symbol = "IKA"     // highest cathode current
 	IKAmin  netlist.Symbol = "IKAmin"  // cathode current from which it regulates
@@ -153,6 +154,7 @@ var vocabulary = []column{
 	{symbol: VI, unit: quantity.Volt, low: 3, high: 150},
 	{symbol: VIO, unit: quantity.Volt, low: 3, high: 150},
 	{symbol: VImin, unit: quantity.Volt, low: 1, high: 100},
+	{symbol: VOI, unit: quantity.Volt, low: 0.1, high: 60},
 	{symbol: VKA, unit: quantity.Volt, low: 2, high: 100},
 	{symbol: IO, unit: quantity.Ampere, low: 1e-3, high: 20},
 	{symbol: IKA, unit: quantity.Ampere, low: 1e-3, high: 1},

@@ -175,3 +175,15 @@ var _ netlist.Library = (*Table)(nil)
 
 // fold makes type names comparable.
 func fold(name string) string { return strings.ToUpper(name) }
+
+// resolve turns source keys separated by "; " into titles, empty when one of them has none.
+func resolve(titles map[string]string, keys string) string {
+	var list []string
+	for _, key := range strings.Split(keys, "; ") {
+		if titles[key] == "" {
+			return ""
+		}
+		list = append(list, titles[key])
+	}
+	return strings.Join(list, "; ")
+}
