@@ -10,6 +10,7 @@ import (
 const (
 	// Diodes (JEDEC and IEC 60747-2 letter symbols).
 	VRRM    netlist.Symbol = "VRRM"    // repetitive peak reverse voltage
+	VRSM    netlist.Symbol = "VRSM"    // non-repetitive peak reverse voltage
 	IFAV    netlist.Symbol = "IFAV"    // mean forward current; of a bridge: mean output current
 	TIFAV   netlist.Symbol = "TIFAV"   // temperature up to which IFAV holds; the condition says of what
 	IFAVcap netlist.Symbol = "IFAVcap" // factor on IFAV for a capacitive load
@@ -34,6 +35,7 @@ const (
 	RthJA netlist.Symbol = "RthJA" // junction to ambient
 	RthJL netlist.Symbol = "RthJL" // junction to lead or terminal
 	RthJC netlist.Symbol = "RthJC" // junction to case
+	RthCS netlist.Symbol = "RthCS" // case to sink
 
 	// Zeners.
 	VZ    netlist.Symbol = "VZ" // nominal at IZT
@@ -66,6 +68,8 @@ const (
 	VIO     netlist.Symbol = "VIO"   // highest input-to-output difference
 	VImin   netlist.Symbol = "VImin" // input voltage from which regulation is guaranteed
 	IO      netlist.Symbol = "IO"    // output current
+	Ilim    netlist.Symbol = "Ilim"  // current into a shorted output
+	Rout    netlist.Symbol = "Rout"  // output resistance
 	IOmin   netlist.Symbol = "IOmin" // lowest load current
 	IQ      netlist.Symbol = "IQ"    // highest quiescent current
 	IQtyp   netlist.Symbol = "IQtyp"
@@ -105,6 +109,7 @@ type column struct {
 // physics: they catch milli for mega and volts for millivolts.
 var vocabulary = []column{
 	{symbol: VRRM, unit: quantity.Volt, low: 10, high: 2000},
+	{symbol: VRSM, unit: quantity.Volt, low: 10, high: 2500},
 	{symbol: IFAV, unit: quantity.Ampere, low: 0.01, high: 200},
 	{symbol: TIFAV, unit: quantity.Celsius, low: 0, high: 175},
 	{symbol: IFAVcap, unit: quantity.One, low: 0.3, high: 1},
@@ -127,6 +132,7 @@ var vocabulary = []column{
 	{symbol: RthJA, unit: quantity.KelvinPerWatt, low: 1, high: 600},
 	{symbol: RthJL, unit: quantity.KelvinPerWatt, low: 0.5, high: 300},
 	{symbol: RthJC, unit: quantity.KelvinPerWatt, low: 0.1, high: 300},
+	{symbol: RthCS, unit: quantity.KelvinPerWatt, low: 0, high: 10},
 	{symbol: VZ, unit: quantity.Volt, low: 1.8, high: 300, at: IZT},
 	{symbol: VZmin, unit: quantity.Volt, low: 1.4, high: 300, at: IZT},
 	{symbol: VZmax, unit: quantity.Volt, low: 1.8, high: 360, at: IZT},
@@ -157,6 +163,8 @@ var vocabulary = []column{
 	{symbol: VOI, unit: quantity.Volt, low: 0.1, high: 60},
 	{symbol: VKA, unit: quantity.Volt, low: 2, high: 100},
 	{symbol: IO, unit: quantity.Ampere, low: 1e-3, high: 20},
+	{symbol: Ilim, unit: quantity.Ampere, low: 1e-3, high: 50},
+	{symbol: Rout, unit: quantity.Ohm, low: 0, high: 10},
 	{symbol: IKA, unit: quantity.Ampere, low: 1e-3, high: 1},
 	{symbol: IKAmin, unit: quantity.Ampere, low: 1e-6, high: 0.01},
 	{symbol: IQtyp, unit: quantity.Ampere, low: 1e-7, high: 0.2},
