@@ -9,11 +9,12 @@ import (
 // RS = (1.3 - 1.1 - 2 x 0.025693 x ln 3)/2 = 0.0718 ohm, IS = 1/exp((1.1 - 0.0718)/0.051386) = 2.04 nA.
 // The 1N5817 (0.45 V at 1 A, 0.75 V at 3 A, N 1.05): RS = (0.3 - 1.05 x 0.025693 x ln 3)/2 = 0.1352 ohm,
 // IS = exp(-(0.45 - 0.1352)/0.026978) = 8.55 uA.
+// One point, the 1N5400 (1.2 V at 3 A): RS = 0.1218 V/3 A = 0.0406 ohm, IS = 3 exp(-(1.2 - 0.1218)/0.051386) = 2.31 nA.
 func TestLawByHand(t *testing.T) {
 	for _, c := range []struct {
 		name   string
 		is, rs float64
-	}{{"1N4001", 2.04e-9, 0.0718}, {"1N5817", 8.55e-6, 0.1352}} {
+	}{{"1N4001", 2.04e-9, 0.0718}, {"1N5817", 8.55e-6, 0.1352}, {"1N5400", 2.313e-9, 0.0406}} {
 		law := mustFind(t, c.name).Model
 		if math.Abs(law.IS/c.is-1) > 0.01 || math.Abs(law.RS/c.rs-1) > 0.01 {
 			t.Errorf("%s: IS %g RS %g, want %g and %g", c.name, law.IS, law.RS, c.is, c.rs)

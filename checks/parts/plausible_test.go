@@ -150,7 +150,15 @@ func atoi(text string) float64 {
 // VRRM stands in the steps that rectifiers are sold in, or between them for the families that have
 // odd members; the type number of the BZX, 78 and zener rows says the voltage.
 func TestValuesAgreeWithThePhysics(t *testing.T) {
+	odd := map[float64]bool{20: true, 30: true, 40: true, 60: true, 150: true, 300: true, 500: true, 1250: true, 1300: true}
 	for _, row := range Default().Rows() {
+		if v, ok := row.Value(VRRM); ok {
+			up, found := NextUp(VRRMSteps, v.Number)
+			standard := found && up == v.Number
+			if row.Kind == "bridge" && !standard || !standard && !odd[v.Number] || row.Kind != "schottky" && v.Number < 50 {
+				t.Errorf("%s: VRRM %g is no step that rectifiers are made in", row.Type, v.Number)
+			}
+		}
 		// A half sine of crest I and length t carries I^2 t/2; a printed I2t above it contradicts IFSM.
 		if i2t, ok := row.Value(I2t); ok {
 			crest, _ := row.Value(IFSM)
