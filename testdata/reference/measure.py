@@ -1,0 +1,238 @@
+"""Reads the cards of a reference circuit, holds a solution against them, and takes the stresses from it.
+
+The solution comes from equations written by hand; here every node is held against Kirchhoff's current law and
+every element against its own law with the values on its card, so that a slip in the equations cannot pass.
+"""
+
+import re
+
+import numpy as np
+from scipy.integrate import cumulative_trapezoid
+
+from laws import GMIN, VT
+from period import highest, mean
+
+FACTORS = {"": 1, "f": 1e-15, "p": 1e-12, "n": 1e-9, "u": 1e-6, "m": 1e-3, "k": 1e3, "meg": 1e6, "g": 1e9}
+
+
+def number(text):
+    """A SPICE number: 2200u, 4.7k, 1meg, 1e-6."""
+    m = re.fullmatch(r"([-+]?[\d.]+(?:e[-+]?\d+)?)(meg|[fpnumkg]?)", text, re.I)
+    return float(m.group(1)) * FACTORS[m.group(2).lower()]
+
+
+def read(cards):
+    """Elements {name: fields}, models {name: parameters} and inline rates {name: ratings} of a circuit file."""
+    elements, models, rates = {}, {}, {}
+    for line in cards.strip().splitlines()[1:]:
+        if line.startswith(".model"):
+            _, name, _, body = re.fullmatch(r"(\.model) (\S+) (\w+)\((.*)\)", line).groups()
+            models[name] = {k: number(v) for k, v in (p.split("=") for p in body.split())}
+        elif line.startswith("*: rate"):
+            fields = line.split()
+            rates[fields[2]] = {k: float(v.rstrip("VA")) if not v.endswith("mA") else float(v[:-2]) / 1e3
+                                for k, v in (p.split("=") for p in fields[3:])}
+        elif line[0].isalpha():
+            fields = line.split()
+            elements[fields[0]] = fields[1:]
+    return elements, models, rates
+
+
+def sine(field_list, t):
+    """The waveform of SIN(VO VA FREQ TD THETA PHASE) or of a constant."""
+    text = " ".join(field_list)
+    m = re.fullmatch(r"SIN\((.*)\)", text)
+    if not m:
+        return np.full(len(t), number(field_list[-1]))
+    p = [number(x) for x in m.group(1).split()] + [0, 0, 0]
+    return p[0] + p[1] * np.sin(2 * np.pi * p[2] * t + np.pi / 180 * p[5])
+
+
+def residual(cards, t, nodes, currents):
+    """Largest relative violation of Kirchhoff's current law or of an element's law, with its place."""
+    elements, models, rates = read(cards)
+    legs, faults = {}, []
+
+    def leg(node, i):
+        legs.setdefault(node, []).append(i)
+
+    def fault(name, found, wanted, floor=1e-12):
+        scale = max(np.max(np.abs(wanted)), np.max(np.abs(found)), floor)
+        faults.append((float(np.max(np.abs(found - wanted)) / scale), name))
+
+    inductances = {e: number(f[2]) for e, f in elements.items() if e[0] == "L"}
+    couplings = [(f[0], f[1], number(f[2])) for e, f in elements.items() if e[0] == "K"]
+    dt = t[1] - t[0]
+    for e, f in elements.items():
+        kind = e[0]
+        if kind == "K":
+            continue
+        if kind == "Q":
+            ic, ib = currents[e + ".c"], currents[e + ".b"]
+            leg(f[0], ic), leg(f[1], ib), leg(f[2], -ic - ib)
+            continue
+        if kind == "M":
+            leg(f[0], currents[e]), leg(f[2], -currents[e])
+            continue
+        if kind == "X":
+            into, out = currents[e + ".in"], currents[e + ".out"]
+            leg(f[0], into), leg(f[2], out), leg(f[1], -into - out)
+            sign = -1 if f[3].startswith("79") else 1
+            rate = rates[e]
+            vin, vout = sign * (nodes[f[0]] - nodes[f[1]]), sign * (nodes[f[2]] - nodes[f[1]])
+            fault(e + " IQ", sign * (into + out), np.full(len(t), rate["IQ"]))
+            blocked = np.abs(out) < 1e-9  # output held above its target by a capacitor
+            fault(e + " law", np.where(blocked, 0, vout), np.where(blocked, 0, np.minimum(rate["VOUT"], vin - rate["VDO"])))
+            continue
+        i, v = currents[e], nodes[f[0]] - nodes[f[1]]
+        leg(f[0], i), leg(f[1], -i)
+        if kind == "R":
+            fault(e, i * number(f[2]), v)
+        elif kind == "I":
+            fault(e, i, sine(f[2:], t))
+        elif kind == "V":
+            fault(e, v, sine(f[2:], t))
+        elif kind == "C":
+            fault(e, cumulative_trapezoid(i, dx=dt, initial=0) / number(f[2]), v - v[0], 1e-3 * np.max(np.abs(v)))
+        elif kind == "L":
+            flux = inductances[e] * (i - i[0])
+            for a, b, k in couplings:
+                if e in (a, b):
+                    other = b if e == a else a
+                    flux = flux + k * np.sqrt(inductances[a] * inductances[b]) * (currents[other] - currents[other][0])
+            scale = inductances[e] * np.max(np.abs(i))
+            fault(e, cumulative_trapezoid(v, dx=dt, initial=0), flux, 1e-2 * scale)
+        elif kind == "D":
+            m = models[f[2]]
+            u = v - m.get("RS", 0) * i
+            scale = m.get("N", 1) * VT
+            law = m["IS"] * (np.exp(u / scale) - 1) + GMIN * u
+            if "BV" in m:
+                law = law - m.get("IBV", 1e-3) * np.exp(-(u + m["BV"]) / VT)
+            fault(e, i, law)
+        elif kind == "E" and len(f) == 5:
+            fault(e, v, number(f[4]) * (nodes[f[2]] - nodes[f[3]]))
+        elif kind == "F":
+            fault(e, i, number(f[3]) * currents[f[2]])
+    for node, parts in legs.items():
+        if node != "0":
+            fault("node " + node, sum(parts), np.zeros(len(t)), max(np.max(np.abs(p)) for p in parts) + 1e-12)
+    return max(faults)
+
+
+def stresses(cards, t, nodes, currents):
+    """Rows (element, quantity, value, unit) of one period in the order of the cards, then of the nodes."""
+    elements, _, rates = read(cards)
+    rows = []
+
+    def rms(y):
+        return mean(t, y * y) ** 0.5
+
+    def low(y):
+        return -highest(t, -y)
+
+    def add(e, quantity, value, unit):
+        rows.append((e, quantity, value, unit))
+
+    def flow(e, v, i):
+        add(e, "rms-current", rms(i), "A")
+        add(e, "mean-current", mean(t, i), "A")
+        add(e, "peak-current", highest(t, np.abs(i)), "A")
+        add(e, "min-current", low(i), "A")
+        add(e, "mean-power", mean(t, v * i), "W")
+
+    for e, f in elements.items():
+        kind = e[0]
+        if kind == "K":
+            continue
+        if kind == "X":
+            sign = -1 if f[3].startswith("79") else 1
+            vin, vout = sign * (nodes[f[0]] - nodes[f[1]]), sign * (nodes[f[2]] - nodes[f[1]])
+            iin, iout = sign * currents[e + ".in"], -sign * currents[e + ".out"]
+            add(e, "min-differential", low(vin - vout), "V")
+            add(e, "min-headroom", low(vin) - rates[e]["VOUT"] - rates[e]["VDO"], "V")
+            add(e, "max-input-voltage", highest(t, vin), "V")
+            add(e, "mean-power", mean(t, vin * iin - vout * iout), "W")
+            add(e, "max-output-current", highest(t, iout), "A")
+            continue
+        if kind == "Q":
+            ic, ib = currents[e + ".c"], currents[e + ".b"]
+            vce, vbe = nodes[f[0]] - nodes[f[2]], nodes[f[1]] - nodes[f[2]]
+            add(e, "max-vce", highest(t, np.abs(vce)), "V")
+            add(e, "peak-current", highest(t, np.abs(ic)), "A")
+            add(e, "mean-power", mean(t, vce * ic + vbe * ib), "W")
+            continue
+        v, i = nodes[f[0]] - nodes[f[1]], currents[e] if e in currents else None
+        if kind == "M":
+            v = nodes[f[0]] - nodes[f[2]]
+            add(e, "max-vds", highest(t, np.abs(v)), "V")
+            add(e, "peak-current", highest(t, np.abs(i)), "A")
+            add(e, "mean-power", mean(t, v * i), "W")
+        elif kind == "D":
+            add(e, "peak-reverse-voltage", max(0.0, highest(t, -v)), "V")
+            add(e, "mean-current", mean(t, i), "A")
+            add(e, "rms-current", rms(i), "A")
+            add(e, "peak-current", highest(t, np.abs(i)), "A")
+            add(e, "mean-power", mean(t, v * i), "W")
+        elif kind == "C":
+            add(e, "max-voltage", highest(t, v), "V")
+            add(e, "min-voltage", low(v), "V")
+            add(e, "mean-voltage", mean(t, v), "V")
+            add(e, "ripple-current-rms", rms(i), "A")
+        elif kind == "R":
+            add(e, "mean-power", mean(t, v * i), "W")
+            add(e, "peak-voltage", highest(t, np.abs(v)), "V")
+            add(e, "rms-current", rms(i), "A")
+        else:
+            flow(e, v, i)
+    for n in dict.fromkeys(n for e, f in elements.items() for n in terminals(e, f)):
+        if n == "0":
+            continue
+        v = nodes[n]
+        m = mean(t, v)
+        ripple = rms(v - m)
+        add("node:" + n, "mean-voltage", m, "V")
+        add("node:" + n, "min-voltage", low(v), "V")
+        add("node:" + n, "max-voltage", highest(t, v), "V")
+        add("node:" + n, "ripple-rms", ripple, "V")
+        add("node:" + n, "ripple-peak-to-peak", highest(t, v) + highest(t, -v), "V")
+        if abs(m) > 1e-2 * np.max(np.abs(v)):
+            add("node:" + n, "ripple-factor", ripple / abs(m), "")
+    return rows
+
+
+def terminals(element, fields):
+    """Names of the nodes among the fields of a card."""
+    count = {"Q": 3, "M": 4, "X": 3, "K": 0, "E": 4}.get(element[0], 2)
+    if element[0] == "E" and len(fields) != 5:
+        count = 2
+    return fields[:count]
+
+
+def surges(cards, t, currents, T):
+    """Surge rows of the diodes from a switch-on transient that starts at t = 0, in whole line cycles.
+
+    surge-current is the largest current, surge-i2t the largest integral of i^2 over one conduction pulse.
+    Two readings of the pulse are compared: the stretch between zeros of the current (below 1e-4 of the peak), and
+    the line cycle counted from switch-on. Where they differ by more than 1e-3 the I2t row is left out.
+    """
+    elements, _, _ = read(cards)
+    rows, left_out = [], []
+    per = int(round(T / (t[1] - t[0])))
+    for e, f in elements.items():
+        if e[0] != "D":
+            continue
+        i = np.maximum(currents[e], 0)
+        peak = highest(t, i, periodic=False)
+        rows.append((e, "surge-current", peak, "A"))
+        total = cumulative_trapezoid(i * i, dx=t[1] - t[0], initial=0)
+        cycle = max(total[k + per] - total[k] for k in range(0, len(t) - per, per))
+        on = i > 1e-4 * peak
+        edges = np.flatnonzero(np.diff(on.astype(int)))
+        bounds = [0, *edges, len(t) - 1]
+        pulse = max(total[b] - total[a] for a, b in zip(bounds, bounds[1:]))
+        if abs(pulse - cycle) < 1e-3 * cycle:
+            rows.append((e, "surge-i2t", cycle, "A2s"))
+        else:
+            left_out.append("%s pulse %.6g cycle %.6g" % (e, pulse, cycle))
+    return rows, left_out
