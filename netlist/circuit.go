@@ -32,6 +32,9 @@ type Circuit struct {
 	Temperature float64   // degC of the .temp card; 27 (300.15 K) unless stated
 	HasGround   bool      // some element touches node 0 or gnd
 	Remarks     []Remark  // what was assumed, skipped or found doubtful while reading
+	Library     Library   // what type names mean; nil: none is recognised
+
+	zeners map[ElementID]bool // what the duty sheet says of diodes
 }
 
 // Node is an electrical node and the terminals that meet there.
