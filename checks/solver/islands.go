@@ -99,6 +99,16 @@ func (n *Network) Islands() []Island {
 		}
 	}
 	support := n.support(fixed, anchors)
+	tied := 0
+	for _, is := range anchors {
+		if is {
+			tied++
+		}
+	}
+	if tied > len(support) {
+		// More sources than the nodes they fix: a loop of ideal sources, which the whole network must show.
+		return []Island{n.whole()}
+	}
 	islands := make([]Island, len(order))
 	for k, devices := range members {
 		islands[k] = n.extract(devices, fixed, support)
@@ -190,6 +200,10 @@ func (n *Network) extract(devices []Device, fixed []bool, via map[Node]Device) I
 		}
 		f(&d.control.A)
 		f(&d.control.B)
+		if d.measured != nil {
+			f(&d.measured.A)
+			f(&d.measured.B)
+		}
 	}
 	for _, d := range devices {
 		dev := n.devices[d]
@@ -213,6 +227,10 @@ func (n *Network) extract(devices []Device, fixed []bool, via map[Node]Device) I
 		dev := n.devices[d]
 		dev.branches = append([]Branch(nil), dev.branches...)
 		dev.ports = append([]port(nil), dev.ports...)
+		if dev.measured != nil {
+			m := *dev.measured
+			dev.measured = &m
+		}
 		each(&dev, func(k *Node) {
 			if _, ok := nodes[*k]; !ok {
 				nodes[*k] = Node(is.Network.nodes)
@@ -228,4 +246,46 @@ func (n *Network) extract(devices []Device, fixed []bool, via map[Node]Device) I
 		is.Network.devices = append(is.Network.devices, dev)
 	}
 	return is
+}
+
+// Anchor ties each galvanically separate part of the network that lacks the reference to it through one
+// resistor, which carries no current: the potentials become defined, the stresses of elements stay the same.
+func (n *Network) Anchor() {
+	parent := make([]int, n.nodes)
+	for k := range parent {
+		parent[k] = k
+	}
+	find := func(k int) int {
+		for parent[k] != k {
+			parent[k] = parent[parent[k]]
+			k = parent[k]
+		}
+		return k
+	}
+	join := func(b Branch) {
+		parent[find(int(b.A))] = find(int(b.B))
+	}
+	for d := range n.devices {
+		dev := &n.devices[d]
+		if dev.kind == nonlinear {
+			// All terminals of one law belong together.
+			for _, p := range dev.ports {
+				if p.output != outNone && !p.isCurrent {
+					join(p.sense)
+					join(Branch{dev.ports[0].sense.A, p.sense.A})
+				}
+			}
+			continue
+		}
+		for _, b := range dev.branches {
+			join(b)
+		}
+	}
+	for k := 1; k < n.nodes; k++ {
+		if find(k) == find(int(Reference)) {
+			continue
+		}
+		n.AddResistor(Node(k), Reference, 1)
+		parent[find(k)] = find(int(Reference))
+	}
 }

@@ -32,7 +32,7 @@ type Diode struct {
 func (n *Network) AddDiode(anode, cathode Node, d Diode) Device {
 	inner := anode
 	if d.RS > 0 {
-		inner = n.internalNode()
+		inner = n.AddNode()
 		n.AddResistor(anode, inner, d.RS)
 	}
 	if d.NBV == 0 {
@@ -98,11 +98,8 @@ func limitJunction(v, old, scale, knee float64) (float64, bool) {
 	if v <= knee || math.Abs(v-old) <= 2*scale {
 		return v, false
 	}
-	if old <= 0 {
-		if start := knee; v > start {
-			return start, true
-		}
-		return v, false
+	if old < knee {
+		return knee, true
 	}
 	arg := 1 + (v-old)/scale
 	if arg <= 0 {

@@ -78,6 +78,7 @@ type device struct {
 	second   Device  // second inductor of a coupled pair
 	ports    []port  // nonlinear only
 	law      Law     // nonlinear only
+	measured *Branch // what the voltage of branch 0 is reported across, if not the branch itself
 	initial  float64 // state before a cold start: V or A
 }
 
@@ -103,10 +104,16 @@ func (n *Network) add(d device) Device {
 	return Device(len(n.devices) - 1)
 }
 
-// internalNode returns a new node.
-func (n *Network) internalNode() Node {
+// AddNode adds a node to the network.
+func (n *Network) AddNode() Node {
 	n.nodes++
 	return Node(n.nodes - 1)
+}
+
+// MeasureAcross makes the voltage that the solution reports for a device the one between a and b, which a
+// series resistance of the same part may lie between. It does not change the circuit.
+func (n *Network) MeasureAcross(d Device, a, b Node) {
+	n.devices[d].measured = &Branch{a, b}
 }
 
 // AddResistor adds a resistance in ohms; zero is a short whose current is found.

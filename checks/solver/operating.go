@@ -22,6 +22,7 @@ func OperatingPoint(ctx context.Context, n *Network) (*Solution, error) {
 	}
 	if err := a.rest(ctx, 1); err != nil {
 		a.stage = newStage(a.stage.r)
+		a.last = a.stage
 		for k := range a.x {
 			a.x[k] = 0
 		}

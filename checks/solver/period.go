@@ -17,12 +17,18 @@ const (
 type march struct {
 	sys   *system
 	step  float64 // s
-	stage *stage
+	stage *stage  // of length gammaStage step
+	euler *stage  // of length step, made when first needed; see cutsOff
+	last  *stage  // the one that ended the last step
 
 	x, x1, pred []float64
 	u           []float64
 	flow        dense // d x / d x at the start of the period
 	work        dense
+
+	before        []float64 // x, and the port currents, at the start of the step
+	currentBefore []float64
+	flowBefore    []float64
 }
 
 func newMarch(sys *system, step float64) (*march, error) {
@@ -31,11 +37,14 @@ func newMarch(sys *system, step float64) (*march, error) {
 		return nil, err
 	}
 	m := sys.states()
-	return &march{
+	a := &march{
 		sys: sys, step: step, stage: newStage(r),
 		x: make([]float64, m), x1: make([]float64, m), pred: make([]float64, m),
 		u: make([]float64, len(sys.sources)), flow: newDense(m, m), work: newDense(m, m),
-	}, nil
+		before: make([]float64, m), currentBefore: make([]float64, len(sys.ports)), flowBefore: make([]float64, m*m),
+	}
+	a.last = a.stage
+	return a, nil
 }
 
 func (a *march) inputs(t float64) {
@@ -47,6 +56,29 @@ func (a *march) inputs(t float64) {
 // advance takes one step from time t. Afterwards x is the new state, pred and u are the predicted state and
 // the inputs of the last stage, from which the unknowns can be read. With track it also propagates flow.
 func (a *march) advance(t float64, track bool) error {
+	guard := len(a.sys.inductors) > 0
+	if guard {
+		copy(a.before, a.x)
+		a.last.currents(a.currentBefore)
+		if track {
+			copy(a.flowBefore, a.flow.data)
+		}
+	}
+	if err := a.twoStages(t, track); err != nil {
+		return err
+	}
+	if guard && a.cutsOff() {
+		copy(a.x, a.before)
+		if track {
+			copy(a.flow.data, a.flowBefore)
+		}
+		return a.eulerStep(t, track)
+	}
+	return nil
+}
+
+// twoStages takes one step with the two-stage rule.
+func (a *march) twoStages(t float64, track bool) error {
 	t1, t2 := t+gammaStage*a.step, t+a.step
 	a.inputs(t1)
 	if err := a.stage.solve(a.x, a.u, t1); err != nil {
@@ -72,12 +104,57 @@ func (a *march) advance(t float64, track bool) error {
 		return fmt.Errorf("%w at %.6g s", err, t2)
 	}
 	a.stage.states(a.x, a.pred, a.u)
+	a.last = a.stage
 	if track {
 		j2, err := a.stage.transition()
 		if err != nil {
 			return err
 		}
 		multiply(a.flow, j2, a.work)
+	}
+	return nil
+}
+
+// cutsOff reports whether a junction that carried current stopped in the last step. The second stage of the
+// rule starts from an extrapolated state; where a junction cuts off the current of an inductance that state
+// has overshot, and the inductance answers with a voltage spike that is not in the circuit.
+func (a *march) cutsOff() bool {
+	for j, before := range a.currentBefore {
+		if math.Abs(before) < 1e-9 {
+			continue
+		}
+		if now := a.stage.w[j] + a.sys.ports[j].guess*a.stage.v[j]; math.Abs(now) < 1e-3*math.Abs(before) {
+			return true
+		}
+	}
+	return false
+}
+
+// eulerStep takes one step with the implicit Euler rule, which does not extrapolate.
+func (a *march) eulerStep(t float64, track bool) error {
+	if a.euler == nil {
+		r, err := a.sys.reduce(a.step)
+		if err != nil {
+			return err
+		}
+		a.euler = newStage(r)
+	}
+	copy(a.euler.v, a.stage.v)
+	copy(a.pred, a.x)
+	a.inputs(t + a.step)
+	if err := a.euler.solve(a.pred, a.u, t+a.step); err != nil {
+		return fmt.Errorf("%w at %.6g s", err, t+a.step)
+	}
+	a.euler.states(a.x, a.pred, a.u)
+	a.last = a.euler
+	copy(a.stage.v, a.euler.v)
+	if track {
+		j, err := a.euler.transition()
+		if err != nil {
+			return err
+		}
+		copy(a.work.data, a.flow.data)
+		multiply(a.flow, j, a.work)
 	}
 	return nil
 }

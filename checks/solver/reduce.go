@@ -33,24 +33,25 @@ func (s *system) reduce(sigma float64) (*reduced, error) {
 		sx: newDense(m, m), su: newDense(m, q), sw: newDense(m, d),
 		impedance: make([]float64, d),
 	}
-	b := make([]float64, n)
+	b, unknowns, work := make([]float64, n), make([]float64, n), make([]float64, n)
+	balance := newResidual(n)
 	column := func(fill func(), z, p, x dense, c int) error {
 		for i := range b {
 			b[i] = 0
 		}
 		fill()
-		lu.solve(b)
-		for i, v := range b {
+		s.solveRefined(lu, sigma, b, unknowns, work, balance)
+		for i, v := range unknowns {
 			if math.IsNaN(v) || math.IsInf(v, 0) {
 				return ErrSingular
 			}
 			z.row(i)[c] = v
 		}
 		for j := range s.ports {
-			p.row(j)[c] = s.sensed(j, b)
+			p.row(j)[c] = s.sensed(j, unknowns)
 		}
 		for k := range x.rows {
-			x.row(k)[c] = s.stateOf(k, b)
+			x.row(k)[c] = s.stateOf(k, unknowns)
 		}
 		return nil
 	}

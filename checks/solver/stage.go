@@ -13,8 +13,8 @@ const (
 	// relativeCurrent and absoluteCurrent bound the error of the port currents against the last
 	// linearisation, absoluteVoltage what that error may do to the port voltages.
 	relativeCurrent = 1e-9
-	absoluteCurrent = 1e-12 // A
-	absoluteVoltage = 1e-10 // V
+	absoluteCurrent = 1e-18 // A
+	absoluteVoltage = 1e-11 // V
 )
 
 // stage solves one implicit stage after another. It owns all storage, so that stepping allocates nothing.
@@ -191,7 +191,7 @@ func (st *stage) solve(x, u []float64, t float64) error {
 			}
 			e := math.Abs(st.w[p] - st.lin[p])
 			size := math.Abs(st.w[p] + port.guess*st.v[p])
-			if e > relativeCurrent*size+absoluteCurrent && e*st.r.impedance[p] > absoluteVoltage+1e-12*math.Abs(st.v[p]) {
+			if e > relativeCurrent*size+absoluteCurrent && e*st.r.impedance[p] > absoluteVoltage+1e-14*math.Abs(st.v[p]) {
 				done = false
 				break
 			}
@@ -211,6 +211,13 @@ func (st *stage) states(out, x, u []float64) {
 	st.r.sx.addTo(out, x)
 	st.r.su.addTo(out, u)
 	st.r.sw.addTo(out, st.w)
+}
+
+// currents writes the port currents of the last solution.
+func (st *stage) currents(out []float64) {
+	for j := range out {
+		out[j] = st.w[j] + st.r.sys.ports[j].guess*st.v[j]
+	}
 }
 
 // unknowns writes all node potentials and branch currents after the stage.

@@ -24,7 +24,7 @@ const (
 	VoltageTolerance = 1e-3
 	CurrentTolerance = 5e-3
 	// PowerTolerance bounds the mean power into capacitors and inductors, which is zero in the periodic
-	// steady state, against the power of the sources.
+	// steady state, against the apparent power of the sources.
 	PowerTolerance = 1e-4
 	powerFloor     = 1e-9 // W; below this the power balance is not judged
 	voltageFloor   = 1e-6 // V
@@ -40,7 +40,7 @@ type Solution struct {
 	States       []float64   // at the start of the period
 	Periods      int         // integrated in all
 	Iterations   int         // of the port equations, in all
-	Imbalance    float64     // |mean power into C and L| / source power; see PowerTolerance
+	Imbalance    float64     // |mean power into C and L| / apparent power of the sources; see PowerTolerance
 }
 
 // Measure evaluates a statistic on both grids: the value on the fine one and the difference to the coarse
@@ -136,8 +136,8 @@ func (s *Solution) grid(ctx context.Context, sys *system, x []float64, steps, pl
 func (s *Solution) agree(n *Network) bool {
 	for d := range n.devices {
 		for k := range n.devices[d].branches {
-			v1, i1, p1 := s.Fine.branchStats(Device(d), k)
-			v0, i0, p0 := s.Coarse.branchStats(Device(d), k)
+			v1, i1, p1 := s.Fine.Branch(Device(d), k)
+			v0, i0, p0 := s.Coarse.Branch(Device(d), k)
 			size := math.Max(math.Abs(v1.Max.Value), math.Abs(v1.Min.Value))
 			tol := VoltageTolerance*size + voltageFloor
 			if differ(v1.Max.Value, v0.Max.Value, tol) || differ(v1.Min.Value, v0.Min.Value, tol) || differ(v1.Mean, v0.Mean, tol) {
@@ -160,8 +160,8 @@ func (s *Solution) agree(n *Network) bool {
 
 func differ(a, b, tolerance float64) bool { return !(math.Abs(a-b) <= tolerance) }
 
-// branchStats summarises the voltage and current of a branch and its mean power.
-func (tr *Trajectory) branchStats(d Device, k int) (v, i Stats, power float64) {
+// Branch summarises the voltage and current of a branch and its mean power.
+func (tr *Trajectory) Branch(d Device, k int) (v, i Stats, power float64) {
 	b, current := tr.BranchOf(d, k)
 	voltage := func(n int) float64 { return tr.Voltage(b, n) }
 	v = tr.Summary(voltage)
@@ -169,20 +169,23 @@ func (tr *Trajectory) branchStats(d Device, k int) (v, i Stats, power float64) {
 	return v, i, tr.Mean(func(n int) float64 { return voltage(n) * current[n] })
 }
 
-// imbalance is the mean power into the energy stores over the power that the sources deliver.
+// imbalance is the mean power into the energy stores over the apparent power (RMS voltage times
+// RMS current) of the branches that deliver power.
 func imbalance(n *Network, tr *Trajectory) float64 {
 	var stored, delivered float64
 	for d := range n.devices {
 		kind := n.devices[d].kind
-		for k := range n.devices[d].branches {
-			b, current := tr.BranchOf(Device(d), k)
+		for k, b := range n.devices[d].branches {
+			_, current := tr.BranchOf(Device(d), k)
 			power := tr.Mean(func(s int) float64 { return tr.Voltage(b, s) * current[s] })
 			switch kind {
 			case capacitor, inductor:
 				stored += power
 			default:
 				if power < 0 {
-					delivered -= power
+					v := tr.Summary(func(s int) float64 { return tr.Voltage(b, s) })
+					i := tr.Summary(func(s int) float64 { return current[s] })
+					delivered += v.RMS * i.RMS
 				}
 			}
 		}

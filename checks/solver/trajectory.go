@@ -37,6 +37,9 @@ func newTrajectory(n *Network, start, step float64, samples int) *Trajectory {
 	for k := range n.devices {
 		tr.offset[k] = len(tr.branches)
 		tr.branches = append(tr.branches, n.devices[k].branches...)
+		if m := n.devices[k].measured; m != nil {
+			tr.branches[tr.offset[k]] = *m
+		}
 	}
 	signals := n.nodes + len(tr.branches)
 	block := make([]float64, signals*samples)
@@ -77,7 +80,7 @@ func (a *march) record(ctx context.Context, start float64, steps int, cold bool)
 
 // sample writes the solution of the last stage into column k.
 func (a *march) sample(tr *Trajectory, k int, z []float64) {
-	st, s := a.stage, a.sys
+	st, s := a.last, a.sys
 	st.unknowns(z, a.pred, a.u)
 	for n := 1; n < s.net.nodes; n++ {
 		tr.Nodes[n][k] = z[n-1]
@@ -168,22 +171,20 @@ func (tr *Trajectory) Summary(value func(k int) float64) Stats {
 	return st
 }
 
-// refine returns the vertex of the parabola through samples k-1, k, k+1 where k holds an extremum.
+// refine returns the vertex of the parabola through samples k-1, k, k+1 where k holds an extremum, if the
+// curvature there is that of a smooth crest: about the same one sample earlier and later. At a kink, where a
+// diode starts or stops to conduct, the sample itself is the extremum.
 func (tr *Trajectory) refine(value func(k int) float64, k int) Extreme {
 	e := Extreme{value(k), tr.Start + float64(k)*tr.Step}
-	before, after, last := k-1, k+1, tr.Samples()-1
-	if last < 2 {
+	last := tr.Samples() - 1
+	if last < 4 || !tr.Periodic && (k < 2 || k > last-2) {
 		return e
 	}
-	if k == 0 || k == last {
-		if !tr.Periodic {
-			return e
-		}
-		before, after = last-1, 1
-	}
-	a, b, c := value(before), value(k), value(after)
+	sample := func(j int) float64 { return value((k + j + last) % last) }
+	a, b, c := sample(-1), e.Value, sample(1)
 	curve := a - 2*b + c
-	if curve == 0 {
+	before, after := sample(-2)-2*a+b, b-2*c+sample(2)
+	if curve == 0 || before/curve < 0.3 || before/curve > 3 || after/curve < 0.3 || after/curve > 3 {
 		return e
 	}
 	shift := 0.5 * (a - c) / curve

@@ -19,7 +19,7 @@ func (n *Network) AddBipolar(collector, base, emitter Node, q Bipolar) Device {
 		if ohms <= 0 {
 			return outer
 		}
-		in := n.internalNode()
+		in := n.AddNode()
 		n.AddResistor(outer, in, ohms)
 		return in
 	}
@@ -90,11 +90,11 @@ type Fet struct {
 func (n *Network) AddFet(drain, gate, source, bulk Node, f Fet) Device {
 	d, s := drain, source
 	if f.RD > 0 {
-		d = n.internalNode()
+		d = n.AddNode()
 		n.AddResistor(drain, d, f.RD)
 	}
 	if f.RS > 0 {
-		s = n.internalNode()
+		s = n.AddNode()
 		n.AddResistor(source, s, f.RS)
 	}
 	return n.add(device{
