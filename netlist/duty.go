@@ -16,6 +16,7 @@ type Duty struct {
 	Policy      string // empty: not stated
 	PolicyAt    Position
 	Life        *quantity.Value // hours; nil: not stated
+	Profile     *Profile        // how fast stored charge must be gone; nil: not stated
 	Concessions []Concession
 	Remarks     []Remark // contradictions between sheet and inline, unused statements
 }
@@ -88,10 +89,20 @@ type Rail struct {
 	At     Position
 }
 
+// Profile says to which voltage a stored charge must have fallen, and how long after the line is off.
+type Profile struct {
+	Name    string  // empty: stated in figures
+	Voltage float64 // V dc
+	Within  float64 // s
+	Source  string  // where the figures come from
+	At      Position
+}
+
 // Concession permits a stated excess of one check on one element up to a ceiling until a date.
 type Concession struct {
 	Check   string
-	Element ElementID
+	Element ElementID // -1: a node
+	Target  string    // as findings name it: the element's full path, or "node:NAME"
 	Ceiling quantity.Value
 	Until   string // YYYY-MM-DD, last day it holds
 	Reason  string

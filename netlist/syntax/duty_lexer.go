@@ -13,12 +13,12 @@ const MaxDutyLine = 4096
 
 // Kinds of token in a duty statement.
 const (
-	dutyWord      lexer.TokenType = iota + 1 // a name: D1, D1..D4, VRRM, as-drawn
-	dutyFigure                               // begins like a number: 25V, 7812, 2027-03-31
-	dutyRange                                // a figure with .. inside: 0C..45C
-	dutyString                               // "D1,D3", with its quotation marks
-	dutyEquals                               // =
-	dutyInvalid                              // a quotation mark that is not closed, a control character
+	dutyWord    lexer.TokenType = iota + 1 // a name: D1, D1..D4, VRRM, as-drawn
+	dutyFigure                             // begins like a number: 25V, 7812, 2027-03-31
+	dutyRange                              // a figure with .. inside: 0C..45C
+	dutyString                             // "D1,D3", with its quotation marks
+	dutyEquals                             // =
+	dutyInvalid                            // a quotation mark that is not closed, a control character
 )
 
 // dutyLexer cuts one duty statement into tokens. It is total: what is wrong becomes an invalid token.
