@@ -84,12 +84,22 @@ func (p *dutyPrinter) word(words ...string) {
 
 // name writes a name, in quotation marks only where it needs them.
 func (p *dutyPrinter) name(raw string) {
-	if bare := unquote(raw); bare != "" && bare[0] != '#' {
-		if kind, size := classifyDuty(bare); kind == dutyWord && size == len(bare) && !strings.HasPrefix(bare, " ") {
-			raw = bare
-		}
+	if bare := unquote(raw); aloneAs(bare) == dutyWord {
+		raw = bare
 	}
 	p.word(raw)
+}
+
+// aloneAs is the kind of token that a text is by itself, dutyInvalid if it is not exactly one.
+func aloneAs(text string) lexer.TokenType {
+	if text == "" || strings.ContainsRune("# \t\r", rune(text[0])) {
+		return dutyInvalid
+	}
+	kind, size := classifyDuty(text)
+	if size != len(text) {
+		return dutyInvalid
+	}
+	return kind
 }
 
 func (p *dutyPrinter) settings(list []Setting) {
@@ -100,10 +110,9 @@ func (p *dutyPrinter) settings(list []Setting) {
 
 // DutyString puts a text in quotation marks if it could not stand as one word of a statement.
 func DutyString(text string) string {
-	if text != "" && text[0] != '#' && text[0] != ' ' && text[0] != '\t' {
-		if kind, size := classifyDuty(text); size == len(text) && kind != dutyInvalid && kind != dutyEquals && kind != dutyString {
-			return text
-		}
+	switch aloneAs(text) {
+	case dutyWord, dutyFigure, dutyRange:
+		return text
 	}
 	return `"` + text + `"`
 }
