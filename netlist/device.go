@@ -98,6 +98,8 @@ type Regulator struct {
 	Shunt       bool // adjustable shunt reference
 	PinsAssumed bool // pin order was inferred, not stated
 	Macromodel  bool // the netlist carries a subcircuit for it that was not expanded
+	// Written is the nodes in the order of the card, from which pins= may put them otherwise.
+	Written []NodeID
 }
 
 // Polarity of a regulator.

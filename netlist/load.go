@@ -1,9 +1,196 @@
 package netlist
 
+import (
+	"fmt"
+	"os"
+	"path/filepath"
+	"strings"
+
+	"railproof/netlist/syntax"
+)
+
 // Source says where a netlist is to be read from and what may be read with it.
 type Source struct {
 	File        string   // netlist path
 	DutyFile    string   // --duty; empty: FILE with the ending .duty beside it, if there
 	IncludeDirs []string // --include folders
 	Library     Library  // known types; may be nil
+}
+
+// Load reads a netlist, what it includes, and its duty sheet. Diagnostics mean that the input is not to be
+// used; err means that a file could not be read at all.
+func Load(src Source) (*Circuit, *Duty, []Diagnostic, error) {
+	text, err := readFile(src.File)
+	if err != nil {
+		return nil, nil, nil, err
+	}
+	folders := append([]string{filepath.Dir(src.File)}, src.IncludeDirs...)
+	opened, err := newFiles(folders)
+	if err != nil {
+		return nil, nil, nil, err
+	}
+	defer opened.close()
+	sheet, err := readSheet(src)
+	if err != nil {
+		return nil, nil, nil, err
+	}
+	c, d, faults := parse(src.File, text, sheet, src.Library, opened)
+	return c, d, faults, nil
+}
+
+// Parse reads a netlist and a duty sheet that are not on disk; includes are not followed.
+func Parse(name string, text, sheet []byte, library Library) (*Circuit, *Duty, []Diagnostic) {
+	var lines []DutyLine
+	if sheet != nil {
+		lines = DutyLines(name+".duty", syntax.Decode(sheet))
+	}
+	return parse(name, text, lines, library, nil)
+}
+
+func readFile(name string) ([]byte, error) {
+	file, err := os.Open(name)
+	if err != nil {
+		return nil, err
+	}
+	defer file.Close()
+	if info, err := file.Stat(); err == nil && info.IsDir() {
+		return nil, fmt.Errorf("%s is a folder", name)
+	}
+	text, err := readLimited(file)
+	if err != nil {
+		return nil, fmt.Errorf("%s: %w", name, err)
+	}
+	return text, nil
+}
+
+// readSheet reads the duty sheet: the one named, or the one beside the netlist if there is one.
+func readSheet(src Source) ([]DutyLine, error) {
+	name := src.DutyFile
+	if name == "" {
+		name = strings.TrimSuffix(src.File, filepath.Ext(src.File)) + ".duty"
+		if _, err := os.Stat(name); err != nil {
+			return nil, nil
+		}
+	}
+	text, err := readFile(name)
+	if err != nil {
+		return nil, err
+	}
+	return DutyLines(name, syntax.Decode(text)), nil
+}
+
+func parse(name string, text []byte, sheet []DutyLine, library Library, opened *files) (*Circuit, *Duty, []Diagnostic) {
+	decoded := syntax.Decode(text)
+	if kind := syntax.Foreign(decoded); kind != "" {
+		return nil, nil, []Diagnostic{{At: Position{File: name, Line: 1, Column: 1}, What: "this is " + kind + ", not a SPICE-style netlist", Expected: "element cards such as `R1 in out 1k`"}}
+	}
+	if decoded == "" || strings.TrimSpace(decoded) == "" {
+		return nil, nil, []Diagnostic{{At: Position{File: name, Line: 1, Column: 1}, What: "the file is empty", Expected: "a netlist"}}
+	}
+	lines, inline, faults := syntax.Lines(name, decoded)
+	x := &expander{
+		collector: collector{
+			files: opened, globals: map[string]bool{}, skipped: map[string]bool{}, temperature: 27, faults: faults,
+		},
+		library: library, nodes: map[string]NodeID{}, models: map[*syntax.Line]*modelCard{},
+		environments: map[*scope]*environment{}, names: map[string]bool{}, byName: map[string]ElementID{},
+		circuit: &Circuit{File: name, Nodes: []Node{{Name: "0"}}, Library: library},
+	}
+	x.top = newScope("", nil)
+	x.current = x.top
+	for _, i := range inline {
+		x.inline = append(x.inline, DutyLine{Text: i.Text, At: i.At})
+	}
+	lines = x.takeTitle(lines)
+	x.block(lines, "")
+	x.expand(&level{scope: x.top, env: x.environmentOf(x.top)})
+	x.checkParameters()
+	x.titleElement()
+	x.finish()
+	c := x.circuit
+	c.Title, c.Temperature, c.Remarks = x.title, x.temperature, x.remarks
+	if len(x.faults) == 0 && len(c.Elements) == 0 {
+		x.fault(Position{File: name, Line: 1, Column: 1}, "the file holds no element", "element cards such as `R1 in out 1k`")
+	}
+	if len(x.faults) > 0 {
+		return c, nil, x.faults[:min(len(x.faults), maxFaults)]
+	}
+	if !c.HasGround {
+		c.Remarks = append(c.Remarks, Remark{Kind: RemarkAssumption, At: Position{File: name, Line: 1, Column: 1}, Text: "no element touches node 0: voltages between nodes hold, voltages to ground are arbitrary"})
+	}
+	d, faults := interpretDuty(c, x.inline, sheet)
+	if len(faults) > 0 {
+		return c, d, faults[:min(len(faults), maxFaults)]
+	}
+	return c, d, nil
+}
+
+// takeTitle takes the first line as the title, unless it is a dot card.
+func (x *expander) takeTitle(lines []syntax.Line) []syntax.Line {
+	if len(lines) == 0 {
+		return lines
+	}
+	first := &lines[0]
+	if p := first.Start(); p.Line != 1 {
+		return lines // a blank or comment title was not kept as a line
+	}
+	text := first.Text
+	switch {
+	case text == "":
+	case text[0] == '*':
+		x.title = strings.TrimSpace(text[1:])
+	case text[0] == '.':
+		return lines
+	default:
+		x.title = strings.TrimSpace(text)
+		x.titleLine = first
+	}
+	return lines[1:]
+}
+
+// titleElement takes the title for an element if it is plainly one: well formed, with a numeric value, and
+// every node of it is a node of the circuit.
+func (x *expander) titleElement() {
+	l := x.titleLine
+	if l == nil || !looksLikeElement(l.Text) || !strings.ContainsRune("RCLVIrclvi", rune(l.Text[0])) {
+		return
+	}
+	words := strings.Fields(l.Text)
+	if len(words) < 4 {
+		return
+	}
+	if _, number := spice(words[3]); !number && !keyword(strings.SplitN(words[3], "(", 2)[0]) {
+		return
+	}
+	met := func(name string) bool {
+		if isGroundName(name) {
+			return x.circuit.HasGround
+		}
+		_, ok := x.nodes[strings.ToLower(name)]
+		return ok
+	}
+	if !met(words[1]) || !met(words[2]) || words[1] == words[2] {
+		x.remark(RemarkAssumption, l.Start(), "", "the first line reads like an element but is the title")
+		return
+	}
+	before := len(x.circuit.Elements)
+	x.element(&level{scope: x.top, env: x.environmentOf(x.top)}, l)
+	if len(x.circuit.Elements) > before {
+		x.remark(RemarkAssumption, l.Start(), x.circuit.Elements[before].Name, "the first line is taken as an element, not as the title: its nodes are those of the circuit")
+		x.title = ""
+	}
+}
+
+// checkParameters evaluates the parameters of the netlist that nothing asked for, so that a mistake in one
+// is not passed over.
+func (x *expander) checkParameters() {
+	env := x.environmentOf(x.top)
+	for _, a := range x.top.params {
+		if a.value.Atom != nil && a.value.Atom.Quoted != "" {
+			continue
+		}
+		if _, err := env.value(a.name); err != nil {
+			x.fault(a.line.Start(), "parameter "+a.name+": "+err.Error(), "a number or a formula of parameters")
+		}
+	}
 }

@@ -1,0 +1,406 @@
+package netlist
+
+import (
+	"fmt"
+	"strings"
+
+	"railproof/netlist/syntax"
+)
+
+// scope is the body of a netlist file or of a subcircuit: its cards by name, elements still unparsed.
+type scope struct {
+	name     string
+	parent   *scope
+	at       Position
+	pins     []string       // of a subcircuit, as written
+	defaults []assignment   // its parameters
+	elements []*syntax.Line // in order
+	models   map[string]*syntax.Line
+	subckts  map[string]*scope
+	params   []assignment
+	funcs    map[string]*function
+}
+
+// assignment is NAME = value of a .param card or a subcircuit's parameter list.
+type assignment struct {
+	name  string // lower case
+	value *syntax.Value
+	line  *syntax.Line
+}
+
+func newScope(name string, parent *scope) *scope {
+	return &scope{
+		name: name, parent: parent, models: map[string]*syntax.Line{}, subckts: map[string]*scope{},
+		funcs: map[string]*function{},
+	}
+}
+
+// model finds a model card by name in this scope or an enclosing one.
+func (s *scope) model(name string) (*syntax.Line, *scope, bool) {
+	for at := s; at != nil; at = at.parent {
+		if l, ok := at.models[name]; ok {
+			return l, at, true
+		}
+	}
+	return nil, nil, false
+}
+
+// subckt finds a subcircuit by name in this scope or an enclosing one.
+func (s *scope) subckt(name string) (*scope, bool) {
+	for at := s; at != nil; at = at.parent {
+		if d, ok := at.subckts[name]; ok {
+			return d, true
+		}
+	}
+	return nil, false
+}
+
+// maxFaults is how many diagnostics one input may have before reading ends.
+const maxFaults = 50
+
+// collector sorts the cards of a netlist and of what it includes into scopes.
+type collector struct {
+	files       *files
+	top         *scope
+	current     *scope
+	inline      []DutyLine
+	globals     map[string]bool
+	remarks     []Remark
+	faults      []Diagnostic
+	skipped     map[string]bool // dot cards named once
+	temperature float64
+	title       string
+	titleLine   *syntax.Line
+	depth       int
+	ended       bool
+}
+
+func (c *collector) fault(at Position, what, expected string) {
+	if len(c.faults) < maxFaults {
+		c.faults = append(c.faults, Diagnostic{At: at, What: what, Expected: expected})
+	}
+}
+
+func (c *collector) remark(kind RemarkKind, at Position, element, text string) {
+	c.remarks = append(c.remarks, Remark{Kind: kind, At: at, Element: element, Text: text})
+}
+
+// analysis cards and output cards are skipped without complaint.
+var silent = words(`tran ac dc op tf sens noise disto pz print plot probe probe64 meas measure save four fourier
+	ic nodeset width option options backanno end ends title step wave savebias loadbias net mc wcase`)
+
+func words(text string) map[string]bool {
+	set := map[string]bool{}
+	for _, w := range strings.Fields(text) {
+		set[w] = true
+	}
+	return set
+}
+
+// block sorts the logical lines of one file. section limits it to a `.lib NAME` section, lower case.
+func (c *collector) block(lines []syntax.Line, section string) {
+	control, inside, opened := false, section == "", c.current
+	for k := range lines {
+		l := &lines[k]
+		if len(c.faults) >= maxFaults {
+			return
+		}
+		word := firstWord(l.Text)
+		if control {
+			control = !strings.EqualFold(word, ".endc")
+			continue
+		}
+		if c.ended {
+			if word != "" && word[0] != '.' && looksLikeElement(l.Text) && c.depth == 0 {
+				c.remark(RemarkAfterEnd, l.Start(), word, "stands behind .end and is not part of the circuit")
+			}
+			control = strings.EqualFold(word, ".control")
+			continue
+		}
+		if word == "" || word[0] == '*' {
+			continue
+		}
+		if word[0] != '.' {
+			if inside {
+				c.current.elements = append(c.current.elements, l)
+			}
+			continue
+		}
+		key := strings.ToLower(word[1:])
+		if key == "lib" {
+			name, end := sectionHead(l.Text), -1
+			if name != "" {
+				end = sectionEnd(lines, k)
+			}
+			if end >= 0 { // a section definition
+				if section != "" && strings.EqualFold(name, section) {
+					inside = true
+				} else if section == "" {
+					inside = false
+				}
+				continue
+			}
+		}
+		if key == "endl" {
+			inside = section == ""
+			continue
+		}
+		if !inside {
+			continue
+		}
+		switch key {
+		case "control":
+			control = true
+		case "end":
+			if c.depth == 0 {
+				c.ended = true
+			}
+		default:
+			c.directive(key, l)
+		}
+	}
+	if c.current != opened && len(c.faults) < maxFaults {
+		c.fault(c.current.at, "subcircuit "+c.current.name+" has no .ends", ".ends before the end of the file")
+		c.current = opened
+	}
+}
+
+// firstWord is the text up to the first blank or bracket.
+func firstWord(text string) string {
+	if k := strings.IndexAny(text, " \t"); k >= 0 {
+		return text[:k]
+	}
+	return text
+}
+
+// sectionHead returns NAME of `.lib NAME`, "" if the card has another number of words.
+func sectionHead(text string) string {
+	if f := strings.Fields(text); len(f) == 2 {
+		return f[1]
+	}
+	return ""
+}
+
+// sectionEnd finds the .endl of a section that begins at line k, -1 if another .lib comes first.
+func sectionEnd(lines []syntax.Line, k int) int {
+	for j := k + 1; j < len(lines); j++ {
+		if len(lines[j].Text) > 3 && lines[j].Text[0] == '.' {
+			switch word := strings.ToLower(firstWord(lines[j].Text)); word {
+			case ".endl":
+				return j
+			case ".lib":
+				if sectionHead(lines[j].Text) != "" {
+					return -1
+				}
+			}
+		}
+	}
+	return -1
+}
+
+// looksLikeElement reports a line with a letter first and at least three words.
+func looksLikeElement(text string) bool {
+	f := strings.Fields(text)
+	return len(f) >= 3 && isLetter(f[0][0])
+}
+
+func isLetter(b byte) bool { return b >= 'a' && b <= 'z' || b >= 'A' && b <= 'Z' }
+
+func (c *collector) directive(key string, l *syntax.Line) {
+	switch key {
+	case "include", "inc", "incl", "lib":
+		c.include(key, l)
+		return
+	case "model":
+		f := strings.Fields(strings.NewReplacer("(", " ", "=", " ", ",", " ").Replace(l.Text[:min(len(l.Text), 400)]))
+		if len(f) < 2 {
+			c.fault(l.Start(), ".model without a name", ".model NAME TYPE(parameters)")
+			return
+		}
+		name := strings.ToLower(f[1])
+		if _, double := c.current.models[name]; double {
+			c.remark(RemarkModel, l.Start(), "", "model "+f[1]+" is defined again; the first definition holds")
+			return
+		}
+		c.current.models[name] = l
+		return
+	}
+	if silent[key] && key != "title" && key != "ends" && key != "options" && key != "option" {
+		return
+	}
+	switch key {
+	case "subckt", "ends", "param", "params", "parameter", "func", "global", "temp", "temperature", "title", "options", "option":
+	default:
+		if !c.skipped[key] {
+			c.skipped[key] = true
+			c.remark(RemarkNotRead, l.Start(), "", "."+key)
+		}
+		return
+	}
+	if key == "ends" {
+		if c.current.parent == nil {
+			c.fault(l.Start(), ".ends without .subckt", ".subckt before it")
+			return
+		}
+		c.current = c.current.parent
+		return
+	}
+	if key == "title" {
+		c.title = strings.TrimSpace(l.Text[len(firstWord(l.Text)):])
+		return
+	}
+	card, fault := syntax.ParseDirective(l)
+	if fault != nil {
+		if key == "options" || key == "option" {
+			return
+		}
+		c.faults = append(c.faults, *fault)
+		if key == "subckt" { // keep the nesting right
+			c.open("?", l)
+		}
+		return
+	}
+	switch key {
+	case "subckt":
+		c.subckt(card, l)
+	case "func":
+		c.defineFunction(l)
+	case "global":
+		for _, a := range atoms(card.Items) {
+			c.globals[strings.ToLower(a.Text())] = true
+		}
+	case "temp", "temperature":
+		if list := atoms(card.Items); len(list) > 0 {
+			if v, ok := spice(list[0].Text()); ok && v > -273 && v < 1000 {
+				c.temperature = v
+			}
+		}
+	case "options", "option":
+		for _, i := range card.Items {
+			if i.Assign != nil && i.Assign.Value != nil && strings.EqualFold(i.Assign.Key.Text(), "temp") {
+				if v, ok := spice(i.Assign.Value.Atom.Text()); ok && v > -273 && v < 1000 {
+					c.temperature = v
+				}
+			}
+		}
+	default:
+		c.current.params = append(c.current.params, c.assignments(card.Items, l)...)
+	}
+}
+
+// assignments reads NAME=value pairs; words without a value are an error unless they are keywords.
+func (c *collector) assignments(items []*syntax.Item, l *syntax.Line) []assignment {
+	var list []assignment
+	for _, i := range items {
+		switch {
+		case i.Comma:
+		case i.Group != nil:
+			list = append(list, c.assignments(i.Group.Items, l)...)
+		case i.Assign != nil && i.Assign.Value != nil:
+			list = append(list, assignment{strings.ToLower(i.Assign.Key.Text()), i.Assign.Value, l})
+		case i.Assign != nil:
+			text := i.Assign.Key.Text()
+			if !strings.HasSuffix(text, ":") {
+				c.fault(l.Position(i.Assign.Key.Pos.Offset), fmt.Sprintf("parameter %q has no value", text), "NAME=value")
+			}
+		case i.Equals:
+			c.fault(l.Start(), "an = without a name before it", "NAME=value")
+		}
+	}
+	return list
+}
+
+func (c *collector) open(name string, l *syntax.Line) *scope {
+	s := newScope(name, c.current)
+	s.at = l.Start()
+	c.current = s
+	return s
+}
+
+func (c *collector) subckt(card *syntax.DirectiveCard, l *syntax.Line) {
+	var positional []*syntax.Atom
+	var assigned []*syntax.Item
+	for _, i := range card.Items {
+		if i.Assign != nil && i.Assign.Value == nil {
+			if strings.HasSuffix(i.Assign.Key.Text(), ":") {
+				continue
+			}
+			positional = append(positional, i.Assign.Key)
+		} else if i.Group != nil {
+			positional = append(positional, atoms(i.Group.Items)...)
+		} else {
+			assigned = append(assigned, i)
+		}
+	}
+	if len(positional) == 0 {
+		c.fault(l.Start(), ".subckt without a name", ".subckt NAME node ...")
+		c.open("?", l)
+		return
+	}
+	name := positional[0].Text()
+	parent := c.current
+	s := c.open(name, l)
+	for _, p := range positional[1:] {
+		s.pins = append(s.pins, p.Text())
+	}
+	s.defaults = c.assignments(assigned, l)
+	if depthOf(s) > maxSubcktDepth {
+		c.fault(l.Start(), fmt.Sprintf("subcircuit definitions nest more than %d deep", maxSubcktDepth), "a flatter netlist")
+		return
+	}
+	key := strings.ToLower(name)
+	if _, double := parent.subckts[key]; double {
+		c.remark(RemarkModel, l.Start(), "", "subcircuit "+name+" is defined again; the first definition holds")
+		return
+	}
+	parent.subckts[key] = s
+}
+
+func depthOf(s *scope) int {
+	n := 0
+	for ; s != nil; s = s.parent {
+		n++
+	}
+	return n
+}
+
+// defineFunction reads `.func name(a,b) {body}`.
+func (c *collector) defineFunction(l *syntax.Line) {
+	text := strings.TrimSpace(l.Text[len(".func"):])
+	open, end := strings.IndexByte(text, '('), strings.IndexByte(text, ')')
+	if open <= 0 || end < open {
+		c.fault(l.Start(), ".func without arguments in brackets", ".func NAME(a,b) {formula}")
+		return
+	}
+	f := &function{}
+	for _, a := range strings.Split(text[open+1:end], ",") {
+		if a = strings.ToLower(strings.TrimSpace(a)); a != "" {
+			f.args = append(f.args, a)
+		}
+	}
+	body := strings.TrimSpace(strings.TrimPrefix(strings.TrimSpace(text[end+1:]), "="))
+	if len(body) >= 2 && (body[0] == '{' || body[0] == '\'') {
+		body = body[1 : len(body)-1]
+	}
+	parsed, err := syntax.ParseFormula(body)
+	if err != nil {
+		c.fault(l.Start(), err.Error(), "a formula")
+		return
+	}
+	f.body = parsed
+	c.current.funcs[strings.ToLower(strings.TrimSpace(text[:open]))] = f
+}
+
+// atoms flattens items to their words and expressions, keys of assignments included.
+func atoms(items []*syntax.Item) []*syntax.Atom {
+	var list []*syntax.Atom
+	for _, i := range items {
+		switch {
+		case i.Group != nil:
+			list = append(list, atoms(i.Group.Items)...)
+		case i.Assign != nil:
+			list = append(list, i.Assign.Key)
+		}
+	}
+	return list
+}

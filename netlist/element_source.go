@@ -1,0 +1,373 @@
+package netlist
+
+import (
+	"fmt"
+	"math"
+	"strings"
+
+	"railproof/netlist/syntax"
+)
+
+// source reads V and I: a DC value, DC v, AC m p and a waveform, in any order, with or without brackets.
+func (x *expander) source(lv *level, c *elementCard) {
+	nodes := []NodeID{x.node(lv, c.words[0].Text()), x.node(lv, c.words[1].Text())}
+	rest := c.words[2:]
+	var wave Waveform
+	dc, stated := 0.0, false
+	fail := func(w *syntax.Atom, err error) {
+		x.fault(c.line.Position(w.Pos.Offset), err.Error(), "a number, DC, AC or a waveform")
+	}
+	numbers := func(k int) ([]float64, int, bool) {
+		var list []float64
+		for k < len(rest) {
+			if !rest[k].IsExpression() && keyword(rest[k].Text()) {
+				break
+			}
+			v, err := lv.env.atom(rest[k])
+			if err != nil {
+				fail(rest[k], err)
+				return nil, k, false
+			}
+			list = append(list, v)
+			k++
+		}
+		return list, k, true
+	}
+	for k := 0; k < len(rest); {
+		text := strings.ToLower(rest[k].Text())
+		switch {
+		case rest[k].IsExpression():
+			v, err := lv.env.atom(rest[k])
+			if err != nil {
+				fail(rest[k], err)
+				return
+			}
+			dc, stated = v, true
+			k++
+		case text == "dc":
+			k++
+			if k < len(rest) && !keyword(rest[k].Text()) {
+				v, err := lv.env.atom(rest[k])
+				if err != nil {
+					fail(rest[k], err)
+					return
+				}
+				dc, stated = v, true
+				k++
+			}
+		case text == "ac", text == "distof1", text == "distof2":
+			k++
+			for k < len(rest) && !keyword(rest[k].Text()) {
+				if _, err := lv.env.atom(rest[k]); err != nil {
+					break
+				}
+				k++
+			}
+		case text == "sin" || text == "sine" || text == "pulse" || text == "exp" || text == "pwl" || text == "sffm" || text == "am":
+			if text == "pwl" && k+1 < len(rest) && isFileWord(rest[k+1].Text()) || text == "pwl" && hasKey(c, "file") {
+				x.remark(RemarkLibraryNotRead, c.line.Start(), lv.prefix+c.shown, "its waveform stands in a file")
+				x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "its waveform stands in a file that is not read"}, "")
+				return
+			}
+			list, next, ok := numbers(k + 1)
+			if !ok {
+				return
+			}
+			w, why := waveform(text, list)
+			if why != "" {
+				x.fault(c.line.Position(rest[k].Pos.Offset), why, waveForms[text])
+				return
+			}
+			if w == nil {
+				x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "a waveform of kind " + text + " is not modelled"}, "")
+				return
+			}
+			wave, k = w, next
+		default:
+			v, err := lv.env.atom(rest[k])
+			if err != nil {
+				if k == 0 && len(rest) == 1 {
+					x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "its value is missing"}, rest[k].Text())
+					return
+				}
+				fail(rest[k], err)
+				return
+			}
+			dc, stated = v, true
+			k++
+		}
+	}
+	if v, ok := c.assigned("dc"); ok {
+		if n, err := lv.env.evaluate(v, 0); err == nil {
+			dc, stated = n, true
+		}
+	}
+	if wave == nil {
+		wave = Constant{Level: dc}
+	}
+	if c.letter == 'I' {
+		if v, ok := c.assigned("r"); ok && !stated && len(rest) == 0 { // a current source used as a resistance
+			if n, err := lv.env.evaluate(v, 0); err == nil {
+				x.add(lv, c, nodes, Resistor{Ohms: n}, "")
+				return
+			}
+		}
+		x.add(lv, c, nodes, CurrentSource{Wave: wave}, "")
+		return
+	}
+	s := VoltageSource{Wave: wave, ValueMissing: !stated && len(rest) == 0}
+	if v, ok := c.assigned("rser"); ok {
+		if n, err := lv.env.evaluate(v, 0); err == nil && n >= 0 {
+			s.SeriesOhms = n
+		}
+	}
+	x.add(lv, c, nodes, s, "")
+}
+
+func hasKey(c *elementCard, key string) bool { _, ok := c.assigned(key); return ok }
+
+func isFileWord(text string) bool {
+	return strings.HasPrefix(strings.ToLower(text), "file") || strings.ContainsAny(text, `/\`)
+}
+
+// keyword reports a word that begins a clause of a source.
+func keyword(text string) bool {
+	switch strings.ToLower(text) {
+	case "dc", "ac", "sin", "sine", "pulse", "exp", "pwl", "sffm", "am", "distof1", "distof2":
+		return true
+	}
+	return false
+}
+
+// waveForms says what each waveform takes.
+var waveForms = map[string]string{
+	"sin": "SIN(offset amplitude frequency delay damping phase)", "sine": "SINE(offset amplitude frequency delay damping phase)",
+	"pulse": "PULSE(low high delay rise fall width period)", "exp": "EXP(low high delay tau delay tau)",
+	"pwl": "PWL(time value time value ...)",
+}
+
+// waveform makes a waveform of its numbers, or says what is wrong with them.
+func waveform(kind string, n []float64) (Waveform, string) {
+	at := func(k int) float64 {
+		if k < len(n) {
+			return n[k]
+		}
+		return 0
+	}
+	switch kind {
+	case "sin", "sine":
+		if len(n) < 2 {
+			return nil, "a sine without amplitude"
+		}
+		s := Sine{Offset: at(0), Amplitude: at(1), Frequency: at(2), Delay: at(3), Damping: at(4), PhaseDegrees: at(5)}
+		if s.Frequency <= 0 {
+			return nil, "a sine without frequency"
+		}
+		return s, ""
+	case "pulse":
+		if len(n) < 2 {
+			return nil, "a pulse without its two levels"
+		}
+		p := Pulse{Low: at(0), High: at(1), Delay: at(2), Rise: at(3), Fall: at(4), Width: at(5), Period: at(6)}
+		if p.Rise < 0 || p.Fall < 0 || p.Width < 0 || p.Period < 0 {
+			return nil, "a pulse with a negative time"
+		}
+		if p.Period > 0 {
+			shortest := p.Period * 1e-6
+			p.Rise, p.Fall = math.Max(p.Rise, shortest), math.Max(p.Fall, shortest)
+			if len(n) < 6 {
+				p.Width = p.Period
+			}
+		}
+		return p, ""
+	case "exp":
+		if len(n) < 2 {
+			return nil, "an exponential without its two levels"
+		}
+		return Exponential{
+			Low: at(0), High: at(1), RiseDelay: at(2), RiseTau: math.Max(at(3), 1e-12),
+			FallDelay: math.Max(at(4), at(2)), FallTau: math.Max(at(5), 1e-12),
+		}, ""
+	case "pwl":
+		if len(n) < 2 {
+			return nil, "a piecewise line without points"
+		}
+		var p Piecewise
+		for k := 0; k+1 < len(n); k += 2 {
+			if k > 0 && n[k] < p.Times[len(p.Times)-1] {
+				return nil, "a piecewise line whose times run backwards"
+			}
+			p.Times, p.Levels = append(p.Times, n[k]), append(p.Levels, n[k+1])
+		}
+		return p, ""
+	}
+	return nil, ""
+}
+
+// voltageControlled reads E and G: linear, polynomial of one voltage, or a formula.
+func (x *expander) voltageControlled(lv *level, c *elementCard) {
+	nodes := []NodeID{x.node(lv, c.words[0].Text()), x.node(lv, c.words[1].Text())}
+	out := OutVoltage
+	if c.letter == 'G' {
+		out = OutCurrent
+	}
+	for _, key := range []string{"value", "vol", "cur"} {
+		if v, ok := c.assigned(key); ok && v.Atom != nil {
+			x.formulaSource(lv, c, nodes, out, v.Atom.Text(), v.Atom.Pos.Offset)
+			return
+		}
+	}
+	rest := c.words[2:]
+	if len(rest) > 0 {
+		switch strings.ToLower(rest[0].Text()) {
+		case "value", "vol", "cur":
+			if len(rest) > 1 {
+				x.formulaSource(lv, c, nodes, out, rest[1].Text(), rest[1].Pos.Offset)
+				return
+			}
+		case "poly":
+			x.polynomial(lv, c, nodes, out, rest[1:])
+			return
+		case "table", "laplace", "freq", "chebyshev":
+			x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "a source of kind " + strings.ToLower(rest[0].Text()) + " is not modelled"}, "")
+			return
+		}
+		if rest[0].IsExpression() {
+			x.formulaSource(lv, c, nodes, out, rest[0].Text(), rest[0].Pos.Offset)
+			return
+		}
+	}
+	if len(rest) < 3 {
+		x.fault(c.line.Start(), fmt.Sprintf("%s has %d words behind its name", c.shown, len(c.words)), expectedCard[c.letter])
+		return
+	}
+	nodes = append(nodes, x.node(lv, rest[0].Text()), x.node(lv, rest[1].Text()))
+	gain, err := lv.env.atom(rest[2])
+	if err != nil {
+		x.fault(c.line.Position(rest[2].Pos.Offset), err.Error(), "a gain")
+		return
+	}
+	x.add(lv, c, nodes, VoltageControlled{Output: out, Gain: gain}, "")
+}
+
+// polynomial reads POLY(1) n+ n- p0 p1 ...; more variables are not modelled.
+func (x *expander) polynomial(lv *level, c *elementCard, nodes []NodeID, out Quantity, rest []*syntax.Atom) {
+	if len(rest) < 4 || rest[0].Text() != "1" {
+		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "a polynomial of several voltages is not modelled"}, "")
+		return
+	}
+	var p []float64
+	for _, w := range rest[3:] {
+		v, err := lv.env.atom(w)
+		if err != nil {
+			x.fault(c.line.Position(w.Pos.Offset), err.Error(), "a coefficient")
+			return
+		}
+		p = append(p, v)
+	}
+	if len(p) == 1 { // one coefficient is the linear one
+		p = []float64{0, p[0]}
+	}
+	probe := Probe{Plus: x.node(lv, rest[1].Text()), Minus: x.node(lv, rest[2].Text())}
+	f := func(v []float64, _ float64, wrt int) (float64, float64) {
+		y, dy := 0.0, 0.0
+		for k := len(p) - 1; k >= 0; k-- {
+			dy = dy*v[0] + y
+			y = y*v[0] + p[k]
+		}
+		return y, dy * truth(wrt == 0)
+	}
+	x.add(lv, c, nodes, Behavioural{Output: out, Expression: &formulaExpression{f, []Probe{probe}, "polynomial"}}, "")
+}
+
+func (x *expander) behaviouralCard(lv *level, c *elementCard) {
+	nodes := []NodeID{x.node(lv, c.words[0].Text()), x.node(lv, c.words[1].Text())}
+	for _, a := range c.assigns {
+		if a.name != "v" && a.name != "i" {
+			continue
+		}
+		out := OutVoltage
+		if a.name == "i" {
+			out = OutCurrent
+		}
+		// The formula may stand without braces: it is everything behind the equals sign.
+		text := c.line.Text
+		offset := 0
+		if a.value.Atom != nil && a.value.Atom.IsExpression() {
+			text, offset = a.value.Atom.Text(), a.value.Atom.Pos.Offset
+		} else if k := strings.IndexByte(text, '='); k >= 0 {
+			text, offset = strings.TrimSpace(text[k+1:]), k+1
+		}
+		x.formulaSource(lv, c, nodes, out, text, offset)
+		return
+	}
+	x.add(lv, c, nodes, Unknown{Letter: 'B', Why: "it has no V= or I= formula"}, "")
+}
+
+// formulaSource compiles a formula into a behavioural source. A formula that cannot be read leaves the
+// element unknown: macromodels carry functions of their own.
+func (x *expander) formulaSource(lv *level, c *elementCard, nodes []NodeID, out Quantity, text string, offset int) {
+	f, err := syntax.ParseFormula(text)
+	if err != nil {
+		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: err.Error()}, "")
+		return
+	}
+	e := &formulaExpression{text: f.String()}
+	r := &resolver{value: lv.env.value, function: lv.env.function}
+	var currents []int
+	r.probe = func(probe string) (int, error) {
+		inside := probe[2 : len(probe)-1]
+		if upper(probe[0]) == 'I' {
+			id, ok := x.byName[strings.ToLower(lv.prefix+strings.TrimSpace(inside))]
+			if !ok {
+				return 0, fmt.Errorf("it refers to the current of %s, which is not defined before it", strings.TrimSpace(inside))
+			}
+			switch x.circuit.Elements[id].Device.(type) {
+			case VoltageSource, VoltageControlled, Inductor:
+			default:
+				return 0, fmt.Errorf("it refers to the current of %s, which is no voltage source", strings.TrimSpace(inside))
+			}
+			e.probes = append(e.probes, Probe{Current: true, Element: id})
+			currents = append(currents, len(e.probes)-1)
+			return len(e.probes) - 1, nil
+		}
+		plus, minus, two := strings.Cut(inside, ",")
+		p := Probe{Plus: x.node(lv, strings.TrimSpace(plus)), Minus: Ground}
+		if two {
+			p.Minus = x.node(lv, strings.TrimSpace(minus))
+		}
+		for k, old := range e.probes {
+			if old == p {
+				return k, nil
+			}
+		}
+		e.probes = append(e.probes, p)
+		return len(e.probes) - 1, nil
+	}
+	compiled, err := r.formula(f)
+	if err != nil {
+		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: err.Error()}, "")
+		return
+	}
+	e.f = compiled
+	x.add(lv, c, nodes, Behavioural{Output: out, Expression: e}, "")
+}
+
+// formulaExpression is a compiled formula as an Expression.
+type formulaExpression struct {
+	f      compiled
+	probes []Probe
+	text   string
+}
+
+func (e *formulaExpression) Probes() []Probe { return e.probes }
+
+func (e *formulaExpression) Evaluate(probes []float64, t float64, gradient []float64) float64 {
+	value, _ := e.f(probes, t, -1)
+	for k := range gradient {
+		_, gradient[k] = e.f(probes, t, k)
+	}
+	return value
+}
+
+func (e *formulaExpression) String() string { return e.text }
