@@ -3,7 +3,7 @@
 import importlib
 from dataclasses import dataclass, field
 
-CHAPTERS = ("rectifiers",)
+CHAPTERS = ("rectifiers", "variants", "filters", "transformers", "shunts", "regulators")
 LIST = []
 
 

@@ -15,19 +15,25 @@ import time
 import numpy as np
 import scipy
 
-import circuits
-import measure
-import period
+sys.dont_write_bytecode = True
+
+import circuits  # noqa: E402
+import measure  # noqa: E402
+import period  # noqa: E402
 
 HERE = os.path.dirname(os.path.abspath(__file__))
-FLOOR = {"V": 0.1, "A": 1e-3, "W": 1e-3, "A2s": 1e-6, "": 1e-2}  # below these the error counts absolutely
+INSTANTS = 20000  # of a period, for circuits without states
+NEAR_ZERO = 1e-3  # below this part of the largest value of its unit in the circuit an error counts absolutely
 
 
 def difference(rows, others):
     """Largest relative difference of two lists of rows, and where."""
+    largest = {}
+    for _, _, value, unit in rows:
+        largest[unit] = max(largest.get(unit, 1e-9), abs(value))
     worst = (0.0, "")
     for (e, q, a, unit), (_, _, b, _) in zip(rows, others):
-        worst = max(worst, (abs(a - b) / max(abs(a), FLOOR[unit]), e + " " + q))
+        worst = max(worst, (abs(a - b) / max(abs(a), NEAR_ZERO * largest[unit]), e + " " + q))
     return worst
 
 
@@ -38,39 +44,27 @@ def steady(c, verbose):
     tight, second = c.rtol, c.second
     x, slope = period.settle(f, x0, c.period, rtol=tight, verbose=verbose) if len(x0) else (np.zeros(0), None)
     if not len(x0):  # no states: an algebraic circuit
-        t, nodes, currents = algebraic(equations, c.period, period.SAMPLES)
-        other = algebraic(equations, c.period, period.SAMPLES // 2)
-        rows, rows2 = measure.stresses(cards, t, nodes, currents), measure.stresses(cards, *other)
+        rows, rows2 = [], []
+        for samples, out in ((INSTANTS, rows), (INSTANTS // 2, rows2)):
+            t, nodes, currents = period.sampled(equations, np.linspace(0, c.period, samples + 1), np.empty((0, samples + 1)))
+            out += measure.stresses(cards, t, nodes, currents)
         return rows, difference(rows, rows2), measure.residual(cards, t, nodes, currents)
-    t, _, nodes, currents = period.waveform(equations, x, 0, c.period, "LSODA", tight)
+    t, nodes, currents = period.waveform(equations, x, 0, c.period, "LSODA", tight, c.period / 1000)
     rows = measure.stresses(cards, t, nodes, currents)
     method, rtol = second
     x2, _ = period.settle(f, x, c.period, rtol=rtol, method=method, slope=slope, verbose=verbose)
-    step = c.period / 2000 if method == "Radau" else None
-    t2, _, nodes2, currents2 = period.waveform(equations, x2, 0, c.period, method, rtol, step=step)
+    t2, nodes2, currents2 = period.waveform(equations, x2, 0, c.period, method, rtol, c.period / 2000)
     rows2 = measure.stresses(cards, t2, nodes2, currents2)
     return rows, difference(rows, rows2), measure.residual(cards, t, nodes, currents)
-
-
-def algebraic(equations, T, samples):
-    t = np.linspace(0, T, samples + 1)
-    nodes, currents = {"0": np.zeros(samples + 1)}, {}
-    for k in range(samples + 1):
-        _, v, i = equations(t[k], ())
-        for store, row in ((nodes, v), (currents, i)):
-            for name, value in row.items():
-                store.setdefault(name, np.empty(samples + 1))[k] = value
-    return t, nodes, currents
 
 
 def cold(c, verbose):
     """Surge rows of the switch-on transient by two methods."""
     equations, cards = c.build(), c.cards
-    samples = 10000 * c.cycles
     runs = []
     for method, rtol in (("LSODA", c.rtol), c.second):
-        t, _, nodes, currents = period.waveform(equations, np.array(c.start, float), 0, c.cycles * c.period,
-                                                method, rtol, samples=samples, step=c.period / 400)
+        t, nodes, currents = period.waveform(equations, np.array(c.start, float), 0, c.cycles * c.period,
+                                             method, rtol, c.period / 1000)
         runs.append(measure.surges(cards, t, currents, c.period)[0])
         if len(runs) == 1:
             fault = measure.residual(cards, t, nodes, currents)
@@ -87,7 +81,7 @@ def write(c, verbose):
         error = max(error, difference(rows, rows2))
     method, rtol = c.second
     if not len(c.start):
-        how = "algebraic: node equations solved at %d instants of a period" % period.SAMPLES
+        how = "algebraic: node equations solved at %d instants of a period" % INSTANTS
     else:
         how = "scipy solve_ivp LSODA rtol %g, %s; checked with %s rtol %g" % (
             c.rtol, "from rest over %d cycles" % c.cycles if c.mode == "cold-start" else "shooting", method, rtol)

@@ -126,13 +126,15 @@ def root(residual, low, high):
 
 def solve2(residual, a, b, limit=0.5):
     """Newton's method for two equations; residual(a, b) returns (r1, r2) and the matrix rows. Steps are limited."""
+    before = float("inf")
     for _ in range(500):
         r1, r2, (j11, j12), (j21, j22) = residual(a, b)
         det = j11 * j22 - j12 * j21
         da, db = (r1 * j22 - r2 * j12) / det, (j11 * r2 - j21 * r1) / det
         size = max(abs(da), abs(db))
-        if size < 1e-13 * (1 + abs(a) + abs(b)):
+        if size < 1e-13 * (1 + abs(a) + abs(b)) or before <= size < 1e-7:  # settled, or at rounding
             return a - da, b - db
+        before = size
         k = min(1.0, limit / size)
         a, b = a - k * da, b - k * db
     raise ArithmeticError("Newton's method did not settle: residuals %g %g at %g %g" % (r1, r2, a, b))

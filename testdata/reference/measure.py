@@ -7,10 +7,9 @@ every element against its own law with the values on its card, so that a slip in
 import re
 
 import numpy as np
-from scipy.integrate import cumulative_trapezoid
 
 from laws import GMIN, VT
-from period import highest, mean
+from period import highest, integral, mean
 
 FACTORS = {"": 1, "f": 1e-15, "p": 1e-12, "n": 1e-9, "u": 1e-6, "m": 1e-3, "k": 1e3, "meg": 1e6, "g": 1e9}
 
@@ -62,7 +61,6 @@ def residual(cards, t, nodes, currents):
 
     inductances = {e: number(f[2]) for e, f in elements.items() if e[0] == "L"}
     couplings = [(f[0], f[1], number(f[2])) for e, f in elements.items() if e[0] == "K"]
-    dt = t[1] - t[0]
     for e, f in elements.items():
         kind = e[0]
         if kind == "K":
@@ -93,7 +91,7 @@ def residual(cards, t, nodes, currents):
         elif kind == "V":
             fault(e, v, sine(f[2:], t))
         elif kind == "C":
-            fault(e, cumulative_trapezoid(i, dx=dt, initial=0) / number(f[2]), v - v[0], 1e-3 * np.max(np.abs(v)))
+            fault(e, integral(t, i) / number(f[2]), (v - v[0])[::2], 1e-3 * np.max(np.abs(v)))
         elif kind == "L":
             flux = inductances[e] * (i - i[0])
             for a, b, k in couplings:
@@ -101,7 +99,7 @@ def residual(cards, t, nodes, currents):
                     other = b if e == a else a
                     flux = flux + k * np.sqrt(inductances[a] * inductances[b]) * (currents[other] - currents[other][0])
             scale = inductances[e] * np.max(np.abs(i))
-            fault(e, cumulative_trapezoid(v, dx=dt, initial=0), flux, 1e-2 * scale)
+            fault(e, integral(t, v), flux[::2], 1e-2 * scale)
         elif kind == "D":
             m = models[f[2]]
             u = v - m.get("RS", 0) * i
@@ -218,18 +216,18 @@ def surges(cards, t, currents, T):
     """
     elements, _, _ = read(cards)
     rows, left_out = [], []
-    per = int(round(T / (t[1] - t[0])))
+    even = t[::2]
+    starts = [int(np.searchsorted(even, k * T - 1e-9)) for k in range(int(round(t[-1] / T)) + 1)]
     for e, f in elements.items():
         if e[0] != "D":
             continue
         i = np.maximum(currents[e], 0)
-        peak = highest(t, i, periodic=False)
+        peak = highest(t, i)
         rows.append((e, "surge-current", peak, "A"))
-        total = cumulative_trapezoid(i * i, dx=t[1] - t[0], initial=0)
-        cycle = max(total[k + per] - total[k] for k in range(0, len(t) - per, per))
-        on = i > 1e-4 * peak
-        edges = np.flatnonzero(np.diff(on.astype(int)))
-        bounds = [0, *edges, len(t) - 1]
+        total = integral(t, i * i)
+        cycle = max(total[b] - total[a] for a, b in zip(starts, starts[1:]))
+        on = i[::2] > 1e-4 * peak
+        bounds = [0, *np.flatnonzero(np.diff(on.astype(int))), len(even) - 1]
         pulse = max(total[b] - total[a] for a, b in zip(bounds, bounds[1:]))
         if abs(pulse - cycle) < 1e-3 * cycle:
             rows.append((e, "surge-i2t", cycle, "A2s"))

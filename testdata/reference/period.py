@@ -3,8 +3,6 @@
 import numpy as np
 from scipy.integrate import solve_ivp
 
-SAMPLES = 20000  # per period; even, for Simpson's rule
-
 
 def integrate(f, x, start, stop, method, rtol, dense=False, step=None):
     """Solve from start to stop; the result of solve_ivp."""
@@ -34,8 +32,9 @@ def settle(f, x, T, rtol=1e-10, method="LSODA", slope=None, plain=2, verbose=Fal
             print("   ", k, gap, x)
         if gap < 30 * rtol or (gap < 1e3 * rtol and gap > 0.5 * last):
             return x, slope
+        stale = gap > 0.1 * last
         last = gap
-        if given is None and (k < 3 or k % 4 == 0 or slope is None):
+        if given is None and (slope is None or stale):
             slope = np.empty((len(x), len(x)))
             for j in range(len(x)):
                 h = 1e-5 * (1 + abs(x[j]))
@@ -46,39 +45,51 @@ def settle(f, x, T, rtol=1e-10, method="LSODA", slope=None, plain=2, verbose=Fal
     raise ArithmeticError("no periodic steady state: gap %g" % gap)
 
 
-def waveform(equations, x, start, stop, method, rtol, samples=SAMPLES, step=None):
-    """Times, states, node voltages and element currents at equal intervals."""
+def waveform(equations, x, start, stop, method, rtol, step, parts=4):
+    """Times, node voltages and element currents over the span.
+
+    Sampled at the integrator's own steps, each cut into four (an even number of) equal parts, so that the samples
+    crowd where the solution bends or jumps and Simpson's rule applies to each pair of parts.
+    """
     f = lambda t, y: equations(t, y)[0]
     result = integrate(f, x, start, stop, method, rtol, dense=True, step=step)
-    t = np.linspace(start, stop, samples + 1)
+    lengths = np.diff(result.t)
+    t = (result.t[:-1, None] + lengths[:, None] * np.arange(parts) / parts).ravel()
+    t = np.append(t, stop)
     y = result.sol(t)
-    y[:, 0], y[:, -1] = x, result.y[:, -1]
+    y[:, ::parts] = result.y
+    return sampled(equations, t, y)
+
+
+def sampled(equations, t, y):
+    """Node voltages and element currents at times t with states y."""
     nodes, currents = {}, {}
-    for k in range(samples + 1):
+    for k in range(len(t)):
         _, v, i = equations(t[k], y[:, k])
         for store, row in ((nodes, v), (currents, i)):
             for name, value in row.items():
-                store.setdefault(name, np.empty(samples + 1))[k] = value
-    nodes["0"] = np.zeros(samples + 1)
-    return t, y, nodes, currents
+                store.setdefault(name, np.empty(len(t)))[k] = value
+    nodes["0"] = np.zeros(len(t))
+    return t, nodes, currents
+
+
+def integral(t, y):
+    """Running integral by Simpson's rule, at every second sample; spacing equal within each pair of intervals."""
+    pairs = (t[2::2] - t[:-2:2]) / 6 * (y[:-2:2] + 4 * y[1:-1:2] + y[2::2])
+    return np.concatenate(([0.0], np.cumsum(pairs)))
 
 
 def mean(t, y):
-    """Mean by Simpson's rule over an even number of equal intervals."""
-    w = np.ones(len(t))
-    w[1:-1:2], w[2:-1:2] = 4, 2
-    return float(np.dot(w, y) / np.sum(w))
+    return float(integral(t, y)[-1] / (t[-1] - t[0]))
 
 
-def highest(t, y, periodic=True):
-    """Maximum, refined by a parabola through three points."""
+def highest(t, y):
+    """Maximum, refined by a parabola through three points inside the span."""
     k = int(np.argmax(y))
-    n = len(y) - 1
-    if 0 < k < n:
-        a, b, c = y[k - 1], y[k], y[k + 1]
-    elif periodic:
-        a, b, c = y[n - 1], y[k], y[1]
-    else:
+    if not 0 < k < len(y) - 1:
         return float(y[k])
-    bend = a - 2 * b + c
-    return float(b - (a - c) ** 2 / (8 * bend)) if bend < 0 else float(b)
+    h0, h1 = t[k] - t[k - 1], t[k + 1] - t[k]
+    s0, s1 = (y[k] - y[k - 1]) / h0, (y[k + 1] - y[k]) / h1
+    bend = (s1 - s0) / (h0 + h1)  # half the second derivative
+    slope = (s0 * h1 + s1 * h0) / (h0 + h1)
+    return float(y[k] - slope * slope / (4 * bend)) if bend < 0 else float(y[k])
