@@ -8,9 +8,6 @@ import (
 	"railproof/netlist/syntax"
 )
 
-// pinWords are the pin names that pins= takes, in the order of the reference.
-var pinWords = []string{"in", "gnd", "out", "adj", "ref", "cathode", "anode", "k", "a", "ac1", "ac2", "plus", "minus"}
-
 // declareKinds applies what statements say of the kind of an element, before any pattern is narrowed by it:
 // `part` names its type, and a zener's symbol on a diode stated by name makes it one.
 func (in *interpreter) declareKinds(statements []dutyStatement) {
@@ -23,7 +20,9 @@ func (in *interpreter) declareKinds(statements []dutyStatement) {
 				continue // reported when the statement is read
 			}
 			for _, id := range m.elements {
-				in.circuit.adoptPart(id, s.Type.Text(), pins)
+				if why := in.circuit.adoptPart(id, s.Type.Text(), pins); why != "" {
+					in.fault(s.Type.At(), in.name(id)+" cannot be a "+s.Type.Text()+": "+why, "a type that fits its nodes")
+				}
 			}
 		case *syntax.RateStatement:
 			if m, fault := in.circuit.findElements(s.Elements.Text(), s.Elements.At()); fault == nil && m.exact {
@@ -51,9 +50,9 @@ func (in *interpreter) declareKind(id ElementID, settings []syntax.Setting) {
 			case KindRectifier:
 				in.circuit.setZener(id, false)
 			}
-		case Unknown:
+		case Unknown, Regulator:
 			if symbol == "VOUT" || symbol == "VREF" {
-				in.circuit.adoptRegulator(id, symbol == "VREF")
+				in.circuit.adoptRegulator(id, symbol == "VREF", strings.HasPrefix(s.Value.Text(), "-"))
 			}
 		}
 	}
@@ -74,7 +73,7 @@ func readPins(settings []syntax.Setting) (pins []string, bad string, ok bool) {
 		}
 		for _, pin := range strings.Split(strings.ToLower(s.Value.Text()), ",") {
 			pin = strings.TrimSpace(pin)
-			if !slices.Contains(pinWords, pin) || slices.Contains(pins, pin) {
+			if !slices.Contains(dutyPinWords(), pin) || slices.Contains(pins, pin) {
 				return nil, pin, false
 			}
 			pins = append(pins, pin)
@@ -95,7 +94,7 @@ func (in *interpreter) part(s *syntax.PartStatement) {
 	pins, bad, ok := readPins(s.Settings)
 	if !ok {
 		in.fault(settings["pins"].At(), "pin "+strconv.Quote(bad)+" is unknown or named twice",
-			suggest(bad, pinWords, "pins in the order of the netlist line, such as pins=in,gnd,out"))
+			suggest(bad, dutyPinWords(), "pins in the order of the netlist line, such as pins=in,gnd,out"))
 		return
 	}
 	typeName := s.Type.Text()

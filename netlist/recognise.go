@@ -34,7 +34,7 @@ func (x *expander) known(lv *level, c *elementCard, name string, nodes []NodeID,
 			pins = named
 		} else {
 			r.PinsAssumed = true
-			assume("its pins are taken in the customary order: " + pinWords(pins))
+			assume("its pins are taken in the customary order: " + orderWords(pins))
 		}
 		ordered, ok := orderPins(nodes, pins, part.Role)
 		if !ok {
@@ -127,7 +127,7 @@ func orderPins(nodes []NodeID, pins []Pin, role Role) ([]NodeID, bool) {
 	return ordered, len(ordered) == 3
 }
 
-func pinWords(pins []Pin) string {
+func orderWords(pins []Pin) string {
 	var list []string
 	for _, p := range pins {
 		list = append(list, map[Pin]string{

@@ -1,8 +1,6 @@
 package netlist
 
 import (
-	"math"
-	"strconv"
 	"strings"
 
 	"railproof/netlist/quantity"
@@ -137,10 +135,11 @@ func readField(r *Rating, m Meaning, percent bool, text string) bool {
 	if m.TakesWord() {
 		return false
 	}
-	number, ok := cardNumber(text)
+	n, ok := quantity.ParseSpice(text)
 	if !ok {
 		return false
 	}
+	number := n.Value
 	if percent {
 		number /= 100
 	}
@@ -165,36 +164,4 @@ func technologyOf(text string) string {
 		}
 	}
 	return ""
-}
-
-// cardFactors are the SPICE scale factors; longer ones first.
-var cardFactors = []struct {
-	letters  string
-	exponent int
-}{{"meg", 6}, {"f", -15}, {"p", -12}, {"n", -9}, {"u", -6}, {"m", -3}, {"k", 3}, {"g", 9}, {"t", 12}}
-
-// cardNumber reads a number with an optional SPICE scale factor; letters behind it are a unit.
-func cardNumber(text string) (float64, bool) {
-	end := strings.IndexFunc(text, func(r rune) bool { return !strings.ContainsRune("0123456789.+-", r) })
-	if end < 0 {
-		end = len(text)
-	}
-	mantissa, rest := text[:end], strings.ToLower(text[end:])
-	if len(rest) > 1 && rest[0] == 'e' && strings.ContainsAny(rest[1:2], "+-0123456789") {
-		tail := strings.TrimLeft(rest[2:], "0123456789")
-		mantissa, rest = mantissa+rest[:len(rest)-len(tail)], tail
-	}
-	rest = strings.NewReplacer("\u00b5", "u", "\u03bc", "u").Replace(rest)
-	factor := 1.0
-	for _, f := range cardFactors {
-		if strings.HasPrefix(rest, f.letters) {
-			factor = math.Pow10(f.exponent)
-			break
-		}
-	}
-	value, err := strconv.ParseFloat(mantissa, 64)
-	if err != nil || math.IsInf(value*factor, 0) {
-		return 0, false
-	}
-	return value * factor, true
 }

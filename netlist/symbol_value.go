@@ -44,6 +44,8 @@ func checkRating(m Meaning, text string, value *quantity.Interval) error {
 		if value.Low > 0 || value.High < 0 || value.Low <= -1 || value.High > 10 {
 			return refuse("no tolerance", "a range about zero, such as -20%..+20%")
 		}
+	case m.Symbol == "VOUT" && value.High < 0:
+		value.Low, value.High = -value.High, -value.Low
 	case m.Unit == quantity.Celsius || m.Symbol == "TC":
 	case value.Low < 0 || value.High == 0:
 		return refuse(string(m.Symbol)+" must be more than zero", m.Unit.Expectation())

@@ -17,9 +17,9 @@ type Source struct {
 	Library     Library  // known types; may be nil
 }
 
-// Load reads a netlist, what it includes, and its duty sheet. Diagnostics mean that the input is not to be
+// Read reads a netlist, what it includes, and its duty sheet. Diagnostics mean that the input is not to be
 // used; err means that a file could not be read at all.
-func Load(src Source) (*Circuit, *Duty, []Diagnostic, error) {
+func Read(src Source) (*Circuit, *Duty, []Diagnostic, error) {
 	text, err := readFile(src.File)
 	if err != nil {
 		return nil, nil, nil, err
