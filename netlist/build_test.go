@@ -4,6 +4,8 @@ import (
 	"strconv"
 	"strings"
 	"testing"
+
+	"railproof/netlist/quantity"
 )
 
 // build makes a circuit from cards of a small subset, one a line, so that the graph and the duty sheet
@@ -14,11 +16,11 @@ func build(t testing.TB, cards string) *Circuit {
 	t.Helper()
 	c := &Circuit{File: "test.cir", Temperature: 27, Nodes: []Node{{Name: "0"}}, Library: knownTypes{}}
 	number := func(text string) float64 {
-		v, ok := cardNumber(text)
+		v, ok := quantity.ParseSpice(text)
 		if !ok {
 			t.Fatalf("no number: %q", text)
 		}
-		return v
+		return v.Value
 	}
 	node := func(name string) NodeID {
 		if id, ok := c.FindNode(name); ok {

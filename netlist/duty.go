@@ -8,7 +8,7 @@ type Duty struct {
 	Lines       []Line
 	Windings    []Winding
 	Ambient     *AmbientRange // nil: not stated
-	Loads       []LoadRange
+	Loads       []Load
 	Parts       []PartName
 	Ratings     []Rating
 	Coolings    []Cooling
@@ -47,8 +47,8 @@ type AmbientRange struct {
 	At        Position
 }
 
-// LoadRange gives an element a range: amperes for a current source, ohms (High may be +Inf) for a resistor.
-type LoadRange struct {
+// Load gives an element a range: amperes for a current source, ohms (High may be +Inf) for a resistor.
+type Load struct {
 	Element ElementID
 	Range   quantity.Interval
 	At      Position

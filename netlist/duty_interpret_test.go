@@ -327,3 +327,29 @@ func TestDutyRemarks(t *testing.T) {
 		}
 	}
 }
+
+// pins= says in which order the netlist line lists the nodes, whatever was assumed before.
+func TestPins(t *testing.T) {
+	for _, name := range []string{"U1 7812", "U2 MYREG"} {
+		c, _ := readDuty(t, "part "+name+" pins=gnd,in,out")
+		id, _ := c.Find(name[:2])
+		e := c.Elements[id]
+		if got := c.Nodes[e.Nodes[0]].Name + " " + c.Nodes[e.Nodes[1]].Name; got != "0 VRAW" {
+			t.Errorf("%s: input and reference on %s", name, got)
+		}
+		for pin, n := range e.Nodes {
+			found := false
+			for _, at := range c.Nodes[n].Terminals {
+				found = found || at == Terminal{id, pin}
+			}
+			if !found {
+				t.Errorf("%s: no terminal of pin %d on its node", name, pin)
+			}
+		}
+	}
+	c, d := readDuty(t, "rate U2 VOUT=-12V")
+	id, _ := c.Find("U2")
+	if r := c.Elements[id].Device.(Regulator); r.Polarity != Negative || ratingOf(c, d, "U2", "VOUT").Value.Low != 12 {
+		t.Errorf("%+v %+v", r, d.Ratings)
+	}
+}

@@ -20,6 +20,9 @@ func (in *interpreter) declareKinds(statements []dutyStatement) {
 				continue // reported when the statement is read
 			}
 			for _, id := range m.elements {
+				if pins != nil && len(pins) != len(in.circuit.Elements[id].Nodes) {
+					continue
+				}
 				if why := in.circuit.adoptPart(id, s.Type.Text(), pins); why != "" {
 					in.fault(s.Type.At(), in.name(id)+" cannot be a "+s.Type.Text()+": "+why, "a type that fits its nodes")
 				}

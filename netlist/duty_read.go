@@ -188,7 +188,7 @@ func (in *interpreter) load(s *syntax.LoadStatement) {
 		}
 		some = true
 		in.state("load "+in.name(id), s.Range.Raw, m.exact, func(d *Duty) {
-			d.Loads = append(d.Loads, LoadRange{id, r, s.Place()})
+			d.Loads = append(d.Loads, Load{id, r, s.Place()})
 		})
 	}
 	if !some {
