@@ -155,6 +155,13 @@ func (s *Solution) agree(n *Network) bool {
 			}
 		}
 	}
+	for k := 1; k < n.nodes; k++ {
+		fine := s.Fine.Summary(func(j int) float64 { return s.Fine.Nodes[k][j] })
+		coarse := s.Coarse.Summary(func(j int) float64 { return s.Coarse.Nodes[k][j] })
+		if differ(fine.Ripple(), coarse.Ripple(), VoltageTolerance*fine.Ripple()+VoltageTolerance*1e-3*fine.RMS+voltageFloor) {
+			return false
+		}
+	}
 	return true
 }
 
@@ -166,32 +173,29 @@ func (tr *Trajectory) Branch(d Device, k int) (v, i Stats, power float64) {
 	voltage := func(n int) float64 { return tr.Voltage(b, n) }
 	v = tr.Summary(voltage)
 	i = tr.Summary(func(n int) float64 { return current[n] })
-	return v, i, tr.Mean(func(n int) float64 { return voltage(n) * current[n] })
+	return v, i, tr.MeanPower(d, k)
 }
 
-// imbalance is the mean power into the energy stores over the apparent power (RMS voltage times
-// RMS current) of the branches that deliver power.
+// imbalance is the mean power into the energy stores over the apparent power (RMS voltage times RMS current)
+// of the sources.
 func imbalance(n *Network, tr *Trajectory) float64 {
-	var stored, delivered float64
+	var stored, apparent float64
 	for d := range n.devices {
 		kind := n.devices[d].kind
 		for k, b := range n.devices[d].branches {
 			_, current := tr.BranchOf(Device(d), k)
-			power := tr.Mean(func(s int) float64 { return tr.Voltage(b, s) * current[s] })
 			switch kind {
 			case capacitor, inductor:
-				stored += power
-			default:
-				if power < 0 {
-					v := tr.Summary(func(s int) float64 { return tr.Voltage(b, s) })
-					i := tr.Summary(func(s int) float64 { return current[s] })
-					delivered += v.RMS * i.RMS
-				}
+				stored += tr.Mean(func(s int) float64 { return tr.Voltage(b, s) * current[s] })
+			case voltageSource, currentSource:
+				v := tr.Summary(func(s int) float64 { return tr.Voltage(b, s) })
+				i := tr.Summary(func(s int) float64 { return current[s] })
+				apparent += v.RMS * i.RMS
 			}
 		}
 	}
 	if math.Abs(stored) < powerFloor {
 		return 0
 	}
-	return math.Abs(stored) / math.Max(delivered, powerFloor)
+	return math.Abs(stored) / math.Max(apparent, powerFloor)
 }

@@ -12,7 +12,9 @@ type Trajectory struct {
 	Nodes       [][]float64 // Nodes[n][k]: potential of node n at Start + k Step, V
 	Currents    [][]float64 // Currents[c][k]: current of a branch, A; see Network.Branch
 	branches    []Branch
-	offset      []int // device -> first branch
+	offset      []int                // device -> first branch
+	inner       []Branch             // the branches themselves, without what MeasureAcross adds
+	flux        map[Device][]float64 // flux linkage of each inductor, V s
 }
 
 // Samples returns the number of samples, both ends of the interval included.
@@ -33,10 +35,14 @@ func (tr *Trajectory) BranchOf(d Device, k int) (Branch, []float64) {
 }
 
 func newTrajectory(n *Network, start, step float64, samples int) *Trajectory {
-	tr := &Trajectory{Start: start, Step: step, offset: make([]int, len(n.devices))}
+	tr := &Trajectory{Start: start, Step: step, offset: make([]int, len(n.devices)), flux: map[Device][]float64{}}
 	for k := range n.devices {
 		tr.offset[k] = len(tr.branches)
 		tr.branches = append(tr.branches, n.devices[k].branches...)
+		tr.inner = append(tr.inner, n.devices[k].branches...)
+		if n.devices[k].kind == inductor {
+			tr.flux[Device(k)] = make([]float64, samples)
+		}
 		if m := n.devices[k].measured; m != nil {
 			tr.branches[tr.offset[k]] = *m
 		}
@@ -86,6 +92,9 @@ func (a *march) sample(tr *Trajectory, k int, z []float64) {
 		tr.Nodes[n][k] = z[n-1]
 	}
 	capacitorIndex, sourceIndex, portIndex := 0, 0, 0
+	for j, d := range s.inductors {
+		tr.flux[d][k] = s.stateOf(len(s.capacitors)+j, z)
+	}
 	for d := range s.net.devices {
 		dev := &s.net.devices[d]
 		c := tr.offset[d]
@@ -137,6 +146,9 @@ type Stats struct {
 	Max, Min  Extreme
 	Mean, RMS float64
 }
+
+// Ripple is the RMS value of the signal less its mean.
+func (s Stats) Ripple() float64 { return math.Sqrt(math.Max(0, s.RMS*s.RMS-s.Mean*s.Mean)) }
 
 // Summary computes the statistics of a signal; value(k) is its sample k. Means are by the trapezoidal rule,
 // which for a periodic signal is also the most accurate; extrema inside the interval are refined by the
@@ -202,4 +214,47 @@ func (tr *Trajectory) Mean(value func(k int) float64) float64 {
 		sum += value(k)
 	}
 	return sum / float64(n-1)
+}
+
+// MeanPower returns the mean power that branch k of device d takes in. For an inductor it is the mean of
+// i d(flux)/dt, summed exactly over the samples, so that a lossless one takes none in the steady state.
+func (tr *Trajectory) MeanPower(d Device, k int) float64 {
+	b, current := tr.BranchOf(d, k)
+	flux, isInductor := tr.flux[d]
+	if !isInductor {
+		return tr.Mean(func(n int) float64 { return tr.Voltage(b, n) * current[n] })
+	}
+	own := tr.inner[tr.offset[d]+k]
+	power := tr.Mean(func(n int) float64 { return (tr.Voltage(b, n) - tr.Voltage(own, n)) * current[n] })
+	work := 0.0
+	for n := 1; n < len(flux); n++ {
+		work += 0.5 * (current[n] + current[n-1]) * (flux[n] - flux[n-1])
+	}
+	return power + work/(tr.Step*float64(len(flux)-1))
+}
+
+// Sum returns a trajectory of one device whose voltage is that of the first of the given devices and whose
+// current is the sum of theirs: a source that several islands share. Grids may differ by whole factors.
+func Sum(list []*Trajectory, devices []Device) (*Trajectory, Device) {
+	coarsest := list[0]
+	for _, tr := range list {
+		if tr.Samples() < coarsest.Samples() {
+			coarsest = tr
+		}
+	}
+	n := New(3)
+	d := n.AddResistor(1, 2, 1)
+	sum := newTrajectory(n, coarsest.Start, coarsest.Step, coarsest.Samples())
+	sum.Periodic = coarsest.Periodic
+	for k := range coarsest.Samples() {
+		for j, tr := range list {
+			stride := (tr.Samples() - 1) / (coarsest.Samples() - 1)
+			b, current := tr.BranchOf(devices[j], 0)
+			sum.Currents[0][k] += current[k*stride]
+			if j == 0 {
+				sum.Nodes[1][k], sum.Nodes[2][k] = tr.Nodes[b.A][k*stride], tr.Nodes[b.B][k*stride]
+			}
+		}
+	}
+	return sum, d
 }

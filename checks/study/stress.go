@@ -33,6 +33,35 @@ const (
 	MaxVDS             Quantity = "max-vds"
 )
 
+// Stresses that single checks ask for beyond those of every element of a kind. Of the quantities marked
+// "smallest" the smaller value is the worse.
+const (
+	RippleCurrentEquivalent Quantity = "ripple-current-equivalent" // capacitor: sqrt(sum (In/kn)^2), A rms at the frequency of its rating
+	RMSVoltage              Quantity = "rms-voltage"               // capacitor
+	SteadyMaxVoltage        Quantity = "steady-max-voltage"        // capacitor: max-voltage without the switch-on
+	MeanReverseCurrent      Quantity = "mean-reverse-current"      // zener: largest mean of its working current
+	MaxDifferential         Quantity = "max-differential"          // regulator: largest Vin - Vout, steady and switch-on
+	MinOutputCurrent        Quantity = "min-output-current"        // regulator, smallest
+	MaxBackflow             Quantity = "max-backflow"              // regulator: largest Vout - Vin after the line is removed
+	MaxVEB                  Quantity = "max-veb"                   // transistor: largest reverse emitter-base voltage
+	MaxVGS                  Quantity = "max-vgs"                   // field-effect transistor: largest magnitude
+	PeakPower               Quantity = "peak-power"                // transistor: largest instantaneous power
+	DCCurrent               Quantity = "dc-current"                // winding: magnitude of the mean current
+	LeastCurrent            Quantity = "least-current"             // choke: smallest current in the direction of its mean
+	DischargeTime           Quantity = "discharge-time"            // capacitor: from line off until it is down to the voltage of the profile, s
+	ShortPower              Quantity = "short-power"               // mean power with an output shorted
+	ShortCurrent            Quantity = "short-current"             // rms current with an output shorted; of a diode its mean
+)
+
+// Stresses that the checks derive from others.
+const (
+	JunctionTemperature  Quantity = "junction-temperature" // degC
+	ReverseVoltage       Quantity = "reverse-voltage"      // polarised capacitor, V, not below zero
+	ExpectedLife         Quantity = "expected-life"        // electrolytic, h
+	InstalledCapacitance Quantity = "capacitance"          // beside a regulator, F
+	SeriesResistance     Quantity = "series-resistance"    // of a capacitor beside a regulator, ohm
+)
+
 // Condition is one solved combination of circumstances.
 type Condition struct {
 	Name  string // in words: "high line, light load"
@@ -55,4 +84,6 @@ type Stress struct {
 	// Unproven says why the value proves nothing (no convergence, unknown element in the island,
 	// source impedance unknown); empty when it is good.
 	Unproven string
+	// Missing is the duty statement that would settle it, empty if none would.
+	Missing string
 }

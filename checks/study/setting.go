@@ -1,0 +1,55 @@
+package study
+
+import "railproof/netlist"
+
+// LineEnd says where in its range the supply line is.
+type LineEnd uint8
+
+// Line ends.
+const (
+	LineAsWritten LineEnd = iota
+	LineLow
+	LineNominal
+	LineHigh
+)
+
+// String is the word of the machine interface.
+func (l LineEnd) String() string {
+	return [...]string{"as-written", "low", "nominal", "high"}[l]
+}
+
+// Setting is everything that distinguishes one condition from another.
+type Setting struct {
+	Line LineEnd
+	// Loads holds for each load of the supply a position from 0 (light) to 1 (full); nil: as written.
+	Loads []float64
+	// Ambient is the air temperature in degC.
+	Ambient float64
+	// Held keeps regulators at their set voltage so that missing headroom shows (solver.Regulator.Held).
+	Held bool
+	// Shift holds for each toleranced parameter a position from -1 (low end) to 1 (high end); nil: all nominal.
+	Shift []float64
+	// Phase shifts the start of a cold start by this fraction of the period.
+	Phase float64
+	// Cold starts from empty instead of looking for the steady state.
+	Cold bool
+	// Nominal solves the netlist exactly as written.
+	Nominal bool
+}
+
+// Parameter is a quantity with a tolerance.
+type Parameter struct {
+	Element netlist.ElementID
+	Symbol  netlist.Symbol // of the quantity that varies: "R", "C", "L", "VZ", "VOUT", "VF"
+	// Low and High are the relative ends: -0.2, +0.2.
+	Low, High float64
+	Origin    string // where the tolerance is known from
+}
+
+// factor is the multiplier of a parameter at its position.
+func (p Parameter) factor(position float64) float64 {
+	if position < 0 {
+		return 1 - position*p.Low
+	}
+	return 1 + position*p.High
+}

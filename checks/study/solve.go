@@ -1,0 +1,141 @@
+package study
+
+import (
+	"context"
+	"errors"
+	"math"
+
+	"railproof/checks/solver"
+	"railproof/netlist"
+)
+
+// outcome is the solution of one setting, island by island.
+type outcome struct {
+	set     Setting
+	low     *lowered
+	islands []solvedIsland
+	home    []place                   // device of the whole network -> where it was solved
+	nodes   []place                   // node of the whole network -> where it was solved
+	uses    map[solver.Device][]place // device -> where it takes part
+	failed  error                     // no network could be built
+}
+
+// place is an island and an index in it; island -1: nowhere.
+type place struct{ island, index int }
+
+type solvedIsland struct {
+	solution *solver.Solution
+	err      error  // no, or no accurate, solution
+	blocked  string // an element without a model touches it
+}
+
+// states remembers the periodic states of earlier settings so that neighbours start from them.
+type states map[int][]float64
+
+// solve finds the steady state of every island of the supply in one setting.
+func (p *Plan) solve(ctx context.Context, set Setting, warm states) *outcome {
+	out := &outcome{set: set}
+	low, err := p.supply.lower(&set, p)
+	if err != nil {
+		out.failed = err
+		return out
+	}
+	out.low = low
+	if p.Blocked != "" {
+		out.failed = errors.New(p.Blocked)
+	}
+	parts := low.net.Islands()
+	out.uses = map[solver.Device][]place{}
+	out.home = make([]place, low.net.Devices())
+	for k := range out.home {
+		out.home[k].island = -1
+	}
+	out.nodes = make([]place, low.net.Nodes())
+	for k := range out.nodes {
+		out.nodes[k].island = -1
+	}
+	for i, part := range parts {
+		is := solvedIsland{}
+		for local, d := range part.Devices {
+			out.uses[d] = append(out.uses[d], place{i, local})
+			if out.home[d].island < 0 {
+				out.home[d] = place{i, local}
+			}
+			if why, ok := low.blocked[d]; ok && is.blocked == "" {
+				is.blocked = why
+			}
+		}
+		for local, n := range part.Nodes {
+			if out.nodes[n].island < 0 {
+				out.nodes[n] = place{i, local}
+			}
+		}
+		if out.failed == nil {
+			is.solution, is.err = solver.SteadyState(ctx, part.Network, solver.Options{Start: warm[i]})
+			if is.err != nil && warm[i] != nil && ctx.Err() == nil {
+				is.solution, is.err = solver.SteadyState(ctx, part.Network, solver.Options{})
+			}
+			if is.solution != nil && warm != nil {
+				warm[i] = is.solution.States
+			}
+		} else {
+			is.err = out.failed
+		}
+		out.islands = append(out.islands, is)
+	}
+	return out
+}
+
+// islandOf returns the index of the island in which an element was solved, -1 if none.
+func (o *outcome) islandOf(c *netlist.Circuit, id netlist.ElementID) int {
+	if o.low == nil {
+		return -1
+	}
+	if d := o.low.devices[id]; d != none {
+		return o.home[d].island
+	}
+	for _, n := range c.Elements[id].Nodes {
+		if n != netlist.Ground {
+			return o.nodes[n].island
+		}
+	}
+	return -1
+}
+
+// reading reads statistics of one signal off both grids of a solution.
+type reading struct {
+	value, err, at float64
+}
+
+func readStat(s *solver.Solution, signal func(tr *solver.Trajectory) func(k int) float64, pick func(st solver.Stats) (float64, float64)) reading {
+	fine, at := pick(s.Fine.Summary(signal(s.Fine)))
+	r := reading{value: fine, at: at}
+	if s.Coarse != nil && s.Coarse != s.Fine {
+		coarse, _ := pick(s.Coarse.Summary(signal(s.Coarse)))
+		r.err = math.Abs(fine - coarse)
+	}
+	return r
+}
+
+func largest(st solver.Stats) (float64, float64)  { return st.Max.Value, st.Max.At }
+func smallest(st solver.Stats) (float64, float64) { return st.Min.Value, st.Min.At }
+func mean(st solver.Stats) (float64, float64)     { return st.Mean, math.NaN() }
+func rms(st solver.Stats) (float64, float64)      { return st.RMS, math.NaN() }
+
+// magnitude picks the extremum of larger magnitude.
+func magnitude(st solver.Stats) (float64, float64) {
+	if -st.Min.Value > st.Max.Value {
+		return -st.Min.Value, st.Min.At
+	}
+	return st.Max.Value, st.Max.At
+}
+
+// swing picks the peak-to-peak value.
+func swing(st solver.Stats) (float64, float64) {
+	return st.Max.Value - st.Min.Value, math.NaN()
+}
+
+// alternating picks the RMS value of the signal less its mean.
+func alternating(st solver.Stats) (float64, float64) {
+	return math.Sqrt(math.Max(0, st.RMS*st.RMS-st.Mean*st.Mean)), math.NaN()
+}

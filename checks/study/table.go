@@ -1,0 +1,361 @@
+package study
+
+import (
+	"context"
+	"math"
+	"runtime"
+	"sort"
+	"sync"
+
+	"railproof/netlist"
+)
+
+// Table holds the worst stress of every part.
+type Table struct {
+	Stresses []Stress // elements in netlist order, then nodes; quantities in a fixed order
+	Plan     *Plan
+	Solved   int // conditions solved
+
+	index map[tableKey]int
+	// islands: element -> index of the island it was solved in, -1 if none
+	islands []int
+	home    map[string]int                     // element or node name -> its island
+	sources map[netlist.ElementID]map[int]bool // voltage source -> islands it takes part in
+	// Unsolved lists islands without a steady state in some condition: the reason, in words.
+	Unsolved []UnsolvedIsland
+}
+
+// UnsolvedIsland says why no steady state was found for a part of the circuit.
+type UnsolvedIsland struct {
+	Elements []string // its elements, in netlist order
+	Why      string
+	When     string // the condition in words
+}
+
+type tableKey struct {
+	element  string
+	quantity Quantity
+}
+
+// Get returns the worst stress of an element.
+func (t *Table) Get(element string, q Quantity) (*Stress, bool) {
+	k, ok := t.index[tableKey{element, q}]
+	if !ok {
+		return nil, false
+	}
+	return &t.Stresses[k], true
+}
+
+// Island is the index of the independent part of the circuit that an element belongs to, -1 if unknown.
+func (t *Table) Island(id netlist.ElementID) int { return t.islands[id] }
+
+// smallerIsWorse are the quantities whose worst value is the smallest.
+var smallerIsWorse = map[Quantity]bool{MinVoltage: true, MinCurrent: true, MinDifferential: true, MinHeadroom: true}
+
+// worse reports whether a is worse than b, each with its numerical error counted against the part.
+func worse(a, b *Stress) bool {
+	if math.IsNaN(b.Value) {
+		return !math.IsNaN(a.Value)
+	}
+	if math.IsNaN(a.Value) {
+		return false
+	}
+	if smallerIsWorse[a.Quantity] {
+		return a.Value-a.Error < b.Value-b.Error
+	}
+	return a.Value+a.Error > b.Value+b.Error
+}
+
+// merge takes a stress into the table if it is the worst so far. A stress that proves nothing marks the
+// entry, whatever its value.
+func (t *Table) merge(s Stress) {
+	key := tableKey{s.Element, s.Quantity}
+	k, ok := t.index[key]
+	if !ok {
+		t.index[key] = len(t.Stresses)
+		t.Stresses = append(t.Stresses, s)
+		return
+	}
+	old := &t.Stresses[k]
+	unproven := old.Unproven
+	if unproven == "" {
+		unproven = s.Unproven
+	}
+	if worse(&s, old) {
+		*old = s
+	}
+	old.Unproven = unproven
+}
+
+func newTable(p *Plan) *Table { return &Table{Plan: p, index: map[tableKey]int{}} }
+
+// Nominal solves the netlist exactly as written; with cold also its switch-on from empty.
+func Nominal(ctx context.Context, s *Supply, cold bool) *Table {
+	p := NewPlan(s)
+	t := newTable(p)
+	out := p.solve(ctx, Setting{Nominal: true, Line: LineAsWritten, Ambient: s.Circuit.Temperature}, nil)
+	p.extract(out, func(st Stress) {
+		st.Condition = p.condition(&out.set)
+		t.merge(st)
+	})
+	t.note(out)
+	t.Solved = 1
+	if cold {
+		p.coldStart(ctx, Setting{Nominal: true}, true, t.merge)
+	}
+	t.order(s.Circuit)
+	return t
+}
+
+// Worst solves every condition of the plan and gathers the worst stresses.
+func Worst(ctx context.Context, s *Supply, jobs int) *Table {
+	p := NewPlan(s)
+	t := newTable(p)
+	for _, out := range p.solveAll(ctx, p.baseSettings(), jobs) {
+		t.take(out)
+	}
+	p.coldStarts(ctx, jobs, t)
+	t.order(s.Circuit)
+	t.block()
+	return t
+}
+
+// coldPhases is how many start phases of a period are tried.
+const coldPhases = 4
+
+// coldStarts adds the switch-on from empty at high line, full and light load, at several phases.
+func (p *Plan) coldStarts(ctx context.Context, jobs int, t *Table) {
+	var settings []Setting
+	for phase := range coldPhases {
+		for _, load := range []float64{0, 1} {
+			loads := make([]float64, len(p.loads))
+			for k := range loads {
+				loads[k] = load
+			}
+			settings = append(settings, Setting{Line: LineHigh, Loads: loads, Ambient: p.Ambient[1], Phase: float64(phase) / coldPhases / 2})
+			if len(p.loads) == 0 {
+				break
+			}
+		}
+	}
+	results := make([][]Stress, len(settings))
+	inParallel(len(settings), jobs, func(k int) {
+		p.coldStart(ctx, settings[k], false, func(s Stress) { results[k] = append(results[k], s) })
+	})
+	for _, list := range results {
+		t.Solved++
+		for _, s := range list {
+			t.merge(s)
+		}
+	}
+}
+
+// order sorts the stresses by element in netlist order, then nodes, keeping the order of quantities.
+func (t *Table) order(c *netlist.Circuit) {
+	rank := map[string]int{}
+	for k := range c.Elements {
+		rank[c.Elements[k].Name] = k
+	}
+	for k := range c.Nodes {
+		rank["node:"+c.Nodes[k].Name] = len(c.Elements) + k
+	}
+	sort.SliceStable(t.Stresses, func(a, b int) bool { return rank[t.Stresses[a].Element] < rank[t.Stresses[b].Element] })
+	for k := range t.Stresses {
+		t.index[tableKey{t.Stresses[k].Element, t.Stresses[k].Quantity}] = k
+	}
+}
+
+// block marks what cannot be proven because a source is neither declared a line nor a winding: its off-load
+// rise and its resistance are unknown, and with them every stress of its island.
+func (t *Table) block() {
+	c := t.Plan.supply.Circuit
+	waiting := map[int]netlist.ElementID{}
+	for _, id := range t.Plan.Undeclared {
+		for i := range t.sources[id] {
+			if _, ok := waiting[i]; !ok {
+				waiting[i] = id
+			}
+		}
+	}
+	for k := range t.Stresses {
+		s := &t.Stresses[k]
+		id, ok := waiting[t.home[s.Element]]
+		if !ok || s.Unproven != "" {
+			continue
+		}
+		name := c.Elements[id].Name
+		s.Unproven = "the off-load voltage and the resistance of " + name + " are unknown"
+		s.Missing = "winding " + name + " ... or line " + name + " ..."
+	}
+}
+
+// take merges an outcome into the table.
+func (t *Table) take(out *outcome) {
+	t.Solved++
+	held := out.set.Held
+	t.Plan.extract(out, func(s Stress) {
+		// Held regulators are a device to read missing headroom; every other stress comes from the real law.
+		if held != (s.Quantity == MinHeadroom) {
+			if held || !t.Plan.held() {
+				return
+			}
+			if s.Quantity == MinHeadroom {
+				return
+			}
+		}
+		t.merge(s)
+	})
+	t.note(out)
+}
+
+// held reports whether the supply has regulators, so that conditions with held outputs are solved too.
+func (p *Plan) held() bool {
+	for k := range p.supply.Circuit.Elements {
+		if d, ok := p.supply.Circuit.Elements[k].Device.(netlist.Regulator); ok && !d.Shunt {
+			return true
+		}
+	}
+	return false
+}
+
+// note records islands and failures of an outcome.
+func (t *Table) note(out *outcome) {
+	c := t.Plan.supply.Circuit
+	if t.islands == nil {
+		t.islands = make([]int, len(c.Elements))
+		for k := range c.Elements {
+			t.islands[k] = out.islandOf(c, netlist.ElementID(k))
+		}
+		t.place(out)
+	}
+	if out.set.Held {
+		return
+	}
+	when := t.Plan.condition(&out.set).Name
+	if out.low == nil && out.failed != nil {
+		t.addUnsolved(UnsolvedIsland{Why: out.failed.Error(), When: when})
+		return
+	}
+	for i := range out.islands {
+		is := &out.islands[i]
+		why := is.blocked
+		if why == "" && is.err != nil {
+			why = is.err.Error()
+		}
+		if why == "" {
+			continue
+		}
+		u := UnsolvedIsland{Why: why, When: when}
+		for k := range c.Elements {
+			if t.islands[k] == i {
+				u.Elements = append(u.Elements, c.Elements[k].Name)
+			}
+		}
+		t.addUnsolved(u)
+	}
+}
+
+// place remembers which island each element and node belongs to, and which islands each source feeds.
+func (t *Table) place(out *outcome) {
+	c := t.Plan.supply.Circuit
+	t.home, t.sources = map[string]int{}, map[netlist.ElementID]map[int]bool{}
+	for k := range c.Elements {
+		t.home[c.Elements[k].Name] = t.islands[k]
+	}
+	if out.low == nil {
+		return
+	}
+	for k := 1; k < len(c.Nodes); k++ {
+		t.home["node:"+c.Nodes[k].Name] = out.nodes[k].island
+	}
+	for k := range c.Elements {
+		if d := out.low.devices[k]; d != none {
+			t.sources[netlist.ElementID(k)] = map[int]bool{}
+			for _, p := range out.uses[d] {
+				t.sources[netlist.ElementID(k)][p.island] = true
+			}
+		}
+	}
+}
+
+func (t *Table) addUnsolved(u UnsolvedIsland) {
+	for _, old := range t.Unsolved {
+		if len(old.Elements) == len(u.Elements) && (len(u.Elements) == 0 || old.Elements[0] == u.Elements[0]) {
+			return
+		}
+	}
+	t.Unsolved = append(t.Unsolved, u)
+}
+
+// baseSettings are line low and high times every combination of loads light and full (all light and all full
+// beyond four loads), nominal line full load, and the same with regulators held for their headroom.
+func (p *Plan) baseSettings() []Setting {
+	var combinations [][]float64
+	n := len(p.loads)
+	switch {
+	case n == 0:
+		combinations = [][]float64{nil}
+	case n <= 4:
+		for bits := range 1 << n {
+			loads := make([]float64, n)
+			for k := range loads {
+				loads[k] = float64(bits >> k & 1)
+			}
+			combinations = append(combinations, loads)
+		}
+	default:
+		light, full := make([]float64, n), make([]float64, n)
+		for k := range full {
+			full[k] = 1
+		}
+		combinations = [][]float64{light, full}
+		for k := range n {
+			one, rest := make([]float64, n), append([]float64(nil), full...)
+			one[k], rest[k] = 1, 0
+			combinations = append(combinations, one, rest)
+		}
+	}
+	var list []Setting
+	for _, held := range []bool{false, true} {
+		if held && !p.held() {
+			continue
+		}
+		for _, line := range []LineEnd{LineLow, LineHigh} {
+			for _, loads := range combinations {
+				list = append(list, Setting{Line: line, Loads: loads, Ambient: p.Ambient[1], Held: held})
+			}
+		}
+	}
+	return list
+}
+
+// solveAll solves settings on several cores; the outcomes are in the order of the settings and do not depend
+// on the number of jobs.
+func (p *Plan) solveAll(ctx context.Context, settings []Setting, jobs int) []*outcome {
+	outcomes := make([]*outcome, len(settings))
+	inParallel(len(settings), jobs, func(k int) { outcomes[k] = p.solve(ctx, settings[k], nil) })
+	return outcomes
+}
+
+// inParallel calls work for 0..n-1 on up to jobs cores (0: all).
+func inParallel(n, jobs int, work func(k int)) {
+	if jobs <= 0 {
+		jobs = runtime.GOMAXPROCS(0)
+	}
+	next := make(chan int)
+	var group sync.WaitGroup
+	for range min(jobs, n) {
+		group.Add(1)
+		go func() {
+			defer group.Done()
+			for k := range next {
+				work(k)
+			}
+		}()
+	}
+	for k := range n {
+		next <- k
+	}
+	close(next)
+	group.Wait()
+}
