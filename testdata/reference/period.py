@@ -84,12 +84,17 @@ def mean(t, y):
 
 
 def highest(t, y):
-    """Maximum, refined by a parabola through three points inside the span."""
+    """Maximum, refined by a parabola through three points where the curve is smooth (not at a kink, jump or end)."""
     k = int(np.argmax(y))
-    if not 0 < k < len(y) - 1:
+    if not 1 < k < len(y) - 2:
         return float(y[k])
-    h0, h1 = t[k] - t[k - 1], t[k + 1] - t[k]
-    s0, s1 = (y[k] - y[k - 1]) / h0, (y[k + 1] - y[k]) / h1
-    bend = (s1 - s0) / (h0 + h1)  # half the second derivative
-    slope = (s0 * h1 + s1 * h0) / (h0 + h1)
-    return float(y[k] - slope * slope / (4 * bend)) if bend < 0 else float(y[k])
+
+    def parabola(k):
+        h0, h1 = t[k] - t[k - 1], t[k + 1] - t[k]
+        s0, s1 = (y[k] - y[k - 1]) / h0, (y[k + 1] - y[k]) / h1
+        return (s1 - s0) / (h0 + h1), (s0 * h1 + s1 * h0) / (h0 + h1)  # half the second derivative, slope
+    before, after = parabola(k - 1)[0], parabola(k + 1)[0]
+    bend, slope = parabola(k)
+    if before >= 0 or after >= 0 or bend < 3 * min(before, after):
+        return float(y[k])
+    return float(y[k] - slope * slope / (4 * bend))

@@ -186,7 +186,7 @@ LADDER = "\n".join(
     + ["RL N12 0 10meg", DR_CARD, ".end"])
 
 
-@circuit("ladder-6", LADDER, [-58.0 if k == 0 else 110.0 if k % 2 else -110.0 for k in range(12)],
+@circuit("ladder-6", LADDER, [-58.0] + [-115.0] * 11,
          second=("LSODA", 1e-8))
 def ladder():
     """Push column C1 C3 .. C11 from N0, smoothing column C2 C4 .. C12 from ground, diodes D1 0-N1, D2 N1-N2, ..
