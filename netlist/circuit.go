@@ -35,6 +35,7 @@ type Circuit struct {
 	Library     Library   // what type names mean; nil: none is recognised
 
 	zeners map[ElementID]bool // what the duty sheet says of diodes
+	shunts map[ElementID]bool // diodes that stand as shunt zeners; nil: not yet looked for
 }
 
 // Node is an electrical node and the terminals that meet there.

@@ -44,6 +44,7 @@ func interpretDuty(c *Circuit, inline []DutyLine, sheet []DutyLine) (*Duty, []Di
 		}
 	}
 	in.declareKinds(statements)
+	c.findShunts()
 	for _, s := range statements {
 		in.current = s
 		in.kept, in.offered = 0, 0

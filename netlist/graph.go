@@ -194,6 +194,11 @@ func (c *Circuit) Paths(from, to NodeID, through func(ElementID) bool) []Path {
 // Reach is the set of nodes that can be reached from the given ones through elements for which through
 // says yes, in rising order; it includes the start and stops at ground.
 func (c *Circuit) Reach(from []NodeID, through func(ElementID) bool) []NodeID {
+	return c.reach(from, func(_ NodeID, n Neighbour) bool { return through(n.Element) })
+}
+
+// reach is Reach with a say about every step from a node.
+func (c *Circuit) reach(from []NodeID, through func(at NodeID, next Neighbour) bool) []NodeID {
 	seen := make(map[NodeID]bool)
 	queue := slices.Clone(from)
 	var list []NodeID
@@ -209,7 +214,7 @@ func (c *Circuit) Reach(from []NodeID, through func(ElementID) bool) []NodeID {
 			continue
 		}
 		for _, next := range c.Neighbours(n) {
-			if !seen[next.Node] && through(next.Element) {
+			if !seen[next.Node] && through(n, next) {
 				queue = append(queue, next.Node)
 			}
 		}
