@@ -55,11 +55,13 @@ const (
 
 // Stresses that the checks derive from others.
 const (
-	JunctionTemperature  Quantity = "junction-temperature" // degC
-	ReverseVoltage       Quantity = "reverse-voltage"      // polarised capacitor, V, not below zero
-	ExpectedLife         Quantity = "expected-life"        // electrolytic, h
-	InstalledCapacitance Quantity = "capacitance"          // beside a regulator, F
-	SeriesResistance     Quantity = "series-resistance"    // of a capacitor beside a regulator, ohm
+	JunctionTemperature Quantity = "junction-temperature" // degC
+	ReverseVoltage      Quantity = "reverse-voltage"      // polarised capacitor, V, not below zero
+	ExpectedLife        Quantity = "expected-life"        // electrolytic, h
+	InputCapacitance    Quantity = "input-capacitance"    // of a regulator, F
+	OutputCapacitance   Quantity = "output-capacitance"   // of a regulator, F
+	CoreTemperature     Quantity = "core-temperature"     // electrolytic, degC
+	SeriesResistance    Quantity = "series-resistance"    // of a capacitor beside a regulator, ohm
 )
 
 // Condition is one solved combination of circumstances.
@@ -86,4 +88,6 @@ type Stress struct {
 	Unproven string
 	// Missing is the duty statement that would settle it, empty if none would.
 	Missing string
+
+	base int // index of the base condition the value was found in, while the table is made
 }
