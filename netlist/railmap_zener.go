@@ -157,7 +157,7 @@ func (f *railFinder) feeders(node, far NodeID, sign int) []ElementID {
 func (f *railFinder) onRail(node, without, far NodeID, sign int) bool {
 	reach := f.c.reach([]NodeID{node}, func(at NodeID, next Neighbour) bool {
 		e := &f.c.Elements[next.Element]
-		if slices.Contains(e.Nodes, without) || slices.Contains(e.Nodes, far) && far != Ground {
+		if next.Node == without || next.Node == far {
 			return false
 		}
 		switch e.Device.(type) {
