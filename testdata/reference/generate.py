@@ -42,7 +42,7 @@ def steady(c, verbose):
     equations, x0, cards = c.build(), c.start, c.cards
     f = lambda t, x: equations(t, x)[0]
     tight, second = c.rtol, c.second
-    x, slope = period.settle(f, x0, c.period, rtol=tight, verbose=verbose) if len(x0) else (np.zeros(0), None)
+    x, slope = period.settle(f, x0, c.period, rtol=tight, plain=c.plain, verbose=verbose) if len(x0) else (np.zeros(0), None)
     if not len(x0):  # no states: an algebraic circuit
         rows, rows2 = [], []
         for samples, out in ((INSTANTS, rows), (INSTANTS // 2, rows2)):

@@ -230,7 +230,7 @@ def surges(cards, t, currents, T):
         bounds = [0, *np.flatnonzero(np.diff(on.astype(int))), len(even) - 1]
         pulse = max(total[b] - total[a] for a, b in zip(bounds, bounds[1:]))
         if abs(pulse - cycle) < 1e-3 * cycle:
-            rows.append((e, "surge-i2t", cycle, "A2s"))
+            rows.append((e, "surge-i2t", pulse, "A2s"))
         else:
             left_out.append("%s pulse %.6g cycle %.6g" % (e, pulse, cycle))
     return rows, left_out

@@ -24,8 +24,9 @@ def settle(f, x, T, rtol=1e-10, method="LSODA", slope=None, plain=2, verbose=Fal
     if slope is None:
         for _ in range(plain):
             x = end(x)
+    measure = lambda y: np.max(np.abs(end(y) - y) / (1 + np.abs(y)))
     given, last = slope, np.inf
-    for k in range(40):
+    for k in range(60):
         e = end(x)
         gap = np.max(np.abs(e - x) / (1 + np.abs(x)))
         if verbose:
@@ -41,7 +42,11 @@ def settle(f, x, T, rtol=1e-10, method="LSODA", slope=None, plain=2, verbose=Fal
                 y = x.copy()
                 y[j] += h
                 slope[:, j] = (end(y) - e) / h
-        x = x + np.linalg.solve(np.eye(len(x)) - slope, e - x)
+        step = np.linalg.solve(np.eye(len(x)) - slope, e - x)
+        share = 1.0
+        while gap > 1e-4 and share > 0.05 and measure(x + share * step) > gap:
+            share /= 2  # far off: go only as far as it helps
+        x = x + share * step if share > 0.05 else end(e)
     raise ArithmeticError("no periodic steady state: gap %g" % gap)
 
 

@@ -187,7 +187,7 @@ LADDER = "\n".join(
 
 
 @circuit("ladder-6", LADDER, [-58.0] + [-115.0] * 11,
-         second=("LSODA", 1e-8))
+         second=("LSODA", 1e-8), plain=60)
 def ladder():
     """Push column C1 C3 .. C11 from N0, smoothing column C2 C4 .. C12 from ground, diodes D1 0-N1, D2 N1-N2, ..
 
