@@ -118,12 +118,19 @@ func smoothMin(a, b, w float64) (m, da, db float64) {
 	return m, da, 1 - da
 }
 
-// smoothPositive is a smooth max(x, 0) with corner width w and its derivative.
+// smoothPositive is a smooth max(x, 0) with corner width w, w ln(1 + exp(x/w)), and its derivative. It dies
+// out exponentially below the corner, so that what is off draws nothing.
 func smoothPositive(x, w float64) (y, dy float64) {
-	r := math.Sqrt(x*x + w*w)
-	if x > 0 {
-		return 0.5 * (x + r), 0.5 * (1 + x/r)
+	z := x / w
+	switch {
+	case z > 40:
+		return x, 1
+	case z < -700:
+		return 0, 0
+	case z < -36:
+		e := math.Exp(z)
+		return w * e, e
 	}
-	// Avoid cancellation: (x + r)/2 = w^2 / (2 (r - x)).
-	return 0.5 * w * w / (r - x), 0.5 * w * w / (r * (r - x))
+	e := math.Exp(z)
+	return w * math.Log1p(e), e / (1 + e)
 }

@@ -18,13 +18,18 @@ type march struct {
 	sys   *system
 	step  float64 // s
 	stage *stage  // of length gammaStage step
-	euler *stage  // of length step, made when first needed; see cutsOff
+	euler *stage  // of length step/cutSteps, made when first needed; see cutsOff
 	last  *stage  // the one that ended the last step
 
 	x, x1, pred []float64
 	u           []float64
+	spare       []float64 // a second pred and u, for cutStep
+	spareInputs []float64
 	flow        dense // d x / d x at the start of the period
 	work        dense
+
+	onJump       func(share float64) // called just before a junction cuts off, see Trajectory.jumps
+	sampleNumber int
 
 	before        []float64 // x, and the port currents, at the start of the step
 	currentBefore []float64
@@ -40,7 +45,7 @@ func newMarch(sys *system, step float64) (*march, error) {
 	a := &march{
 		sys: sys, step: step, stage: newStage(r),
 		x: make([]float64, m), x1: make([]float64, m), pred: make([]float64, m),
-		u: make([]float64, len(sys.sources)), flow: newDense(m, m), work: newDense(m, m),
+		u: make([]float64, len(sys.sources)), spare: make([]float64, m), spareInputs: make([]float64, len(sys.sources)), flow: newDense(m, m), work: newDense(m, m),
 		before: make([]float64, m), currentBefore: make([]float64, len(sys.ports)), flowBefore: make([]float64, m*m),
 	}
 	a.last = a.stage
@@ -56,7 +61,7 @@ func (a *march) inputs(t float64) {
 // advance takes one step from time t. Afterwards x is the new state, pred and u are the predicted state and
 // the inputs of the last stage, from which the unknowns can be read. With track it also propagates flow.
 func (a *march) advance(t float64, track bool) error {
-	guard := len(a.sys.inductors) > 0
+	guard := a.sys.overshoots
 	if guard {
 		copy(a.before, a.x)
 		a.last.currents(a.currentBefore)
@@ -67,12 +72,12 @@ func (a *march) advance(t float64, track bool) error {
 	if err := a.twoStages(t, track); err != nil {
 		return err
 	}
-	if guard && a.cutsOff() {
+	if guard && a.cutsOff(a.stage) {
 		copy(a.x, a.before)
 		if track {
 			copy(a.flow.data, a.flowBefore)
 		}
-		return a.eulerStep(t, track)
+		return a.cutStep(t, track)
 	}
 	return nil
 }
@@ -85,6 +90,14 @@ func (a *march) twoStages(t float64, track bool) error {
 		return fmt.Errorf("%w at %.6g s", err, t1)
 	}
 	a.stage.states(a.x1, a.x, a.u)
+	if a.sys.overshoots {
+		// What flowed in the first stage counts as flowing before the second.
+		for j := range a.currentBefore {
+			if i := a.stage.w[j] + a.sys.ports[j].guess*a.stage.v[j]; math.Abs(i) > math.Abs(a.currentBefore[j]) {
+				a.currentBefore[j] = i
+			}
+		}
+	}
 	if track {
 		// pred = x + leap (x1 - x): its derivative is (1 - leap) F + leap J1 F.
 		j1, err := a.stage.transition()
@@ -116,46 +129,76 @@ func (a *march) twoStages(t float64, track bool) error {
 }
 
 // cutsOff reports whether a junction that carried current stopped in the last step. The second stage of the
-// rule starts from an extrapolated state; where a junction cuts off the current of an inductance that state
-// has overshot, and the inductance answers with a voltage spike that is not in the circuit.
-func (a *march) cutsOff() bool {
+// rule starts from an extrapolated state. Where a junction cuts off the current of an inductance that state
+// has overshot, and the inductance answers with a voltage spike that is not in the circuit; where a regulator
+// reaches its set voltage the output capacitor has overshot, and nothing draws the excess back.
+func (a *march) cutsOff(st *stage) bool {
 	for j, before := range a.currentBefore {
 		if math.Abs(before) < 1e-9 {
 			continue
 		}
-		if now := a.stage.w[j] + a.sys.ports[j].guess*a.stage.v[j]; math.Abs(now) < 1e-3*math.Abs(before) {
+		if now := st.w[j] + a.sys.ports[j].guess*st.v[j]; math.Abs(now) < 1e-3*math.Abs(before) {
 			return true
 		}
 	}
 	return false
 }
 
-// eulerStep takes one step with the implicit Euler rule, which does not extrapolate.
-func (a *march) eulerStep(t float64, track bool) error {
+// cutSteps is how many implicit Euler steps stand for a step in which a junction cuts off.
+const cutSteps = 16
+
+// cutStep takes one step in short ones of the implicit Euler rule, which does not extrapolate.
+func (a *march) cutStep(t float64, track bool) error {
+	short := a.step / cutSteps
 	if a.euler == nil {
-		r, err := a.sys.reduce(a.step)
+		r, err := a.sys.reduce(short)
 		if err != nil {
 			return err
 		}
 		a.euler = newStage(r)
 	}
 	copy(a.euler.v, a.stage.v)
-	copy(a.pred, a.x)
-	a.inputs(t + a.step)
-	if err := a.euler.solve(a.pred, a.u, t+a.step); err != nil {
-		return fmt.Errorf("%w at %.6g s", err, t+a.step)
-	}
-	a.euler.states(a.x, a.pred, a.u)
-	a.last = a.euler
-	copy(a.stage.v, a.euler.v)
-	if track {
-		j, err := a.euler.transition()
-		if err != nil {
-			return err
+	cut := false
+	for k := range cutSteps {
+		at := t + float64(k+1)*short
+		if !cut && k > 0 {
+			a.last.currents(a.currentBefore)
 		}
-		copy(a.work.data, a.flow.data)
-		multiply(a.flow, j, a.work)
+		held, heldInputs := a.pred, a.u
+		a.pred, a.u = a.spare, a.spareInputs
+		copy(a.pred, a.x)
+		a.inputs(at)
+		if err := a.euler.solve(a.pred, a.u, at); err != nil {
+			return fmt.Errorf("%w at %.6g s", err, at)
+		}
+		if !cut && k > 0 && a.onJump != nil && a.cutsOff(a.euler) {
+			cut = true
+			// Show the solution just before: solve it again.
+			a.pred, a.u, a.spare, a.spareInputs = held, heldInputs, a.pred, a.u
+			if err := a.euler.solve(a.pred, a.u, at-short); err != nil {
+				return err
+			}
+			a.last = a.euler
+			a.onJump(float64(k) / cutSteps)
+			a.pred, a.u, a.spare, a.spareInputs = a.spare, a.spareInputs, a.pred, a.u
+			if err := a.euler.solve(a.pred, a.u, at); err != nil {
+				return err
+			}
+			held, heldInputs = a.spare, a.spareInputs
+		}
+		a.spare, a.spareInputs = held, heldInputs
+		a.euler.states(a.x, a.pred, a.u)
+		a.last = a.euler
+		if track {
+			j, err := a.euler.transition()
+			if err != nil {
+				return err
+			}
+			copy(a.work.data, a.flow.data)
+			multiply(a.flow, j, a.work)
+		}
 	}
+	copy(a.stage.v, a.euler.v)
 	return nil
 }
 

@@ -2,6 +2,7 @@ package solver
 
 import (
 	"errors"
+	"fmt"
 	"math"
 )
 
@@ -15,6 +16,11 @@ const (
 	relativeCurrent = 1e-9
 	absoluteCurrent = 1e-18 // A
 	absoluteVoltage = 1e-11 // V
+	// settledStep is a Newton step, V, that is not worth damping, and that ends a search which rounding keeps
+	// from the bounds above: it moves a junction current by less than a millionth.
+	settledStep  = 1e-8
+	patience     = 20    // iterations before settledStep is enough
+	roundingStep = 1e-12 // V, a step that is enough at any time
 )
 
 // stage solves one implicit stage after another. It owns all storage, so that stepping allocates nothing.
@@ -28,6 +34,7 @@ type stage struct {
 	open  []float64 // port voltages with all w zero
 	dv    []float64
 	next  []float64 // proposed port voltages
+	trial []float64
 	lin   []float64 // outputs predicted by the linearisation
 
 	jac      *factor   // I - k slope
@@ -46,7 +53,7 @@ func newStage(r *reduced) *stage {
 	return &stage{
 		r: r,
 		v: make([]float64, d), w: make([]float64, d), i: make([]float64, p), g: make([]float64, p*p),
-		slope: newDense(d, d), open: make([]float64, d), dv: make([]float64, d), next: make([]float64, d),
+		slope: newDense(d, d), open: make([]float64, d), dv: make([]float64, d), next: make([]float64, d), trial: make([]float64, d),
 		lin: make([]float64, d), jac: newFactor(d), jacSlope: make([]float64, d*d), flow: newDense(m, m),
 		column: make([]float64, d),
 	}
@@ -165,6 +172,9 @@ func (st *stage) solve(x, u []float64, t float64) error {
 			}
 		}
 		st.iterations++
+		if iteration >= dampFrom && !limited {
+			limited = st.damp(t)
+		}
 		if limited {
 			copy(st.v, st.next)
 			st.evaluate(st.v, t)
@@ -196,11 +206,51 @@ func (st *stage) solve(x, u []float64, t float64) error {
 				break
 			}
 		}
-		if done {
+		if step := largest(st.dv); done || step < roundingStep || iteration > patience && step < settledStep {
 			return nil
 		}
 	}
-	return ErrNewton
+	return fmt.Errorf("%w (last step %.2g V)", ErrNewton, largest(st.dv))
+}
+
+// dampFrom is the iteration from which a step must shorten the next one, or is halved until it does: two sharp
+// corners can otherwise pass an undamped step back and forth.
+const dampFrom = 8
+
+// damp halves dv, and with it next, until the simplified Newton step from there is shorter (the natural
+// monotonicity test: Deuflhard, Newton Methods for Nonlinear Problems, 2004). It reports whether it did.
+func (st *stage) damp(t float64) bool {
+	full := largest(st.dv)
+	if full < settledStep {
+		return false
+	}
+	damped := false
+	share := 1.0
+	for range 16 {
+		st.evaluate(st.next, t)
+		for j := range st.trial {
+			st.trial[j] = st.open[j] - st.next[j]
+		}
+		st.r.k.addTo(st.trial, st.w)
+		st.jac.solve(st.trial)
+		if largest(st.trial) <= (1-share/4)*full {
+			return damped
+		}
+		damped = true
+		share *= 0.5
+		for j := range st.dv {
+			st.next[j] = st.v[j] + share*st.dv[j]
+		}
+	}
+	return damped
+}
+
+func largest(v []float64) float64 {
+	m := 0.0
+	for _, x := range v {
+		m = math.Max(m, math.Abs(x))
+	}
+	return m
 }
 
 // states writes the states after the stage with predicted states x and inputs u.

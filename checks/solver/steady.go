@@ -17,7 +17,10 @@ type Options struct {
 }
 
 const (
-	defaultSteps    = 128
+	defaultSteps = 128
+	// inductiveSteps is the first grid of a network with inductors, whose node voltages jump where a junction
+	// cuts their current off: what lies between two samples at a jump is known to one step only.
+	inductiveSteps  = 512
 	defaultMaxSteps = 8192
 	// VoltageTolerance and CurrentTolerance are the relative changes between two grids below which a
 	// solution counts as accurate: of voltages and mean values, and of peak and RMS currents.
@@ -29,6 +32,8 @@ const (
 	powerFloor     = 1e-9 // W; below this the power balance is not judged
 	voltageFloor   = 1e-6 // V
 	currentFloor   = 1e-9 // A
+	// currentShare: changes of a current below this part of the largest current of the network do not count.
+	currentShare = 2e-5
 )
 
 // ErrInaccurate says that two grids still differ by more than the tolerance at the largest number of steps.
@@ -62,15 +67,18 @@ func SteadyState(ctx context.Context, n *Network, o Options) (*Solution, error) 
 	if n.Period == 0 {
 		return OperatingPoint(ctx, n)
 	}
-	if o.Steps == 0 {
-		o.Steps = defaultSteps
-	}
 	if o.MaxSteps == 0 {
 		o.MaxSteps = defaultMaxSteps
 	}
 	sys, err := newSystem(n)
 	if err != nil {
 		return nil, err
+	}
+	if o.Steps == 0 {
+		o.Steps = defaultSteps
+		if len(sys.inductors) > 0 {
+			o.Steps = inductiveSteps
+		}
 	}
 	x := make([]float64, sys.states())
 	plain := plainPeriods
@@ -79,6 +87,7 @@ func SteadyState(ctx context.Context, n *Network, o Options) (*Solution, error) 
 		plain = 0
 	}
 	sol := &Solution{}
+	differs := ""
 	for steps := o.Steps; steps <= o.MaxSteps; steps *= 2 {
 		tr, err := sol.grid(ctx, sys, x, steps, plain)
 		if err != nil {
@@ -99,14 +108,15 @@ func SteadyState(ctx context.Context, n *Network, o Options) (*Solution, error) 
 		}
 		sol.States = append(sol.States[:0], x...)
 		sol.Imbalance = imbalance(n, sol.Fine)
-		if sol.Imbalance <= PowerTolerance && sol.agree(n) {
+		differs = sol.disagreement(n)
+		if sol.Imbalance <= PowerTolerance && differs == "" {
 			return sol, nil
 		}
 	}
 	if sol.Coarse == nil {
 		return nil, fmt.Errorf("%w: only one grid could be solved", ErrInaccurate)
 	}
-	return sol, fmt.Errorf("%w at %d steps a period (power imbalance %.2g)", ErrInaccurate, sol.Fine.Samples()-1, sol.Imbalance)
+	return sol, fmt.Errorf("%w at %d steps a period (power imbalance %.2g) %s", ErrInaccurate, sol.Fine.Samples()-1, sol.Imbalance, differs)
 }
 
 // grid solves on one grid, from state x, which it moves to the solution.
@@ -132,26 +142,43 @@ func (s *Solution) grid(ctx context.Context, sys *system, x []float64, steps, pl
 	return tr, nil
 }
 
-// agree compares the branch voltages and currents of the two grids.
-func (s *Solution) agree(n *Network) bool {
+// disagreement compares the branch voltages and currents and the node voltages of the two grids; it names the
+// first quantity that differs by more than the tolerance, "" if none does.
+func (s *Solution) disagreement(n *Network) string {
+	largest := 0.0
+	for d := range n.devices {
+		for k := range n.devices[d].branches {
+			_, i := s.Fine.BranchOf(Device(d), k)
+			for _, v := range i {
+				largest = math.Max(largest, math.Abs(v))
+			}
+		}
+	}
+	floor := currentFloor + currentShare*largest
 	for d := range n.devices {
 		for k := range n.devices[d].branches {
 			v1, i1, p1 := s.Fine.Branch(Device(d), k)
 			v0, i0, p0 := s.Coarse.Branch(Device(d), k)
 			size := math.Max(math.Abs(v1.Max.Value), math.Abs(v1.Min.Value))
-			tol := VoltageTolerance*size + voltageFloor
-			if differ(v1.Max.Value, v0.Max.Value, tol) || differ(v1.Min.Value, v0.Min.Value, tol) || differ(v1.Mean, v0.Mean, tol) {
-				return false
-			}
 			peak := math.Max(math.Abs(i1.Max.Value), math.Abs(i1.Min.Value))
-			if differ(i1.Max.Value, i0.Max.Value, CurrentTolerance*peak+currentFloor) ||
-				differ(i1.Min.Value, i0.Min.Value, CurrentTolerance*peak+currentFloor) ||
-				differ(i1.RMS, i0.RMS, CurrentTolerance*i1.RMS+currentFloor) ||
-				differ(i1.Mean, i0.Mean, VoltageTolerance*i1.RMS+currentFloor) {
-				return false
+			compare := []struct {
+				what         string
+				fine, coarse float64
+				tolerance    float64
+			}{
+				{"largest voltage", v1.Max.Value, v0.Max.Value, VoltageTolerance*size + voltageFloor},
+				{"smallest voltage", v1.Min.Value, v0.Min.Value, VoltageTolerance*size + voltageFloor},
+				{"mean voltage", v1.Mean, v0.Mean, VoltageTolerance*size + voltageFloor},
+				{"largest current", i1.Max.Value, i0.Max.Value, CurrentTolerance*peak + floor},
+				{"smallest current", i1.Min.Value, i0.Min.Value, CurrentTolerance*peak + floor},
+				{"RMS current", i1.RMS, i0.RMS, CurrentTolerance*i1.RMS + floor},
+				{"mean current", i1.Mean, i0.Mean, VoltageTolerance*i1.RMS + floor},
+				{"mean power", p1, p0, VoltageTolerance*v1.RMS*i1.RMS + powerFloor},
 			}
-			if differ(p1, p0, VoltageTolerance*v1.RMS*i1.RMS+powerFloor) {
-				return false
+			for _, c := range compare {
+				if differ(c.fine, c.coarse, c.tolerance) {
+					return fmt.Sprintf("%s of device %d branch %d: %.6g, then %.6g", c.what, d, k, c.coarse, c.fine)
+				}
 			}
 		}
 	}
@@ -159,10 +186,10 @@ func (s *Solution) agree(n *Network) bool {
 		fine := s.Fine.Summary(func(j int) float64 { return s.Fine.Nodes[k][j] })
 		coarse := s.Coarse.Summary(func(j int) float64 { return s.Coarse.Nodes[k][j] })
 		if differ(fine.Ripple(), coarse.Ripple(), VoltageTolerance*fine.Ripple()+VoltageTolerance*1e-3*fine.RMS+voltageFloor) {
-			return false
+			return fmt.Sprintf("ripple of node %d: %.6g V, then %.6g V", k, coarse.Ripple(), fine.Ripple())
 		}
 	}
-	return true
+	return ""
 }
 
 func differ(a, b, tolerance float64) bool { return !(math.Abs(a-b) <= tolerance) }

@@ -24,6 +24,8 @@ type system struct {
 	ports    []port
 	laws     []lawSlot
 	maxPorts int
+	// overshoots: the network has inductors or regulators, see march.cutsOff.
+	overshoots bool
 }
 
 // lawSlot places a law's ports in the port vector.
@@ -49,11 +51,15 @@ func newSystem(n *Network) (*system, error) {
 			s.capacitors = append(s.capacitors, Device(k))
 		case inductor:
 			inductorIndex[Device(k)] = len(s.inductors)
+			s.overshoots = true
 			s.inductors = append(s.inductors, Device(k))
 		case voltageSource, currentSource:
 			s.sources = append(s.sources, Device(k))
 		case nonlinear:
 			s.laws = append(s.laws, lawSlot{d.law, len(s.ports), len(d.ports)})
+			if _, ok := d.law.(*regulator); ok {
+				s.overshoots = true
+			}
 			s.ports = append(s.ports, d.ports...)
 			s.maxPorts = max(s.maxPorts, len(d.ports))
 		}

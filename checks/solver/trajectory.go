@@ -15,14 +15,39 @@ type Trajectory struct {
 	offset      []int                // device -> first branch
 	inner       []Branch             // the branches themselves, without what MeasureAcross adds
 	flux        map[Device][]float64 // flux linkage of each inductor, V s
+	samples     int
+	jumps       []jump
 }
 
 // Samples returns the number of samples, both ends of the interval included.
-func (tr *Trajectory) Samples() int {
-	if len(tr.Nodes) == 0 {
-		return 0
+func (tr *Trajectory) Samples() int { return tr.samples }
+
+// jump is a step inside which a junction cut a current off, so that voltages may jump. column is where the
+// signals just before it are kept, behind the samples; share is the part of the step that passed before it.
+type jump struct {
+	sample, column int
+	share          float64
+}
+
+// maxJumps is how many jumps a trajectory keeps.
+const maxJumps = 64
+
+// extend makes room for one more column behind the samples and returns its number, -1 if there is none left.
+func (tr *Trajectory) extend() int {
+	column := len(tr.Nodes[0])
+	if column-tr.samples >= maxJumps {
+		return -1
 	}
-	return len(tr.Nodes[0])
+	for k := range tr.Nodes {
+		tr.Nodes[k] = append(tr.Nodes[k], 0)
+	}
+	for k := range tr.Currents {
+		tr.Currents[k] = append(tr.Currents[k], 0)
+	}
+	for d := range tr.flux {
+		tr.flux[d] = append(tr.flux[d], 0)
+	}
+	return column
 }
 
 // Voltage returns the voltage of b at sample k.
@@ -35,7 +60,7 @@ func (tr *Trajectory) BranchOf(d Device, k int) (Branch, []float64) {
 }
 
 func newTrajectory(n *Network, start, step float64, samples int) *Trajectory {
-	tr := &Trajectory{Start: start, Step: step, offset: make([]int, len(n.devices)), flux: map[Device][]float64{}}
+	tr := &Trajectory{Start: start, Step: step, offset: make([]int, len(n.devices)), flux: map[Device][]float64{}, samples: samples}
 	for k := range n.devices {
 		tr.offset[k] = len(tr.branches)
 		tr.branches = append(tr.branches, n.devices[k].branches...)
@@ -72,7 +97,10 @@ func (a *march) record(ctx context.Context, start float64, steps int, cold bool)
 	if !cold {
 		a.sample(tr, 0, z)
 	}
+	a.onJump = a.keepJump(tr, z)
+	defer func() { a.onJump = nil }()
 	for k := range steps {
+		a.sampleNumber = k + 1
 		if k&63 == 0 && ctx.Err() != nil {
 			return nil, ctx.Err()
 		}
@@ -82,6 +110,19 @@ func (a *march) record(ctx context.Context, start float64, steps int, cold bool)
 		a.sample(tr, k+1, z)
 	}
 	return tr, nil
+}
+
+// keepJump returns what a march calls just before a junction cuts off: it keeps the signals there.
+func (a *march) keepJump(tr *Trajectory, z []float64) func(share float64) {
+	return func(share float64) {
+		if len(tr.jumps) > 0 && tr.jumps[len(tr.jumps)-1].sample == a.sampleNumber {
+			return
+		}
+		if column := tr.extend(); column >= 0 {
+			a.sample(tr, column, z)
+			tr.jumps = append(tr.jumps, jump{a.sampleNumber, column, share})
+		}
+	}
 }
 
 // sample writes the solution of the last stage into column k.
@@ -157,7 +198,6 @@ func (tr *Trajectory) Summary(value func(k int) float64) Stats {
 	n := tr.Samples()
 	st := Stats{Max: Extreme{math.Inf(-1), 0}, Min: Extreme{math.Inf(1), 0}}
 	maxAt, minAt := 0, 0
-	var sum, square float64
 	for k := range n {
 		v := value(k)
 		if v > st.Max.Value {
@@ -166,21 +206,45 @@ func (tr *Trajectory) Summary(value func(k int) float64) Stats {
 		if v < st.Min.Value {
 			st.Min.Value, minAt = v, k
 		}
-		weight := 1.0
-		if k == 0 || k == n-1 {
-			weight = 0.5
-		}
-		sum += weight * v
-		square += weight * v * v
 	}
-	if n > 1 {
-		sum /= float64(n - 1)
-		square /= float64(n - 1)
-	}
-	st.Mean, st.RMS = sum, math.Sqrt(square)
+	st.Mean, st.RMS = tr.integrate(value)
+	st.RMS = math.Sqrt(st.RMS)
 	st.Max = tr.refine(value, maxAt)
 	st.Min = tr.refine(value, minAt)
+	for _, j := range tr.jumps {
+		at := tr.Start + (float64(j.sample-1)+j.share)*tr.Step
+		if v := value(j.column); v > st.Max.Value {
+			st.Max = Extreme{v, at}
+		} else if v < st.Min.Value {
+			st.Min = Extreme{v, at}
+		}
+	}
 	return st
+}
+
+// integrate returns the mean of a signal and of its square, by the trapezoidal rule on both sides of a jump.
+func (tr *Trajectory) integrate(value func(k int) float64) (mean, square float64) {
+	n := tr.Samples()
+	if n < 2 {
+		v := value(0)
+		return v, v * v
+	}
+	last, next := value(0), 0
+	for k := 1; k < n; k++ {
+		v := value(k)
+		if next < len(tr.jumps) && tr.jumps[next].sample == k {
+			j := tr.jumps[next]
+			next++
+			before := value(j.column)
+			mean += j.share*0.5*(last+before) + (1-j.share)*v
+			square += j.share*0.5*(last*last+before*before) + (1-j.share)*v*v
+		} else {
+			mean += 0.5 * (last + v)
+			square += 0.5 * (last*last + v*v)
+		}
+		last = v
+	}
+	return mean / float64(n-1), square / float64(n-1)
 }
 
 // refine returns the vertex of the parabola through samples k-1, k, k+1 where k holds an extremum, if the
@@ -206,14 +270,10 @@ func (tr *Trajectory) refine(value func(k int) float64, k int) Extreme {
 	return Extreme{b - 0.25*(a-c)*shift, e.At + shift*tr.Step}
 }
 
-// Mean returns the mean of a signal over the interval, by the trapezoidal rule.
+// Mean returns the mean of a signal over the interval.
 func (tr *Trajectory) Mean(value func(k int) float64) float64 {
-	n := tr.Samples()
-	sum := 0.5 * (value(0) + value(n-1))
-	for k := 1; k < n-1; k++ {
-		sum += value(k)
-	}
-	return sum / float64(n-1)
+	mean, _ := tr.integrate(value)
+	return mean
 }
 
 // MeanPower returns the mean power that branch k of device d takes in. For an inductor it is the mean of
@@ -227,10 +287,14 @@ func (tr *Trajectory) MeanPower(d Device, k int) float64 {
 	own := tr.inner[tr.offset[d]+k]
 	power := tr.Mean(func(n int) float64 { return (tr.Voltage(b, n) - tr.Voltage(own, n)) * current[n] })
 	work := 0.0
-	for n := 1; n < len(flux); n++ {
+	for n := 1; n < tr.samples; n++ {
 		work += 0.5 * (current[n] + current[n-1]) * (flux[n] - flux[n-1])
 	}
-	return power + work/(tr.Step*float64(len(flux)-1))
+	if last := tr.samples - 1; tr.Periodic {
+		// What the energy at both ends still differs by is the error of periodicity, not power.
+		work -= 0.5 * (flux[last]*current[last] - flux[0]*current[0])
+	}
+	return power + work/(tr.Step*float64(tr.samples-1))
 }
 
 // Sum returns a trajectory of one device whose voltage is that of the first of the given devices and whose

@@ -27,6 +27,9 @@ const openOhms = 1e15
 // drawing their rated current somewhere below their working voltage).
 const loadKnee = 1.0
 
+// nominalKnee is the same for a load exactly as written, V.
+const nominalKnee = 1e-3
+
 // lower builds the network of the supply in one setting.
 func (s *Supply) lower(set *Setting, plan *Plan) (*lowered, error) {
 	c := s.Circuit
@@ -204,9 +207,14 @@ func (low *lowered) voltageSource(s *Supply, id netlist.ElementID, e *netlist.El
 func (low *lowered) currentSource(id netlist.ElementID, e *netlist.Element, d *netlist.CurrentSource, set *Setting, plan *Plan) solver.Device {
 	n := low.net
 	plus, minus := solver.Node(e.Nodes[0]), solver.Node(e.Nodes[1])
-	if load, ok := plan.loadOf(id); ok && set.Loads != nil && !set.Nominal {
-		amperes := plan.loads[load].current(set.Loads[load])
-		return n.AddConstantCurrentLoad(plus, minus, amperes, loadKnee)
+	if load, ok := plan.loadOf(id); ok {
+		if set.Loads != nil && !set.Nominal {
+			return n.AddConstantCurrentLoad(plus, minus, plan.loads[load].current(set.Loads[load]), loadKnee)
+		}
+		if w, constant := d.Wave.(netlist.Constant); constant && w.Level > 0 {
+			// Constant but for the last millivolt, so that it cannot drive an empty supply negative.
+			return n.AddConstantCurrentLoad(plus, minus, w.Level, nominalKnee)
+		}
 	}
 	return n.AddCurrentSource(plus, minus, plan.wave(d.Wave, 1, set))
 }

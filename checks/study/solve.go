@@ -18,6 +18,7 @@ type outcome struct {
 	nodes   []place                   // node of the whole network -> where it was solved
 	uses    map[solver.Device][]place // device -> where it takes part
 	failed  error                     // no network could be built
+	base    int                       // index among the base conditions
 }
 
 // place is an island and an index in it; island -1: nowhere.
@@ -29,7 +30,7 @@ type solvedIsland struct {
 	blocked  string // an element without a model touches it
 }
 
-// states remembers the periodic states of earlier settings so that neighbours start from them.
+// states holds the periodic states of a neighbouring setting, by island, from which the search starts.
 type states map[int][]float64
 
 // solve finds the steady state of every island of the supply in one setting.
@@ -74,9 +75,6 @@ func (p *Plan) solve(ctx context.Context, set Setting, warm states) *outcome {
 			is.solution, is.err = solver.SteadyState(ctx, part.Network, solver.Options{Start: warm[i]})
 			if is.err != nil && warm[i] != nil && ctx.Err() == nil {
 				is.solution, is.err = solver.SteadyState(ctx, part.Network, solver.Options{})
-			}
-			if is.solution != nil && warm != nil {
-				warm[i] = is.solution.States
 			}
 		} else {
 			is.err = out.failed

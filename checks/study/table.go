@@ -111,9 +111,12 @@ func Nominal(ctx context.Context, s *Supply, cold bool) *Table {
 func Worst(ctx context.Context, s *Supply, jobs int) *Table {
 	p := NewPlan(s)
 	t := newTable(p)
-	for _, out := range p.solveAll(ctx, p.baseSettings(), jobs) {
+	base := p.solveAll(ctx, p.baseSettings(), jobs)
+	for k, out := range base {
+		out.base = k
 		t.take(out)
 	}
+	t.tolerances(ctx, base, jobs)
 	p.coldStarts(ctx, jobs, t)
 	t.order(s.Circuit)
 	t.block()
@@ -121,7 +124,7 @@ func Worst(ctx context.Context, s *Supply, jobs int) *Table {
 }
 
 // coldPhases is how many start phases of a period are tried.
-const coldPhases = 4
+const coldPhases = 8
 
 // coldStarts adds the switch-on from empty at high line, full and light load, at several phases.
 func (p *Plan) coldStarts(ctx context.Context, jobs int, t *Table) {
@@ -132,7 +135,7 @@ func (p *Plan) coldStarts(ctx context.Context, jobs int, t *Table) {
 			for k := range loads {
 				loads[k] = load
 			}
-			settings = append(settings, Setting{Line: LineHigh, Loads: loads, Ambient: p.Ambient[1], Phase: float64(phase) / coldPhases / 2})
+			settings = append(settings, Setting{Line: LineHigh, Loads: loads, Ambient: p.Ambient[1], Phase: float64(phase) / coldPhases})
 			if len(p.loads) == 0 {
 				break
 			}
@@ -203,6 +206,7 @@ func (t *Table) take(out *outcome) {
 				return
 			}
 		}
+		s.base = out.base
 		t.merge(s)
 	})
 	t.note(out)
