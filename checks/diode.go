@@ -79,8 +79,8 @@ var diodeSurgeCurrent = &Check{
 	Applies: "every diode that is not a zener",
 	Stress:  "peak, and I2t of the worst conduction pulse, from switch-on at several phases until the currents have settled",
 	Rating:  "IFSM, the crest of one half sine, and I2t", Worst: "cold start at high line, reservoir empty", Policy: policy.IFSM,
-	Formula:      "peak below crest/Rs; I2t of a half sine of length t is I^2 t/2",
-	Assumptions:  "switch-on at the worst of several phases; the mains itself has no resistance beyond what is drawn",
+	Formula:      "peak below crest/Rs; I2t of a half sine of length t is I^2 t/2, 30 A over 8.3 ms: 3.7 A2s",
+	Assumptions:  "an IFSM stated without a length or I2t is that of a half sine of 8.3 ms; switch-on at the worst of several phases; the mains itself has no resistance beyond what is drawn",
 	SeverityRule: standardSeverity,
 	Source:       "IFSM as the crest of one half sine of 8.3 ms: JEDEC, as on makers' data of the 1N4001 family",
 	Remedy:       "resistance in series with the winding, an inrush limiter, a smaller reservoir, or a diode with a higher IFSM",
@@ -190,7 +190,29 @@ func (p *Pass) judgeSurge(id netlist.ElementID, peak, integral *study.Stress) (c
 	if integral == nil {
 		square = p.unsolvedStress(square, absent)
 	} else {
-		square = p.judge(upper{stress: integral, rating: p.known(id, "I2t"), symbol: "I2t", unit: quantity.AmpereSquaredSecond, key: policy.I2t, remedy: remedy + "I2t"})
+		square = p.judge(upper{stress: integral, rating: p.surgeIntegral(id), symbol: "I2t", unit: quantity.AmpereSquaredSecond, key: policy.I2t, remedy: remedy + "I2t"})
 	}
 	return crest, square
+}
+
+// surgeLength is the length of the half sine of IFSM where none is stated, s: half a period of 60 Hz, as JEDEC has it.
+const surgeLength = 8.3e-3
+
+// surgeIntegral is the I2t of a diode: stated, of its row, or of the half sine of its IFSM.
+func (p *Pass) surgeIntegral(id netlist.ElementID) *Rating {
+	if r := p.known(id, "I2t"); r != nil {
+		return r
+	}
+	crest := p.known(id, "IFSM")
+	if crest == nil {
+		return nil
+	}
+	length := surgeLength
+	if t := p.known(id, "tIFSM"); t != nil {
+		length = t.Value
+	}
+	r := *crest
+	r.Symbol, r.Unit, r.Value = "I2t", quantity.AmpereSquaredSecond, crest.Value*crest.Value*length/2
+	r.Origin = "IFSM^2 t/2, " + crest.Origin
+	return &r
 }

@@ -60,6 +60,20 @@ func (p *Pass) heatPath(id netlist.ElementID) heatPath {
 	}
 }
 
+// What the poorest part bears: proven for a semiconductor of which nothing is stated. Common practice.
+const (
+	poorestResistance = 600.0 // K/W, junction to ambient, of the smallest cases
+	poorestJunction   = 125.0 // degC
+)
+
+// junctionOf is a stated Tj, or that of the poorest part.
+func junctionOf(limit *Rating) float64 {
+	if limit == nil {
+		return poorestJunction
+	}
+	return limit.Value
+}
+
 // judgeJunction holds the temperature of a junction at the highest ambient against Tj.
 func (p *Pass) judgeJunction(id netlist.ElementID, power *study.Stress, key policy.Key) Finding {
 	e := p.element(id)
@@ -70,6 +84,12 @@ func (p *Pass) judgeJunction(id netlist.ElementID, power *study.Stress, key poli
 	limit := p.known(id, "Tj")
 	_, row := p.derate(0, key)
 	path := p.heatPath(id)
+	if rise := highest * poorestResistance; path.missing == "RthJA" && p.ambient()+rise <= row.Limit(junctionOf(limit)) && power.Unproven == "" {
+		if limit == nil {
+			limit = &Rating{Symbol: "Tj", Value: poorestJunction, Unit: quantity.Celsius, Origin: "any semiconductor, assumed", Source: "common practice", Confidence: policy.CommonPractice}
+		}
+		path = heatPath{resistance: poorestResistance, words: fmt.Sprintf("RthJA %g K/W assumed, that of the smallest cases", poorestResistance)}
+	}
 	if path.missing != "" {
 		f := Finding{Stress: power, Rating: limit, Verdict: Unproven, Reason: "no rating " + path.missing + " is known"}
 		statement := "rate " + e.Name + " " + path.missing + "=...K/W"

@@ -19,7 +19,7 @@ var regulatorCapacitors = &Check{
 	Formula: "sum of C (1 + lower tolerance)",
 	Assumptions: "how near they stand cannot be read from a netlist: the input capacitor must be within some centimetres; " +
 		"a series resistance that is not stated is known as an upper end only, tan delta/(2 pi f C) at 120 Hz of a general-purpose electrolytic",
-	SeverityRule: "major where the type is unstable without it (its row has a window of ESR); minor otherwise",
+	SeverityRule: "major where the type is unstable without it (its row has a window of ESR), minor if only the tolerance takes it below; minor otherwise, nominal values counted",
 	Source:       "makers' data of the type",
 	Remedy:       "the next preferred capacitance, with a series resistance inside the window",
 	run: func(p *Pass) {
@@ -112,8 +112,9 @@ func (p *Pass) lowCapacitance(id netlist.ElementID) float64 {
 	return c.Farads * (1 + low)
 }
 
-// judgeCapacitance holds the capacitance at one pin, at its low tolerance, against what is asked for. Where
-// only the tolerance takes it below, the finding is minor: makers mostly mean nominal values.
+// judgeCapacitance holds the capacitance at one pin, at its low tolerance, against what is asked for. Makers
+// mostly mean nominal values: where only the tolerance takes it below, the finding is minor if the type could
+// oscillate, and none otherwise.
 func (p *Pass) judgeCapacitance(e *netlist.Element, q study.Quantity, list []netlist.ElementID, asked *Rating, below Severity) Finding {
 	sum, nominal, names := 0.0, 0.0, "none there"
 	for k, id := range list {
@@ -128,12 +129,16 @@ func (p *Pass) judgeCapacitance(e *netlist.Element, q study.Quantity, list []net
 			names += ", " + x.Name
 		}
 	}
-	if nominal >= asked.Value && sum < asked.Value {
-		below = Minor
-		names += "; the nominal value is enough"
-	}
 	s := p.steadyStress(e.Name, q, sum, quantity.Farad)
 	s.Condition.Name = "capacitors at their low tolerance"
+	if nominal >= asked.Value*(1-1e-9) && sum < asked.Value {
+		if below == Major {
+			below = Minor
+			names += "; the nominal value is enough"
+		} else {
+			s.Value, s.Condition.Name = math.Max(nominal, asked.Value), "capacitors at their nominal value"
+		}
+	}
 	remedy := "a capacitor of " + quantity.Format(nextStandard(parts.E6, asked.Value/0.8), quantity.Farad, 3)
 	return p.judgeMinimum(lower{
 		stress: s, rating: asked, symbol: asked.Symbol, unit: quantity.Farad, note: names, lost: math.Inf(-1), below: below, remedy: remedy,
@@ -207,7 +212,10 @@ func (p *Pass) guardOf(e *netlist.Element, d *netlist.Regulator) (guard, string)
 }
 
 func (p *Pass) judgeBackflow(id netlist.ElementID, e *netlist.Element, d *netlist.Regulator) Finding {
-	const remedy = "a diode from output (anode) to input (cathode); the other way round for a negative regulator"
+	remedy := "a diode from output (anode) to input (cathode)"
+	if d.Polarity < 0 {
+		remedy = "a diode from input (anode) to output (cathode)"
+	}
 	kind, name := p.guardOf(e, d)
 	if kind == reversed {
 		return Finding{Verdict: Violated, Severity: Critical, Remedy: remedy,

@@ -13,32 +13,33 @@ import (
 
 var resistorPower = &Check{
 	Name: "resistor-power", Title: "resistor power",
-	Applies: "resistors whose P70 is known, and those that dissipate more than 0.075 W; loads, fuses, inrush limiters, zener resistors and the copper of a declared winding aside",
+	Applies: "every resistor; loads, fuses, inrush limiters, zener resistors and the copper of a declared winding aside",
 	Stress:  "mean power over the period", Rating: "P70, derated linearly from 70 degC to nothing at the highest film temperature",
 	Worst: "high line; resistor at the end of its tolerance", Policy: policy.ResistorPower,
 	Formula:      "P = Vrms^2/R",
-	Assumptions:  "film resistor: full power to 70 degC, zero at 155 degC; 0.075 W is what 0.6 leaves of the smallest leaded type, 0.125 W",
+	Assumptions:  "film resistor: full power to 70 degC, zero at 155 degC; where P70 is not known, what the smallest leaded type bears, 0.125 W, is taken as proven",
 	SeverityRule: standardSeverity,
 	Source:       "derating line of metal film resistors: makers' data after IEC 60115",
 	Remedy:       "the next standard power rating",
 	run: func(p *Pass) {
 		p.eachPlainResistor(func(id netlist.ElementID, e *netlist.Element) {
 			s, rating := p.get(e.Name, study.MeanPower), p.known(id, "P70")
-			if rating == nil && found(s) && s.Value+s.Error <= minorPower && s.Unproven == "" {
-				return
+			f := p.judgeResistor(id, s, rating)
+			if rating == nil {
+				f = assume(f, p.judgeResistor(id, s, smallestPower))
 			}
-			p.report(id, p.judgeResistor(id, s, rating))
+			p.report(id, f)
 		})
 	},
 }
 
 var resistorVoltage = &Check{
 	Name: "resistor-voltage", Title: "resistor voltage",
-	Applies: "resistors whose Umax is known, and those above 150 V",
+	Applies: "every resistor; loads, fuses, inrush limiters and the copper of a declared winding aside",
 	Stress:  "largest voltage across it", Rating: "Umax, the limiting element voltage",
 	Worst: "high line, light load", Policy: policy.ResistorVoltage,
 	Formula:      "a bleeder sees the crest of its reservoir",
-	Assumptions:  "Umax is held against the crest",
+	Assumptions:  "Umax is held against the crest; where it is not known, what the smallest leaded type bears, 150 V, is taken as proven",
 	SeverityRule: standardSeverity,
 	Source:       "limiting voltages of 150 to 500 V by size: makers' data of metal film resistors",
 	Remedy:       "a larger type, or two in series",
@@ -50,21 +51,34 @@ var resistorVoltage = &Check{
 	},
 }
 
-const (
-	// minorPower is the power that any leaded resistor bears, W: the smallest standard type times 0.6.
-	minorPower = 0.075
-	// smallestUmax is the lowest limiting voltage of the standard leaded types, V.
-	smallestUmax = 150
+// The least ratings of the standard leaded types: what stays inside them is proven for a resistor of which nothing
+// is stated.
+var (
+	smallestPower = &Rating{Symbol: "P70", Value: 0.125, Unit: quantity.Watt, Origin: "the smallest standard leaded type, assumed",
+		Source: "power steps of metal film resistors, makers' data", Confidence: parts.Seen}
+	smallestVoltage = &Rating{Symbol: "Umax", Value: 150, Unit: quantity.Volt, Origin: "the smallest standard leaded type, assumed",
+		Source: "limiting voltages of metal film resistors, makers' data", Confidence: parts.Seen}
 )
 
-func (p *Pass) resistorVoltage(id netlist.ElementID, e *netlist.Element) {
-	s, rating := p.get(e.Name, study.PeakVoltage), p.known(id, "Umax")
-	if rating == nil && (s == nil || found(s) && s.Value+s.Error <= smallestUmax && s.Unproven == "") {
-		return
+// assume takes the finding on an assumed least rating in place of one that lacks its rating, if it is proven.
+func assume(lacking, assumed Finding) Finding {
+	if assumed.Verdict == Proven {
+		return assumed
 	}
-	p.report(id, p.judge(upper{
-		stress: s, rating: rating, symbol: "Umax", unit: quantity.Volt, key: policy.ResistorVoltage, remedy: "a larger type, or two in series",
-	}))
+	return lacking
+}
+
+func (p *Pass) resistorVoltage(id netlist.ElementID, e *netlist.Element) {
+	u := upper{
+		stress: p.get(e.Name, study.PeakVoltage), rating: p.known(id, "Umax"), symbol: "Umax", unit: quantity.Volt,
+		key: policy.ResistorVoltage, remedy: "a larger type, or two in series",
+	}
+	f := p.judge(u)
+	if u.rating == nil {
+		u.rating = smallestVoltage
+		f = assume(f, p.judge(u))
+	}
+	p.report(id, f)
 }
 
 // eachPlainResistor calls f for every resistor that is neither a load, a fuse, an inrush limiter nor the

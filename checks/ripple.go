@@ -18,6 +18,7 @@ var capacitorRippleCurrent = &Check{
 	Rating:  "IR at fIR", Worst: "high line, full load, source resistance low", Policy: policy.RippleCurrent,
 	Formula: "triangular ripple: Ipp/(2 sqrt(3)); a full-wave reservoir carries 1.3 to 2.1 times Idc",
 	Assumptions: "IR holds at 120 Hz unless fIR is stated; the multipliers are those of electrolytics for the rated voltage; " +
+		"what any electrolytic bears, 10 mA, is taken as proven where IR is not known; " +
 		"without a weighted spectrum the RMS current divided by the least multiplier from the line frequency up bounds it from above",
 	SeverityRule: standardSeverity,
 	Source:       "multipliers by rated voltage: makers' data of the 056/057 series, table 4; ratio of 100 Hz to 120 Hz ratings: makers' data",
@@ -120,12 +121,22 @@ func sineOf(e *netlist.Element) (netlist.Sine, bool) {
 	return sine, ok && sine.Amplitude != 0
 }
 
+// leastRipple is the ripple current that any electrolytic of 10 uF and more bears; what stays inside it is proven for a
+// capacitor of which nothing is stated.
+var leastRipple = &Rating{Symbol: "IR", Value: 0.01, Unit: quantity.Ampere, Origin: "any electrolytic of 10 uF and more, assumed",
+	Source: "common practice", Confidence: policy.CommonPractice}
+
 func (p *Pass) judgeRipple(id netlist.ElementID, weighted, rms *study.Stress) Finding {
 	s, how := p.equivalentRipple(id, weighted, rms)
-	f := p.judge(upper{
+	u := upper{
 		stress: s, rating: p.known(id, "IR"), symbol: "IR", unit: quantity.Ampere, key: policy.RippleCurrent, note: how,
 		remedy: "a capacitor with a higher IR, several in parallel, or more resistance in series with the winding",
-	})
+	}
+	f := p.judge(u)
+	if u.rating == nil {
+		u.rating = leastRipple
+		return assume(f, p.judge(u))
+	}
 	if weighted != nil || f.Verdict != Violated {
 		return f
 	}
