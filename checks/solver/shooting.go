@@ -13,11 +13,13 @@ import (
 var ErrUnsettled = errors.New("no periodic steady state was found")
 
 const (
-	plainPeriods  = 2   // integrated before Newton's method starts
-	maxPeriods    = 600 // integrated in all before the search is given up
-	stuckPeriods  = 12  // plain periods after a Newton step that made things worse
-	relativeState = 1e-7
-	absoluteState = 1e-8 // in units of stateScale
+	plainPeriods = 2   // integrated before Newton's method starts
+	maxPeriods   = 600 // integrated in all before the search is given up
+	stuckPeriods = 12  // plain periods after a Newton step that made things worse
+	// relativeState and absoluteState (in units of stateScale) bound the last Newton step; what is then left
+	// is of the order of its square.
+	relativeState = 1e-6
+	absoluteState = 1e-7
 	// neutral: directions in which a period changes the state by less than this fraction are left where
 	// they are (an isolated node between capacitors; the direct current in a winding without resistance).
 	neutral = 1e-11

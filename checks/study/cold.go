@@ -11,11 +11,11 @@ import (
 )
 
 const (
-	coldSteps      = 512 // steps a period of a cold start; the error is taken from half as many
+	coldSteps      = 256 // steps a period of a cold start; the error is taken from half as many
 	coldMaxPeriods = 500
 	// coldSettled is the relative change of the diodes' peak currents from one period to the next below
 	// which a start counts as over.
-	coldSettled = 0.01
+	coldSettled = 0.03
 	coldQuiet   = 3 // such periods in a row
 )
 
