@@ -13,6 +13,7 @@ var catalogue = []*Check{
 	windingCurrent, chokeInductance, fuseCurrent, fuseSurge,
 	railVoltage, railRipple, outputShort,
 	sourceUnknown, peakOrRMS, unsolved,
+	polarity, floatingNode, noDCPath, shortedElement, sourceLoop, unconnectedTerminal,
 	valueSuffix, duplicateName, libraryNotRead, afterEnd, modelNote,
 }
 
