@@ -52,6 +52,9 @@ func (p *Plan) extract(out *outcome, emit func(Stress)) {
 			}
 		}
 		c.elementStresses(id, e, dev)
+		if !out.set.Nominal && (dev != none || c.island.solution == nil) {
+			c.checkStresses(id, e, dev)
+		}
 	}
 	for k := 1; k < len(circuit.Nodes); k++ {
 		c := &collector{plan: p, out: out, element: "node:" + circuit.Nodes[k].Name, emit: emit, cond: cond}

@@ -50,7 +50,7 @@ func (t *Table) Get(element string, q Quantity) (*Stress, bool) {
 func (t *Table) Island(id netlist.ElementID) int { return t.islands[id] }
 
 // smallerIsWorse are the quantities whose worst value is the smallest.
-var smallerIsWorse = map[Quantity]bool{MinVoltage: true, MinCurrent: true, MinDifferential: true, MinHeadroom: true}
+var smallerIsWorse = map[Quantity]bool{MinVoltage: true, MinCurrent: true, MinDifferential: true, MinHeadroom: true, LeastCurrent: true, MinOutputCurrent: true}
 
 // worse reports whether a is worse than b, each with its numerical error counted against the part.
 func worse(a, b *Stress) bool {
