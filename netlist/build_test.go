@@ -3,7 +3,6 @@ package netlist
 import (
 	"strconv"
 	"strings"
-	"testing"
 
 	"railproof/netlist/quantity"
 )
@@ -12,7 +11,10 @@ import (
 // are tested apart from the reader: R C L with a value, V and I with a value or SIN(offset amplitude
 // frequency [delay damping phase]), D with a type name and optionally BV=, Q with NPN or PNP, K, E (gain),
 // and U with a regulator type, nodes in gnd out.
-func build(t testing.TB, cards string) *Circuit {
+func build(t interface {
+	Helper()
+	Fatalf(format string, args ...any)
+}, cards string) *Circuit {
 	t.Helper()
 	c := &Circuit{File: "test.cir", Temperature: 27, Nodes: []Node{{Name: "0"}}, Library: knownTypes{}}
 	number := func(text string) float64 {

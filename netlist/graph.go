@@ -194,14 +194,20 @@ func (c *Circuit) Paths(from, to NodeID, through func(ElementID) bool) []Path {
 // Reach is the set of nodes that can be reached from the given ones through elements for which through
 // says yes, in rising order; it includes the start and stops at ground.
 func (c *Circuit) Reach(from []NodeID, through func(ElementID) bool) []NodeID {
-	return c.reach(from, func(_ NodeID, n Neighbour) bool { return through(n.Element) })
+	var list []NodeID
+	c.reach(from, func(_ NodeID, n Neighbour) bool { return through(n.Element) }, func(n NodeID) bool {
+		list = append(list, n)
+		return true
+	})
+	slices.SortFunc(list, cmp.Compare[NodeID])
+	return list
 }
 
-// reach is Reach with a say about every step from a node.
-func (c *Circuit) reach(from []NodeID, through func(at NodeID, next Neighbour) bool) []NodeID {
+// reach goes on from the given nodes, nearest first, by the steps that through allows and not on from ground; it
+// ends when visit says no.
+func (c *Circuit) reach(from []NodeID, through func(at NodeID, next Neighbour) bool, visit func(NodeID) bool) {
 	seen := make(map[NodeID]bool)
 	queue := slices.Clone(from)
-	var list []NodeID
 	for len(queue) > 0 {
 		n := queue[0]
 		queue = queue[1:]
@@ -209,7 +215,9 @@ func (c *Circuit) reach(from []NodeID, through func(at NodeID, next Neighbour) b
 			continue
 		}
 		seen[n] = true
-		list = append(list, n)
+		if !visit(n) {
+			return
+		}
 		if n == Ground && !slices.Contains(from, Ground) {
 			continue
 		}
@@ -219,8 +227,6 @@ func (c *Circuit) reach(from []NodeID, through func(at NodeID, next Neighbour) b
 			}
 		}
 	}
-	slices.SortFunc(list, cmp.Compare[NodeID])
-	return list
 }
 
 // disjointSets is a union-find forest.

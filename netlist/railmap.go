@@ -49,22 +49,22 @@ const (
 
 // RailStage is one stage of a rail.
 type RailStage struct {
-	Role        StageRole
-	Arrangement Arrangement // empty where the role says it all
-	Elements    []ElementID
-	Names       []string // of the elements
-	Node        NodeID   // where the stage delivers; for a source, its first node
-	NodeName    string
-	Cascade     bool // a regulator behind another one
-	Note        string
+	Role        StageRole   `json:"role"`
+	Arrangement Arrangement `json:"arrangement,omitempty"` // empty where the role says it all
+	Elements    []ElementID `json:"-"`
+	Names       []string    `json:"elements"`          // of the elements, full paths
+	Node        NodeID      `json:"-"`                 // where the stage delivers; for a source, its first node
+	NodeName    string      `json:"node"`              //
+	Cascade     bool        `json:"cascade,omitempty"` // a regulator behind another one
+	Note        string      `json:"note,omitempty"`    // values of the parts, for people
 }
 
 // RailChain is one rail of a supply: the chain from its source to its load as a person would draw it.
 type RailChain struct {
-	Stages   []RailStage
-	Output   NodeID // the last node
-	Return   NodeID
-	Negative bool // the rail is below its return
+	Stages   []RailStage `json:"stages"`
+	Output   NodeID      `json:"-"`                  // the last node
+	Return   NodeID      `json:"-"`                  //
+	Negative bool        `json:"negative,omitempty"` // the rail is below its return
 }
 
 // RailMap recognises the rails of the circuit: source -> (transformer) -> rectifier -> reservoir ->

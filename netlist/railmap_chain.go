@@ -9,19 +9,24 @@ const maxChains = 64
 type way struct {
 	stages    []RailStage
 	node      NodeID
-	back      []NodeID // the return: its node and what ammeters and small resistors tie to it
+	home      NodeID   // the return
+	back      []NodeID // the return and what ammeters and small resistors tie to it
 	negative  bool
 	seen      []NodeID
 	reservoir bool // a reservoir stands at or before the node
 	regulated bool // a regulator stands before the node
 }
 
-// smallOhms is the resistance in ohm up to which a resistor in the return is an ammeter or a wire.
-const smallOhms = 1
+// smallOhms is the resistance in ohm up to which a resistor at the return is a wire or senses current: a load
+// of less would draw 20 A from 5 V.
+const smallOhms = 0.25
 
 // follows goes along the direct-voltage side from a node and adds the chains it finds.
 func (f *railFinder) follows(stages []RailStage, node, back NodeID, negative bool) {
-	w := way{stages: stages, node: node, negative: negative, seen: []NodeID{node}}
+	if node == back {
+		return // a diode straight across a winding
+	}
+	w := way{stages: stages, node: node, home: back, negative: negative, seen: []NodeID{node}}
 	w.back = f.c.Reach([]NodeID{back}, func(id ElementID) bool {
 		switch d := f.c.Elements[id].Device.(type) {
 		case VoltageSource:
@@ -83,15 +88,83 @@ func (f *railFinder) walk(w way) {
 	}
 }
 
-// capacitorsAt lists the capacitors across a rail that are large enough to hold it.
+// capacitorsAt lists the capacitors across a rail that are large enough to hold it, also behind a resistor
+// and an inductor that draw their losses: their far node then meets nothing else.
 func (f *railFinder) capacitorsAt(node NodeID, back []NodeID) []ElementID {
 	var list []ElementID
 	for _, n := range f.c.Neighbours(node) {
-		if d, ok := f.c.Elements[n.Element].Device.(Capacitor); ok && d.Farads >= reservoirFrom && slices.Contains(back, n.Node) {
-			list = append(list, n.Element)
+		capacitor, end := n.Element, n.Node
+		if h := f.hop(node, back, n); len(h.elements) > 0 {
+			if capacitor, end = f.lossyCapacitor(h); capacitor < 0 {
+				continue
+			}
+		}
+		if d, ok := f.c.Elements[capacitor].Device.(Capacitor); ok && d.Farads >= reservoirFrom && slices.Contains(back, end) {
+			list = append(list, capacitor)
 		}
 	}
 	return list
+}
+
+// lossOhms is the resistance in ohm up to which a resistor in series with a capacitor is its own.
+const lossOhms = 10
+
+// lossyCapacitor finds the capacitor whose losses a run of resistors and inductors draws, and its far node;
+// -1 if the run leads elsewhere.
+func (f *railFinder) lossyCapacitor(h hopped) (ElementID, NodeID) {
+	if h.ohms > lossOhms || h.node == Ground || len(f.c.Nodes[h.node].Terminals) != 2 {
+		return -1, none
+	}
+	id, end := f.acrossJoint(h.elements[len(h.elements)-1], h.node)
+	if id >= 0 {
+		if _, ok := f.c.Elements[id].Device.(Capacitor); ok {
+			return id, end
+		}
+	}
+	return -1, none
+}
+
+// hopped is a run of resistors and inductors in series with nothing between them.
+type hopped struct {
+	elements []ElementID
+	node     NodeID // at its end
+	choke    bool   // an inductor is among them
+	ohms     float64
+}
+
+// hop follows a neighbour as far as resistors and inductors are simply in series, and not on to the return;
+// no elements if it is neither.
+func (f *railFinder) hop(from NodeID, back []NodeID, n Neighbour) hopped {
+	h := hopped{node: from}
+	for len(h.elements) < 16 {
+		switch d := f.c.Elements[n.Element].Device.(type) {
+		case Inductor:
+			h.choke = true
+		case Resistor:
+			h.ohms += d.Ohms
+		default:
+			return h
+		}
+		h.elements, h.node = append(h.elements, n.Element), n.Node
+		if n.Node == Ground || n.Node == from || len(f.c.Nodes[n.Node].Terminals) != 2 {
+			return h
+		}
+		n.Element, n.Node = f.acrossJoint(n.Element, n.Node)
+		if n.Element < 0 || n.Node == Ground || slices.Contains(back, n.Node) {
+			return h
+		}
+	}
+	return h
+}
+
+// acrossJoint is the other element at a node where two meet, and its far end; -1 if there is none.
+func (f *railFinder) acrossJoint(element ElementID, node NodeID) (ElementID, NodeID) {
+	for _, n := range f.c.Neighbours(node) {
+		if n.Element != element {
+			return n.Element, n.Node
+		}
+	}
+	return -1, none
 }
 
 // onward lists the ways from a node to the next, in netlist order.
@@ -122,12 +195,20 @@ func (f *railFinder) onward(w way) []way {
 			if !f.c.IsZener(n.Element) && forward != w.negative {
 				add(f.stage(StageSeries, "", []ElementID{n.Element}, n.Node))
 			}
-		case Inductor:
-			next.reservoir = true
-			add(f.filter(w, n, SeriesChoke, PiFilter, ChokeInput))
-		case Resistor:
-			if !slices.Contains(bases, n.Node) {
-				f.throughResistor(w, n, &next, add)
+		case Inductor, Resistor:
+			h := f.hop(w.node, w.back, n)
+			if lossy, _ := f.lossyCapacitor(h); lossy >= 0 {
+				continue
+			}
+			if slices.Contains(w.seen, h.node) || slices.Contains(w.back, h.node) || slices.Contains(bases, h.node) {
+				continue
+			}
+			next.node, next.seen = h.node, append(slices.Clone(w.seen), h.node)
+			if h.choke {
+				next.reservoir = true
+				add(f.filter(w, h, SeriesChoke, PiFilter, ChokeInput))
+			} else {
+				f.throughResistor(w, h, &next, add)
 			}
 		case Regulator:
 			if !d.Shunt && e.Nodes[0] == w.node && e.Nodes[2] == n.Node {
@@ -151,8 +232,8 @@ func (f *railFinder) regulated(next, w *way, a Arrangement, parts []ElementID, n
 }
 
 // filter names a filter by what stands before and behind its series element.
-func (f *railFinder) filter(w way, n Neighbour, bare, both, behind Arrangement) RailStage {
-	held := f.capacitorsAt(n.Node, w.back)
+func (f *railFinder) filter(w way, h hopped, bare, both, behind Arrangement) RailStage {
+	held := f.capacitorsAt(h.node, w.back)
 	a := bare
 	switch {
 	case len(held) > 0 && w.reservoir:
@@ -160,40 +241,39 @@ func (f *railFinder) filter(w way, n Neighbour, bare, both, behind Arrangement) 
 	case len(held) > 0 || !w.reservoir && behind == ChokeInput:
 		a = behind
 	}
-	s := f.stage(StageFilter, a, append([]ElementID{n.Element}, held...), n.Node)
-	return s
+	return f.stage(StageFilter, a, append(slices.Clone(h.elements), held...), h.node)
 }
 
 // throughResistor goes on behind a resistor if it feeds a shunt regulator, a filter capacitor or something
 // that draws the current of a supply; otherwise it is a divider or an indicator, and no way onward.
-func (f *railFinder) throughResistor(w way, n Neighbour, next *way, add func(...RailStage)) {
-	if shunts, a := f.shuntsAt(n.Node, w); len(shunts) > 0 {
-		f.regulated(next, &w, a, append([]ElementID{n.Element}, shunts...), "", add)
+func (f *railFinder) throughResistor(w way, h hopped, next *way, add func(...RailStage)) {
+	if shunts, a := f.shuntsAt(h.node, w); len(shunts) > 0 {
+		f.regulated(next, &w, a, append(slices.Clone(h.elements), shunts...), "", add)
 		return
 	}
-	if len(f.capacitorsAt(n.Node, w.back)) > 0 {
+	if len(f.capacitorsAt(h.node, w.back)) > 0 {
 		next.reservoir = true
-		add(f.filter(w, n, RCFilter, RCFilter, RCFilter))
+		add(f.filter(w, h, RCFilter, RCFilter, RCFilter))
 		return
 	}
 	behind := *next
-	for _, m := range f.c.Neighbours(n.Node) {
+	for _, m := range f.c.Neighbours(h.node) {
 		e := &f.c.Elements[m.Element]
 		switch d := e.Device.(type) {
 		case Regulator:
-			if !d.Shunt && e.Nodes[0] == n.Node {
-				add(f.stage(StageSeries, "", []ElementID{n.Element}, n.Node))
+			if !d.Shunt && e.Nodes[0] == h.node {
+				add(f.stage(StageSeries, "", h.elements, h.node))
 				return
 			}
 		case Transistor, Fet:
-			if e.Nodes[1] != n.Node && passEnd(e, n.Node) == m.Node && !slices.Contains(w.back, m.Node) && !slices.Contains(w.seen, m.Node) {
-				add(f.stage(StageSeries, "", []ElementID{n.Element}, n.Node))
+			if e.Nodes[1] != h.node && passEnd(e, h.node) == m.Node && !slices.Contains(w.back, m.Node) && !slices.Contains(w.seen, m.Node) {
+				add(f.stage(StageSeries, "", h.elements, h.node))
 				return
 			}
 		}
 	}
 	if f.hasStatedLoad(behind) {
-		add(f.stage(StageSeries, "", []ElementID{n.Element}, n.Node))
+		add(f.stage(StageSeries, "", h.elements, h.node))
 	}
 }
 
@@ -282,8 +362,11 @@ func (f *railFinder) passParts(pass ElementID, w way) []ElementID {
 func (f *railFinder) end(w way) {
 	loads := f.loadsAt(w)
 	f.loads = append(f.loads, loads...)
+	if len(loads) == 0 {
+		loads = f.otherLoads(w)
+	}
 	s := f.stage(StageLoad, "", loads, w.node)
 	f.chains = append(f.chains, RailChain{
-		Stages: append(slices.Clone(w.stages), s), Output: w.node, Return: w.back[0], Negative: w.negative,
+		Stages: append(slices.Clone(w.stages), s), Output: w.node, Return: w.home, Negative: w.negative,
 	})
 }

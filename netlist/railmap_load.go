@@ -83,6 +83,31 @@ func (f *railFinder) loadsAt(w way) []ElementID {
 	return chosen
 }
 
+// otherLoads lists what draws current at the end of a rail without being a resistor or an independent source.
+func (f *railFinder) otherLoads(w way) []ElementID {
+	var list []ElementID
+	for _, n := range f.c.Neighbours(w.node) {
+		if !slices.Contains(w.back, n.Node) {
+			continue
+		}
+		draws := false
+		switch d := f.c.Elements[n.Element].Device.(type) {
+		case Behavioural:
+			draws = d.Output == OutCurrent
+		case VoltageControlled:
+			draws = d.Output == OutCurrent
+		case CurrentControlled:
+			draws = d.Output == OutCurrent
+		case Unknown:
+			draws = true
+		}
+		if draws && !slices.Contains(list, n.Element) {
+			list = append(list, n.Element)
+		}
+	}
+	return list
+}
+
 // Polarised reports whether a capacitor must keep its node 1 positive. The first that speaks decides: a
 // `rate ... polarised=` statement or field; what it is made of or its interference class; its capacitance, from 10 uF on.
 // d may be nil.

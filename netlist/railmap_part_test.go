@@ -70,6 +70,7 @@ C1 P 0 1000u
 		{"indicator, forward", supply + "R1 P k 1k\nD1 k 0 LED BV=5", false},
 		{"breakdown out of reach of the source", supply + "R1 P k 470\nD1 0 k DX BV=100", false}, // 2 x 34 V = 68 V
 		{"diode of a doubler", "V1 a 0 SIN(0 60 50)\nC1 a j 100u\nD1 0 j DX BV=50\nD2 j OUT DX\nC2 OUT 0 100u\nRL OUT 0 1k", false},
+		{"clipper of two back to back", "V1 s 0 SIN(0 40 50)\nR1 s k 470\nD1 k m DZ BV=12\nD2 0 m DZ BV=12", true},
 		{"a known rectifier stays one", supply + "R1 P k 470\nD1 0 k 1N4007", false},
 		{"a known zener is one anywhere", "V1 s 0 SIN(0 34 50)\nD1 s P 1N4742A\nR1 P 0 1k", true},
 		{"by its name", "V1 s 0 SIN(0 34 50)\nD1 s P MyZener5V1\nR1 P 0 1k", true},

@@ -156,6 +156,10 @@ func (f *railFinder) positive(p side, drains []side, paired map[NodeID]bool) {
 	}
 	n := drains[i]
 	paired[n.node] = true
+	output, back, negative := p.node, n.node, false
+	if p.node == Ground {
+		output, back, negative = n.node, p.node, true // a bridge whose plus is grounded
+	}
 	diodes := slices.Concat(p.diodes(), n.diodes())
 	slices.Sort(diodes)
 	sources := f.sourceStages(clusters)
@@ -164,11 +168,11 @@ func (f *railFinder) positive(p side, drains []side, paired map[NodeID]bool) {
 	}
 	switch {
 	case len(clusters) >= 3:
-		f.follows(rectifier(ThreePhaseBridge, p.node), p.node, n.node, false)
+		f.follows(rectifier(ThreePhaseBridge, output), output, back, negative)
 	case len(clusters) == 2:
 		tap := f.tap(clusters[0], clusters[1])
 		if tap == none || !f.tapUsed(tap) {
-			f.follows(rectifier(Bridge, p.node), p.node, n.node, false)
+			f.follows(rectifier(Bridge, output), output, back, negative)
 			return
 		}
 		node := f.nodeOf(tap)
@@ -206,7 +210,18 @@ func (f *railFinder) doublerOrTwo(p, n side, rectifier func(Arrangement, NodeID)
 		f.oneSided(n, true)
 		return
 	}
-	f.follows(rectifier(FullWaveDoubler, p.node), p.node, n.node, false)
+	output, far, negative := p.node, n.node, false
+	if output == Ground {
+		output, far, negative = n.node, p.node, true
+	}
+	stages := rectifier(FullWaveDoubler, output)
+	held := append(f.capacitorsAt(p.node, []NodeID{middle}), f.capacitorsAt(n.node, []NodeID{middle})...)
+	if slices.Sort(held); len(held) > 0 {
+		s := f.stage(StageReservoir, "", slices.Compact(held), output)
+		s.Note = f.c.describe(held[0]) + " each half at " + s.NodeName
+		stages = append(stages, s)
+	}
+	f.follows(stages, output, far, negative)
 }
 
 func (f *railFinder) negative(n side) { f.oneSided(n, true) }

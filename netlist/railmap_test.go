@@ -97,7 +97,7 @@ D2 N a 1N4007
 C1 P 0 470u
 C2 0 N 470u
 R1 P N 1k`,
-			[]string{"V1 17 V peak 50 Hz -> full-wave voltage doubler D1 D2 at P -> R1"}},
+			[]string{"V1 17 V peak 50 Hz -> full-wave voltage doubler D1 D2 at P -> C1 C2 470 uF each half at P -> R1"}},
 		{"two half-waves from one winding", `
 V1 a 0 SIN(0 17 50)
 D1 a P 1N4007
@@ -258,6 +258,39 @@ D1 a P 1N4007
 C1 P COM 1000u
 R1 P COM 100`,
 			[]string{"V1 17 V peak 50 Hz -> half-wave D1 at P -> C1 1000 uF at P -> R1"}},
+		{"losses of choke and capacitors drawn", `
+V1 a b SIN(0 17 50)
+D1 a P 1N4007
+D2 b P 1N4007
+D3 0 a 1N4007
+D4 0 b 1N4007
+RE1 P e1 0.1
+C1 e1 0 470u
+RDC P q 2
+L1 q OUT 1
+RE2 OUT e2 0.1
+LE2 e2 e3 20n
+C2 e3 0 470u
+R1 OUT 0 100`,
+			[]string{"V1 17 V peak 50 Hz -> bridge D1..D4 at P -> C1 470 uF at P -> pi filter RDC L1 C2 at OUT -> R1"}},
+		{"bridge whose plus is grounded", `
+V1 a b SIN(0 17 50)
+D1 a 0 1N4007
+D2 b 0 1N4007
+D3 N a 1N4007
+D4 N b 1N4007
+C1 0 N 470u
+U1 N 0 OUT 7912
+R1 OUT 0 100`,
+			[]string{"V1 17 V peak 50 Hz -> bridge D1..D4 at N -> C1 470 uF at N -> three-terminal regulator U1 7912 at OUT -> R1"}},
+		{"current-sensing resistor in the return", `
+V1 s 0 SIN(0 17 50)
+D1 s P 1N4007
+C1 P 0 470u
+L1 P OUT 1m
+RS r 0 0.1
+RL OUT r 50`,
+			[]string{"V1 17 V peak 50 Hz -> half-wave D1 at P -> C1 470 uF at P -> series choke L1 at OUT -> RL"}},
 		{"nothing to recognise", `
 R1 a b 1k
 C1 b 0 1u`, nil},

@@ -18,7 +18,7 @@ const (
 // that gives it a zener's symbol or type; what the library knows of its type or model name; a zener's
 // symbol on its card; a name that contains "zener"; a model with a breakdown voltage below 200 V where the
 // diode stands reversed as a shunt behind a resistor, with no winding at either end, and the sources can
-// reach that voltage. A diode about which all are silent is a rectifier.
+// reach that voltage, or stands back to back with another such. A diode about which all are silent is a rectifier.
 func (c *Circuit) IsZener(id ElementID) bool {
 	e := &c.Elements[id]
 	d, ok := e.Device.(Diode)
@@ -78,6 +78,9 @@ func (c *Circuit) findShunts() {
 func (f *railFinder) standsAsShunt(id ElementID, breakdown float64) bool {
 	c := f.c
 	anode, cathode := c.Elements[id].Nodes[0], c.Elements[id].Nodes[1]
+	if f.backToBack(cathode, 1) || f.backToBack(anode, 0) {
+		return true
+	}
 	for _, n := range []NodeID{anode, cathode} {
 		if n != Ground && f.cluster[n] != none {
 			return false
@@ -87,6 +90,16 @@ func (f *railFinder) standsAsShunt(id ElementID, breakdown float64) bool {
 		return false
 	}
 	return f.fedThroughResistor(id, cathode, anode, +1) || f.fedThroughResistor(id, anode, cathode, -1)
+}
+
+// backToBack reports whether two diodes with a zener's breakdown voltage meet at a node, alone and with the
+// same pin: nothing else works in breakdown either way.
+func (f *railFinder) backToBack(node NodeID, pin int) bool {
+	meeting := f.c.Nodes[node].Terminals
+	return node != Ground && len(meeting) == 2 && meeting[0].Element != meeting[1].Element && !slices.ContainsFunc(meeting, func(t Terminal) bool {
+		d, ok := f.c.Elements[t.Element].Device.(Diode)
+		return !ok || t.Pin != pin || !mayBreakDown(d)
+	})
 }
 
 // sourceReach is the voltage that the sources of the circuit can add up to, in V.
@@ -152,14 +165,18 @@ func (f *railFinder) feeders(node, far NodeID, sign int) []ElementID {
 	return list
 }
 
+// railReach is how many nodes are looked at, nearest first, to find the rail that a node hangs on.
+const railReach = 64
+
 // onRail reports whether a node hangs on a rectifier's output or a direct source of the given sign, through
 // anything but capacitors and diodes, without passing two nodes.
 func (f *railFinder) onRail(node, without, far NodeID, sign int) bool {
-	reach := f.c.reach([]NodeID{node}, func(at NodeID, next Neighbour) bool {
-		e := &f.c.Elements[next.Element]
+	found, looked := false, 0
+	f.c.reach([]NodeID{node}, func(at NodeID, next Neighbour) bool {
 		if next.Node == without || next.Node == far {
 			return false
 		}
+		e := &f.c.Elements[next.Element]
 		switch e.Device.(type) {
 		case Resistor, Inductor, Switch:
 			return true
@@ -169,13 +186,12 @@ func (f *railFinder) onRail(node, without, far NodeID, sign int) bool {
 			return f.c.isAmmeter(next.Element)
 		}
 		return false
+	}, func(n NodeID) bool {
+		looked++
+		found = n != Ground && (f.railEnd(n, sign) || far == Ground && f.droppedAt(n))
+		return !found && looked < railReach
 	})
-	for _, n := range reach {
-		if n != Ground && (f.railEnd(n, sign) || far == Ground && f.droppedAt(n)) {
-			return true
-		}
-	}
-	return false
+	return found
 }
 
 // railEnd reports whether a rectifier delivers at a node, or a direct source stands there.
@@ -188,7 +204,7 @@ func (f *railFinder) railEnd(n NodeID, sign int) bool {
 			if sign < 0 {
 				out, in = in, out
 			}
-			if out == n && in != n && (in != Ground && f.cluster[in] != none || in != Ground && f.diodeJoint(in)) {
+			if out == n && in != n && in != Ground && (f.cluster[in] != none || f.diodeJoint(in)) {
 				return true
 			}
 		case VoltageSource:
