@@ -22,7 +22,6 @@ import measure  # noqa: E402
 import period  # noqa: E402
 
 HERE = os.path.dirname(os.path.abspath(__file__))
-INSTANTS = 20000  # of a period, for circuits without states
 NEAR_ZERO = 1e-3  # below this part of the largest value of its unit in the circuit an error counts absolutely
 
 
@@ -30,7 +29,7 @@ def difference(rows, others):
     """Largest relative difference of two lists of rows, and where."""
     largest = {}
     for _, _, value, unit in rows:
-        largest[unit] = max(largest.get(unit, 1e-9), abs(value))
+        largest[unit] = max(largest.get(unit, 1e-2 if unit == "" else 1e-9), abs(value))
     worst = (0.0, "")
     for (e, q, a, unit), (_, _, b, _) in zip(rows, others):
         worst = max(worst, (abs(a - b) / max(abs(a), NEAR_ZERO * largest[unit]), e + " " + q))
@@ -45,7 +44,7 @@ def steady(c, verbose):
     x, slope = period.settle(f, x0, c.period, rtol=tight, plain=c.plain, verbose=verbose) if len(x0) else (np.zeros(0), None)
     if not len(x0):  # no states: an algebraic circuit
         rows, rows2 = [], []
-        for samples, out in ((INSTANTS, rows), (INSTANTS // 2, rows2)):
+        for samples, out in ((c.instants, rows), (c.instants // 2, rows2)):
             t, nodes, currents = period.sampled(equations, np.linspace(0, c.period, samples + 1), np.empty((0, samples + 1)))
             out += measure.stresses(cards, t, nodes, currents)
         return rows, difference(rows, rows2), measure.residual(cards, t, nodes, currents)
@@ -81,7 +80,7 @@ def write(c, verbose):
         error = max(error, difference(rows, rows2))
     method, rtol = c.second
     if not len(c.start):
-        how = "algebraic: node equations solved at %d instants of a period" % INSTANTS
+        how = "algebraic: node equations solved at %d instants of a period" % c.instants
     else:
         how = "scipy solve_ivp LSODA rtol %g, %s; checked with %s rtol %g" % (
             c.rtol, "from rest over %d cycles" % c.cycles if c.mode == "cold-start" else "shooting", method, rtol)

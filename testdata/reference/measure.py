@@ -108,8 +108,12 @@ def residual(cards, t, nodes, currents):
             if "BV" in m:
                 law = law - m.get("IBV", 1e-3) * np.exp(-(u + m["BV"]) / VT)
             fault(e, i, law)
-        elif kind == "E" and len(f) == 5:
+        elif kind == "E":
             fault(e, v, number(f[4]) * (nodes[f[2]] - nodes[f[3]]))
+        elif kind == "G":
+            fault(e, i, number(f[4]) * (nodes[f[2]] - nodes[f[3]]))
+        elif kind == "H":
+            fault(e, v, number(f[3]) * currents[f[2]])
         elif kind == "F":
             fault(e, i, number(f[3]) * currents[f[2]])
     for node, parts in legs.items():
@@ -201,10 +205,7 @@ def stresses(cards, t, nodes, currents):
 
 def terminals(element, fields):
     """Names of the nodes among the fields of a card."""
-    count = {"Q": 3, "M": 4, "X": 3, "K": 0, "E": 4}.get(element[0], 2)
-    if element[0] == "E" and len(fields) != 5:
-        count = 2
-    return fields[:count]
+    return fields[:{"Q": 3, "M": 4, "X": 3, "K": 0, "E": 4, "G": 4}.get(element[0], 2)]
 
 
 def surges(cards, t, currents, T):

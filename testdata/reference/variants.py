@@ -3,7 +3,7 @@
 from math import cos, pi, sin
 
 from circuits import circuit
-from laws import Bridge, Diode, root
+from laws import Bridge, Diode, root, solve2
 from rectifiers import DR, DR_CARD, W50, fed_diode
 
 BRIDGE_CARDS = """D1 A OUT DR
@@ -119,19 +119,19 @@ RL OUT 0 27
 {DR_CARD}
 .end""", [15.0])
 def bridge_esr():
-    """u across C1: C u' = (p - u)/ESR with f + r = p/R + (p - u)/ESR."""
+    """u across C1: C u' = (p - u)/ESR with f + r = p/R + (p - u)/ESR and w + RW (f - r) = e."""
     b = Bridge(Diode(**DR))
+    last = [0.0, 15.0]
 
     def equations(t, x):
         u, e = x[0], 19 * sin(W50 * t)
 
-        def residual(p):
-            w, f, r = b.fed(e, 0.6, p)
-            _, _, gf, gr = b(w, p)
-            dw = 0.6 * (gf - gr) / 2 / (1 + 0.6 * (gf + gr) / 2)
-            return p / 27 + (p - u) / 0.12 - f - r, 1 / 27 + 1 / 0.12 - (gf - gr) / 2 * dw + (gf + gr) / 2
-        p = root(residual, 0, 25)
-        w, f, r = b.fed(e, 0.6, p)
+        def residual(w, p):
+            f, r, gf, gr = b(w, p)
+            s, m = (gf + gr) / 2, (gf - gr) / 2
+            return (w - e) / 0.6 + f - r, p / 27 + (p - u) / 0.12 - f - r, (1 / 0.6 + s, -m), (-m, 1 / 27 + 1 / 0.12 + s)
+        last[:] = w, p = solve2(residual, *last, limit=2.0)
+        f, r, _, _ = b(w, p)
         ic = (p - u) / 0.12
         return ([ic / 2200e-6], {**bridge_nodes(e, w, p), "OUT": p, "C": u},
                 {**bridge_currents(f, r), "RESR": ic, "C1": ic, "RL": p / 27})
@@ -187,7 +187,7 @@ LADDER = "\n".join(
 
 
 @circuit("ladder-6", LADDER, [-58.0] + [-115.0] * 11,
-         second=("LSODA", 1e-8), plain=60)
+         second=("LSODA", 1e-9), plain=60)
 def ladder():
     """Push column C1 C3 .. C11 from N0, smoothing column C2 C4 .. C12 from ground, diodes D1 0-N1, D2 N1-N2, ..
 
@@ -250,6 +250,26 @@ def schottky():
     return equations
 
 
+@circuit("bridge-timing", f"""Bridge and reservoir on which the integrators of SciPy are timed
+V1 S B SIN(0 21.2 50)
+RW S A 0.8
+{BRIDGE_CARDS.replace("DR", "DT")}
+C1 OUT 0 2200u
+RL OUT 0 33
+.model DT D(IS=5n N=1.8 RS=0)
+.end""", [17.0])
+def bridge_timing():
+    """Bridge with winding resistance, diodes without series resistance."""
+    b = Bridge(Diode(IS=5e-9, N=1.8))
+
+    def equations(t, x):
+        p, e = x[0], 21.2 * sin(W50 * t)
+        w, f, r = b.fed(e, 0.8, p)
+        ic = f + r - p / 33
+        return ([ic / 2200e-6], {**bridge_nodes(e, w, p), "OUT": p}, {**bridge_currents(f, r), "C1": ic, "RL": p / 33})
+    return equations
+
+
 @circuit("six-pulse", f"""Workshop bus, three-phase bridge on a floating star
 VU U N SIN(0 34 50)
 VV V N SIN(0 34 50 0 0 -120)
@@ -266,7 +286,7 @@ D2 0 C DR
 C1 OUT 0 1000u
 RL OUT 0 22
 {DR_CARD}
-.end""", [54.0], second=("LSODA", 1e-8))
+.end""", [54.0], second=("LSODA", 1e-9))
 def six_pulse():
     """Star voltage n: phase k gives i_k = (n + e_k - a_k)/R = f(a_k - p) - f(-a_k); the three sum to zero."""
     d = Diode(**DR)
