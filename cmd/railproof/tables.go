@@ -1,0 +1,48 @@
+package main
+
+import (
+	"fmt"
+
+	"github.com/spf13/cobra"
+
+	"railproof/checks"
+	"railproof/checks/policy"
+	"railproof/netlist"
+)
+
+// sourceFlags says what is read beside a netlist.
+type sourceFlags struct {
+	duty, policy, parts string
+	include             []string
+	jobs                int
+}
+
+func (f *sourceFlags) add(c *cobra.Command) {
+	c.Flags().StringVar(&f.duty, "duty", "", "duty sheet `FILE` (default: the netlist's name with the ending .duty, if it is there)")
+	c.Flags().StringVar(&f.policy, "policy", "", "derating policy, a built-in `NAME` or a CSV file (default: the duty sheet's, else "+policy.Default+")")
+	c.Flags().StringVar(&f.parts, "parts", "", "ratings of your own, a CSV `FILE` with the columns of the built-in tables")
+	c.Flags().StringArrayVar(&f.include, "include", nil, "`DIR` in which included files are looked for, repeatable")
+	c.Flags().IntVar(&f.jobs, "jobs", 0, "how much is solved at once (default: one a core)")
+	if err := c.RegisterFlagCompletionFunc("policy", func(*cobra.Command, []string, string) ([]string, cobra.ShellCompDirective) {
+		return policy.Names(), cobra.ShellCompDirectiveDefault
+	}); err != nil {
+		panic(err)
+	}
+}
+
+func (f *sourceFlags) validate(files int) error {
+	if f.duty != "" && files > 1 {
+		return fmt.Errorf("--duty names the sheet of one netlist, but %d are given", files)
+	}
+	if f.jobs < 0 {
+		return fmt.Errorf("--jobs %d; expected 0 or more", f.jobs)
+	}
+	return nil
+}
+
+func (f *sourceFlags) options(file string) checks.Options {
+	return checks.Options{
+		Source: netlist.Source{File: file, DutyFile: f.duty, IncludeDirs: f.include},
+		Policy: f.policy, PartsFile: f.parts, Jobs: f.jobs,
+	}
+}

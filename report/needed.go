@@ -1,0 +1,121 @@
+package report
+
+import (
+	"slices"
+	"strings"
+
+	"railproof/checks"
+	"railproof/netlist"
+	"railproof/netlist/quantity"
+)
+
+// Needed is one line of the shopping list: what parts must be rated so that what is unproven is proven.
+type Needed struct {
+	Elements []string
+	Symbol   netlist.Symbol
+	Value    float64
+	Unit     quantity.Unit
+	Floor    bool    // the rating must be at most Value, not at least
+	Next     float64 // next standard rating, 0 if there is none
+	Checks   []string
+}
+
+// Name lists the parts, runs shortened.
+func (n Needed) Name() string { return strings.Join(foldNames(n.Elements), " ") }
+
+// Bound is the rating in words, rounded to the safe side: "at least 77.4 V".
+func (n Needed) Bound() string {
+	word := "at least "
+	if n.Floor {
+		word = "at most "
+	}
+	return word + upward(n.Value, n.Unit, n.Floor)
+}
+
+// NextStep is the next standard rating in words, "-" if there is none.
+func (n Needed) NextStep() string {
+	if n.Next <= 0 {
+		return "-"
+	}
+	return quantity.Format(n.Next, n.Unit, 4)
+}
+
+// Needed gathers the ratings that unproven findings of a file wait for. Parts with the same demand share a line.
+func (f *File) Needed() []Needed {
+	var out []Needed
+	for _, s := range f.demands() {
+		k := slices.IndexFunc(out, func(o Needed) bool {
+			return o.Symbol == s.Symbol && o.Floor == s.Floor && rounded(o.Value) == rounded(s.Value) &&
+				o.Next == s.Next && slices.Equal(o.Checks, s.Checks)
+		})
+		if k < 0 {
+			out = append(out, s)
+			continue
+		}
+		out[k].Elements = append(out[k].Elements, s.Elements...)
+		if (s.Value > out[k].Value) != s.Floor {
+			out[k].Value = s.Value
+		}
+	}
+	return out
+}
+
+// demands lists the ratings that unproven findings wait for, one part a line. Where several checks ask for
+// one rating of a part, the severest demand stands.
+func (f *File) demands() []Needed {
+	var single []Needed
+	for _, x := range f.Findings {
+		n := x.Needs
+		if x.Verdict != checks.Unproven || n == nil || n.Symbol == "" {
+			continue
+		}
+		k := slices.IndexFunc(single, func(o Needed) bool { return o.Elements[0] == x.Element && o.Symbol == n.Symbol && o.Floor == x.Floor })
+		if k < 0 {
+			single = append(single, Needed{[]string{x.Element}, n.Symbol, n.Value, n.Unit, x.Floor, n.NextStandard, []string{x.Check}})
+			continue
+		}
+		o := &single[k]
+		if !slices.Contains(o.Checks, x.Check) {
+			o.Checks = append(o.Checks, x.Check)
+		}
+		if (n.Value > o.Value) != x.Floor && n.Value != o.Value {
+			o.Value, o.Next = n.Value, n.NextStandard
+		}
+	}
+	return single
+}
+
+// Statements lists the duty statements that unproven findings wait for, each once, in the order of the findings.
+func (f *File) Statements() []string {
+	var out []string
+	for _, x := range fold(f.Findings) {
+		if x.Verdict == checks.Unproven && x.Needs != nil && x.Needs.Statement != "" {
+			if s := x.statement(); !slices.Contains(out, s) {
+				out = append(out, s)
+			}
+		}
+	}
+	return out
+}
+
+// statement is the missing duty statement, the parts of the entry in place of the one.
+func (f *Folded) statement() string {
+	if f.Needs == nil {
+		return ""
+	}
+	return f.forAll(f.Needs.Statement)
+}
+
+// forAll puts the parts of the entry where a text names the one.
+func (f *Folded) forAll(text string) string {
+	if len(f.Elements) < 2 {
+		return text
+	}
+	words := strings.Split(text, " ")
+	for k, w := range words {
+		if w == f.Element {
+			words[k] = strings.Join(foldNames(f.Elements), ",")
+		}
+	}
+	return strings.Join(words, " ")
+}

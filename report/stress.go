@@ -1,0 +1,143 @@
+package report
+
+import (
+	"encoding/csv"
+	"io"
+	"math"
+	"strconv"
+
+	"railproof/checks"
+	"railproof/checks/study"
+	"railproof/netlist/quantity"
+)
+
+// StressSchema names the layout of the JSON stress table.
+const StressSchema = "railproof-stress/1"
+
+// StressTable is the worst stress of every part of one netlist, whether or not a rating is known.
+type StressTable struct {
+	File          string
+	Title         string
+	Circumstances checks.Circumstances
+	RailMap       []string
+	Assumptions   []checks.Assumption
+	Stresses      []study.Stress
+	Nominal       bool // the netlist exactly as written
+}
+
+// NewStressTable takes the stresses out of a result.
+func NewStressTable(r *checks.Result, nominal bool) *StressTable {
+	return &StressTable{
+		File: slashed(r.File), Title: r.Title, Circumstances: r.Circumstances, RailMap: r.RailMap,
+		Assumptions: r.Assumptions, Stresses: r.Stresses, Nominal: nominal,
+	}
+}
+
+type jsonStressTable struct {
+	Schema   string          `json:"schema"`
+	File     string          `json:"file"`
+	Stresses []jsonStressRow `json:"stresses"`
+}
+
+type jsonStressRow struct {
+	Element   string         `json:"element"`
+	Quantity  study.Quantity `json:"quantity"`
+	Value     number         `json:"value"`
+	Unit      string         `json:"unit"`
+	Condition jsonCondition  `json:"condition"`
+	Error     number         `json:"error"`
+	Phase     number         `json:"phase_s"`
+	Unproven  string         `json:"unproven,omitempty"`
+}
+
+// WriteJSON writes the table as one JSON document of StressSchema; SCHEMA.md describes it.
+func (t *StressTable) WriteJSON(w io.Writer) error {
+	d := jsonStressTable{Schema: StressSchema, File: t.File, Stresses: []jsonStressRow{}}
+	for k := range t.Stresses {
+		s := &t.Stresses[k]
+		j := toJSONStress(s)
+		d.Stresses = append(d.Stresses, jsonStressRow{s.Element, s.Quantity, j.Value, j.Unit, j.Condition, j.Error, j.Phase, s.Unproven})
+	}
+	return encode(w, d)
+}
+
+// WriteText writes the table for people.
+func (t *StressTable) WriteText(w io.Writer, colour bool) error {
+	l := &ledger{palette: newPalette(colour)}
+	f := &File{Name: t.File, Title: t.Title, Circumstances: t.Circumstances, RailMap: t.RailMap, Assumptions: t.Assumptions}
+	if t.Nominal {
+		f.Circumstances = checks.Circumstances{Line: "as written", Load: "as written", Ambient: "as written", Policy: "none"}
+		f.Assumptions = nil
+	}
+	l.head(f)
+	l.line("")
+	rows := [][]string{{"part", "quantity", "worst", "+-", "when"}}
+	last := ""
+	unproven := false
+	for k := range t.Stresses {
+		s := &t.Stresses[k]
+		name := printable(s.Element)
+		if name == last {
+			name = ""
+		} else {
+			last = name
+		}
+		value := quantity.Format(s.Value, s.Unit, 4)
+		if s.Unproven != "" {
+			value, unproven = value+" ?", true
+		}
+		rows = append(rows, []string{name, string(s.Quantity), value, quantity.Format(s.Error, s.Unit, 1), whenWords(s)})
+	}
+	l.table(rows)
+	if unproven {
+		l.section("Values marked ? prove nothing")
+		said := map[string]bool{}
+		for k := range t.Stresses {
+			if why := t.Stresses[k].Unproven; why != "" && !said[why] {
+				said[why] = true
+				l.hang("  ", "    ", why)
+			}
+		}
+	}
+	l.listAssumptions(f)
+	_, err := io.WriteString(w, l.out.String())
+	return err
+}
+
+// WriteCSV writes one line a stress, SI units.
+func (t *StressTable) WriteCSV(w io.Writer) error {
+	c := csv.NewWriter(w)
+	rows := [][]string{{"file", "element", "quantity", "value", "unit", "error", "condition", "start", "phase_s", "unproven"}}
+	for k := range t.Stresses {
+		s := &t.Stresses[k]
+		rows = append(rows, []string{
+			cell(t.File), cell(s.Element), string(s.Quantity), plainNumber(s.Value), s.Unit.String(), plainNumber(s.Error),
+			cell(conditionWords(s.Condition)), s.Condition.Start, plainNumber(s.Phase), cell(s.Unproven),
+		})
+	}
+	return c.WriteAll(rows)
+}
+
+// plainNumber writes a number for a spreadsheet; empty where there is none.
+func plainNumber(v float64) string {
+	if math.IsNaN(v) || math.IsInf(v, 0) {
+		return ""
+	}
+	if v == 0 {
+		return "0"
+	}
+	return strconv.FormatFloat(v, 'g', jsonDigits, 64)
+}
+
+// cell makes text safe for a spreadsheet: a leading character that would begin a formula is quoted.
+func cell(text string) string {
+	text = printable(text)
+	if text == "" {
+		return ""
+	}
+	switch text[0] {
+	case '=', '+', '-', '@':
+		return "'" + text
+	}
+	return text
+}
