@@ -25,8 +25,9 @@ def read(cards):
     elements, models, rates = {}, {}, {}
     for line in cards.strip().splitlines()[1:]:
         if line.startswith(".model"):
-            _, name, _, body = re.fullmatch(r"(\.model) (\S+) (\w+)\((.*)\)", line).groups()
+            name, kind, body = re.fullmatch(r"\.model (\S+) (\w+)\((.*)\)", line).groups()
             models[name] = {k: number(v) for k, v in (p.split("=") for p in body.split())}
+            models[name]["polarity"] = kind
         elif line.startswith("*: rate"):
             fields = line.split()
             rates[fields[2]] = {k: float(v.rstrip("VA")) if not v.endswith("mA") else float(v[:-2]) / 1e3
@@ -68,6 +69,11 @@ def residual(cards, t, nodes, currents):
         if kind == "Q":
             ic, ib = currents[e + ".c"], currents[e + ".b"]
             leg(f[0], ic), leg(f[1], ib), leg(f[2], -ic - ib)
+            m = models[f[3]]
+            sign = -1 if m["polarity"] == "PNP" else 1
+            ebe, ebc = (np.exp(sign * (nodes[f[1]] - nodes[n]) / VT) - 1 for n in (f[2], f[0]))
+            fault(e + ".c", sign * ic, m["IS"] * (ebe - ebc - ebc / m["BR"]))
+            fault(e + ".b", sign * ib, m["IS"] * (ebe / m["BF"] + ebc / m["BR"]), np.max(np.abs(ic)) * 1e-3)
             continue
         if kind == "M":
             leg(f[0], currents[e]), leg(f[2], -currents[e])
