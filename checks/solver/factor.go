@@ -3,7 +3,15 @@ package solver
 import (
 	"errors"
 	"math"
+
+	"gonum.org/v1/gonum/blas"
+	"gonum.org/v1/gonum/blas/blas64"
+	"gonum.org/v1/gonum/lapack/lapack64"
 )
+
+// blockedFrom is the order from which the blocked routines of the numerical library beat the plain loops here,
+// which are for the handful of ports of a usual island.
+const blockedFrom = 24
 
 // ErrSingular says that a linear system has no unique solution: a loop of ideal sources, or a node that
 // nothing defines.
@@ -25,6 +33,12 @@ func newFactor(n int) *factor {
 // vanishes against the largest entry of its column as assembled is singular.
 func (f *factor) factorise() error {
 	n, a := f.n, f.lu
+	if n >= blockedFrom {
+		if !lapack64.Getrf(f.general(), f.pivot) {
+			return ErrSingular
+		}
+		return nil
+	}
 	for k := 0; k < n; k++ {
 		p, best := k, math.Abs(a[k*n+k])
 		for r := k + 1; r < n; r++ {
@@ -62,6 +76,10 @@ func (f *factor) factorise() error {
 // solve overwrites b with the solution.
 func (f *factor) solve(b []float64) {
 	n, a := f.n, f.lu
+	if n >= blockedFrom {
+		f.solveAll(dense{n, 1, b})
+		return
+	}
 	for k, p := range f.pivot {
 		if p != k {
 			b[k], b[p] = b[p], b[k]
@@ -84,6 +102,53 @@ func (f *factor) solve(b []float64) {
 	}
 }
 
+func (f *factor) general() blas64.General {
+	return blas64.General{Rows: f.n, Cols: f.n, Data: f.lu, Stride: f.n}
+}
+
+// solveAll overwrites each column of b, n x m, with the solution for it.
+func (f *factor) solveAll(b dense) {
+	if f.n >= blockedFrom {
+		lapack64.Getrs(blas.NoTrans, f.general(), b.general(), f.pivot)
+		return
+	}
+	m := b.cols
+	for k, p := range f.pivot {
+		if p != k {
+			for c := range m {
+				b.data[k*m+c], b.data[p*m+c] = b.data[p*m+c], b.data[k*m+c]
+			}
+		}
+	}
+	n, a := f.n, f.lu
+	for r := 1; r < n; r++ {
+		row := b.row(r)
+		for j, v := range a[r*n : r*n+r] {
+			subtract(row, b.row(j), v)
+		}
+	}
+	for r := n - 1; r >= 0; r-- {
+		row := b.row(r)
+		for j := r + 1; j < n; j++ {
+			subtract(row, b.row(j), a[r*n+j])
+		}
+		inverse := 1 / a[r*n+r]
+		for c := range row {
+			row[c] *= inverse
+		}
+	}
+}
+
+// subtract takes factor x from y.
+func subtract(y, x []float64, factor float64) {
+	if factor == 0 {
+		return
+	}
+	for c, v := range x {
+		y[c] -= factor * v
+	}
+}
+
 // dense is a row-major matrix.
 type dense struct {
 	rows, cols int
@@ -94,15 +159,44 @@ func newDense(rows, cols int) dense {
 	return dense{rows, cols, make([]float64, rows*cols)}
 }
 
+func (m dense) general() blas64.General {
+	return blas64.General{Rows: m.rows, Cols: m.cols, Data: m.data, Stride: max(1, m.cols)}
+}
+
 func (m dense) row(r int) []float64 { return m.data[r*m.cols : (r+1)*m.cols] }
 
 // addTo adds m x to y.
 func (m dense) addTo(y, x []float64) {
+	if m.rows >= blockedFrom && m.cols >= blockedFrom {
+		blas64.Gemv(blas.NoTrans, 1, m.general(), blas64.Vector{N: m.cols, Data: x, Inc: 1}, 1, blas64.Vector{N: m.rows, Data: y, Inc: 1})
+		return
+	}
 	for r := range y {
 		sum := 0.0
 		for c, v := range m.row(r) {
 			sum += v * x[c]
 		}
 		y[r] += sum
+	}
+}
+
+// addProduct adds a b to out; out is neither.
+func addProduct(out, a, b dense) {
+	if a.rows >= blockedFrom || a.cols >= blockedFrom {
+		if a.rows > 0 && a.cols > 0 && b.cols > 0 {
+			blas64.Gemm(blas.NoTrans, blas.NoTrans, 1, a.general(), b.general(), 1, out.general())
+		}
+		return
+	}
+	for r := range a.rows {
+		row := out.row(r)
+		for k, v := range a.row(r) {
+			if v == 0 {
+				continue
+			}
+			for c, w := range b.row(k) {
+				row[c] += v * w
+			}
+		}
 	}
 }

@@ -229,18 +229,8 @@ func identity(m dense) {
 
 // multiply sets out = a b; out is neither.
 func multiply(out, a, b dense) {
-	for r := range a.rows {
-		row := out.row(r)
-		for c := range row {
-			row[c] = 0
-		}
-		for k, v := range a.row(r) {
-			if v == 0 {
-				continue
-			}
-			for c, w := range b.row(k) {
-				row[c] += v * w
-			}
-		}
+	for k := range out.data {
+		out.data[k] = 0
 	}
+	addProduct(out, a, b)
 }

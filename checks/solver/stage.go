@@ -42,7 +42,8 @@ type stage struct {
 	jacValid bool
 	flow     dense // d state' / d state for jacSlope
 	flowOK   bool
-	column   []float64
+	// dv/dx and dw/dx, d x m, for flow
+	sensitivity, outputs dense
 
 	iterations int
 }
@@ -55,7 +56,7 @@ func newStage(r *reduced) *stage {
 		v: make([]float64, d), w: make([]float64, d), i: make([]float64, p), g: make([]float64, p*p),
 		slope: newDense(d, d), open: make([]float64, d), dv: make([]float64, d), next: make([]float64, d), trial: make([]float64, d),
 		lin: make([]float64, d), jac: newFactor(d), jacSlope: make([]float64, d*d), flow: newDense(m, m),
-		column: make([]float64, d),
+		sensitivity: newDense(d, m), outputs: newDense(d, m),
 	}
 }
 
@@ -290,28 +291,23 @@ func (st *stage) transition() (dense, error) {
 	if st.flowOK {
 		return st.flow, nil
 	}
-	m, d := st.r.sys.states(), len(st.v)
 	copy(st.flow.data, st.r.sx.data)
-	for c := range m {
-		for j := range d {
-			st.column[j] = st.r.px.data[j*m+c]
-		}
-		st.jac.solve(st.column)
-		for _, l := range st.r.sys.laws {
-			for p := l.first; p < l.first+l.count; p++ {
-				dw := 0.0
-				for q := l.first; q < l.first+l.count; q++ {
-					dw += st.jacSlope[p*d+q] * st.column[q]
-				}
-				if dw == 0 {
-					continue
-				}
-				for k := range m {
-					st.flow.data[k*m+c] += st.r.sw.data[k*d+p] * dw
-				}
+	// d v / d x = (I - k slope)^-1 px; d w / d x = slope of that; d x' / d x = sx + sw of that.
+	copy(st.sensitivity.data, st.r.px.data)
+	st.jac.solveAll(st.sensitivity)
+	d, m := len(st.v), st.r.sys.states()
+	for _, l := range st.r.sys.laws {
+		for p := l.first; p < l.first+l.count; p++ {
+			row := st.outputs.data[p*m : p*m+m]
+			for c := range row {
+				row[c] = 0
+			}
+			for q := l.first; q < l.first+l.count; q++ {
+				subtract(row, st.sensitivity.row(q), -st.jacSlope[p*d+q])
 			}
 		}
 	}
+	addProduct(st.flow, st.r.sw, st.outputs)
 	st.flowOK = true
 	return st.flow, nil
 }
