@@ -107,11 +107,14 @@ func (p *Pass) judgeOvershoot(id netlist.ElementID, u upper, steady *study.Stres
 // acrossMains finds the source declared as the line that a capacitor lies directly across, fuses between
 // them aside.
 func (p *Pass) acrossMains(e *netlist.Element) (netlist.ElementID, bool) {
+	var a, b []netlist.NodeID
 	for _, l := range p.Supply.Duty.Lines {
 		if l.Source < 0 {
 			continue
 		}
-		a, b := p.shorted(e.Nodes[0]), p.shorted(e.Nodes[1])
+		if a == nil {
+			a, b = p.shorted(e.Nodes[0]), p.shorted(e.Nodes[1])
+		}
 		n := p.element(l.Source).Nodes
 		if slices.Contains(a, n[0]) && slices.Contains(b, n[1]) || slices.Contains(a, n[1]) && slices.Contains(b, n[0]) {
 			return l.Source, true

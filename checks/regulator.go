@@ -204,5 +204,8 @@ func (p *Pass) judgeHeadroom(e *netlist.Element, s *study.Stress, dropout *Ratin
 			f.Note = join(f.Note, "near limit")
 		}
 	}
+	if f.Verdict == Violated {
+		f.Remedy = quantity.Format(limit.Value-least, quantity.Volt, 3) + " more at the trough: a larger reservoir, or a higher winding voltage"
+	}
 	return f
 }

@@ -59,26 +59,30 @@ var capacitorEndurance = &Check{
 // customary one, and of the two low ones the one that asks for more.
 const defaultRippleReference = 120
 
-// rippleCurve is the multiplier curve of a capacitor, referred to the frequency of its rating.
-func (p *Pass) rippleCurve(id netlist.ElementID) parts.RippleCurve {
+// rippleCurve is the multiplier curve of a capacitor, referred to the frequency of its rating, and what it leaves
+// of a rating at 100 Hz: the published multipliers are 1 there.
+func (p *Pass) rippleCurve(id netlist.ElementID) (curve parts.RippleCurve, at100 float64) {
 	reference := float64(defaultRippleReference)
 	if r := p.known(id, "fIR"); r != nil {
 		reference = r.Value
 	}
-	rated := 25.0 // the curve with the least slope
+	var published parts.RippleCurve
 	if r := p.known(id, "UR"); r != nil {
-		rated = r.Value
+		published = parts.RippleCurveByVoltage(r.Value)
+	} else if c, ok := p.element(id).Device.(netlist.Capacitor); ok {
+		published = parts.RippleCurveByCapacitance(c.Farads)
 	}
-	return parts.RippleCurveByVoltage(rated).ReferredTo(reference)
+	curve = published.ReferredTo(reference)
+	return curve, curve.K(published.Reference)
 }
 
-// equivalentRipple is the equivalent ripple current of a capacitor: the weighted one, or an upper bound from
-// the unweighted one.
+// equivalentRipple is the equivalent ripple current of a capacitor at the frequency of its rating: the weighted
+// one, or an upper bound from the unweighted one.
 func (p *Pass) equivalentRipple(id netlist.ElementID, weighted, rms *study.Stress) (*study.Stress, string) {
-	curve := p.rippleCurve(id)
+	curve, at100 := p.rippleCurve(id)
 	how := fmt.Sprintf("at %g Hz, multipliers for %s", curve.Reference, curve.Class)
 	if weighted != nil {
-		return weighted, how
+		return derived(weighted, study.RippleCurrentEquivalent, quantity.Ampere, 0, 1/at100), how
 	}
 	if !found(rms) {
 		return rms, ""
@@ -141,7 +145,8 @@ func (p *Pass) judgeRipple(id netlist.ElementID, weighted, rms *study.Stress) Fi
 		return f
 	}
 	// The bound exceeds the limit. What is certain is the RMS current at its greatest multiplier.
-	curve, greatest := p.rippleCurve(id), 1.0
+	curve, _ := p.rippleCurve(id)
+	greatest := 1.0
 	for _, k := range curve.Factor {
 		greatest = math.Max(greatest, k)
 	}

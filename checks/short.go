@@ -18,9 +18,9 @@ var outputShort = &Check{
 	Source:       "common practice of fault analysis",
 	Remedy:       "a fuse or a current limit before the part, or a part that bears it",
 	run: func(p *Pass) {
-		solved := false
+		solved, coupled := false, p.coupled()
 		p.each(func(id netlist.ElementID, e *netlist.Element) {
-			if f, ok := p.judgeShort(id, e); ok {
+			if f, ok := p.judgeShort(id, e, coupled[id]); ok {
 				solved = true
 				p.report(id, f)
 			}
@@ -35,7 +35,7 @@ var outputShort = &Check{
 
 // judgeShort holds the stress of one part with an output shorted against its rating. ok is false where the
 // table has none.
-func (p *Pass) judgeShort(id netlist.ElementID, e *netlist.Element) (f Finding, ok bool) {
+func (p *Pass) judgeShort(id netlist.ElementID, e *netlist.Element, coupled bool) (f Finding, ok bool) {
 	power, current := p.get(e.Name, study.ShortPower), p.get(e.Name, study.ShortCurrent)
 	const remedy = "a fuse or a current limit before it, or a part that bears it"
 	u := upper{critical: Minor, remedy: remedy}
@@ -64,7 +64,7 @@ func (p *Pass) judgeShort(id netlist.ElementID, e *netlist.Element) (f Finding, 
 	case netlist.Transistor, netlist.Fet:
 		watts("PD")
 	case netlist.Inductor, netlist.VoltageSource:
-		rating, is := p.windingRating(id, p.coupled()[id])
+		rating, is := p.windingRating(id, coupled)
 		if !is {
 			return Finding{}, false
 		}

@@ -12,16 +12,16 @@ import (
 var windingCurrent = &Check{
 	Name: "winding-current", Title: "winding current",
 	Applies: "sources declared as `winding`, coupled inductors, and chokes whose Irms or Isat is stated",
-	Stress:  "RMS current; its DC component; where Isat is stated the peak",
+	Stress:  "RMS current; its DC component where it feeds a half-wave rectifier; where Isat is stated the peak",
 	Rating:  "the rated current of the winding, Irms; Isat", Worst: "full load, high line, source resistance low", Policy: policy.WindingCurrent,
 	Formula: "bridge with reservoir: 1.6 to 2.3 times Idc as the source resistance goes from 10 % to 1 % of the load; centre-tap half: that / sqrt(2)",
 	Assumptions: "core saturation is not modelled; a DC component above a twentieth of the rated current counts, " +
-		"since it saturates small cores (common practice)",
+		"since it saturates small cores (common practice); in a centre-tap the halves cancel",
 	SeverityRule: standardSeverity + "; minor for the DC component of half-wave rectification",
 	Source:       "current ratios: rectifier guide of a transformer maker (1.61 and 1.8 quoted for a bridge), recalculated",
 	Remedy:       "a transformer of more VA; full-wave rectification against the DC component",
 	run: func(p *Pass) {
-		coupled := p.coupled()
+		coupled, oneWay := p.coupled(), p.oneWayWindings()
 		p.each(func(id netlist.ElementID, e *netlist.Element) {
 			rating, is := p.windingRating(id, coupled[id])
 			if !is {
@@ -31,7 +31,7 @@ var windingCurrent = &Check{
 				stress: p.get(e.Name, study.RMSCurrent), rating: rating, symbol: "Irms", unit: quantity.Ampere, key: policy.WindingCurrent,
 				remedy: "a transformer or choke of a higher rated current",
 			}))
-			if dc := p.get(e.Name, study.DCCurrent); found(dc) && rating != nil && (coupled[id] || p.declaredWinding(id) != nil) {
+			if dc := p.get(e.Name, study.DCCurrent); found(dc) && rating != nil && oneWay[id] {
 				p.report(id, p.judgeDC(dc, rating))
 			}
 			if isat := p.known(id, "Isat"); isat != nil {
@@ -75,6 +75,24 @@ func (p *Pass) coupled() map[netlist.ElementID]bool {
 			}
 		}
 	})
+	return set
+}
+
+// oneWayWindings is the set of windings that feed a half-wave rectifier: nothing cancels their direct current.
+func (p *Pass) oneWayWindings() map[netlist.ElementID]bool {
+	set := map[netlist.ElementID]bool{}
+	for _, rail := range p.Circuit().RailMap(p.Supply.Duty) {
+		if rail.Rectifier() != netlist.HalfWave {
+			continue
+		}
+		for _, s := range rail.Stages {
+			if s.Role == netlist.StageSource || s.Role == netlist.StageTransformer {
+				for _, id := range s.Elements {
+					set[id] = true
+				}
+			}
+		}
+	}
 	return set
 }
 

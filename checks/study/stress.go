@@ -36,7 +36,7 @@ const (
 // Stresses that single checks ask for beyond those of every element of a kind. Of the quantities marked
 // "smallest" the smaller value is the worse.
 const (
-	RippleCurrentEquivalent Quantity = "ripple-current-equivalent" // capacitor: sqrt(sum (In/kn)^2), A rms at the frequency of its rating
+	RippleCurrentEquivalent Quantity = "ripple-current-equivalent" // capacitor: sqrt(sum (In/kn)^2), A rms at 100 Hz, the reference of the multipliers
 	RMSVoltage              Quantity = "rms-voltage"               // capacitor
 	SteadyMaxVoltage        Quantity = "steady-max-voltage"        // capacitor: max-voltage without the switch-on
 	MeanReverseCurrent      Quantity = "mean-reverse-current"      // zener: largest mean of its working current
