@@ -10,7 +10,7 @@ var catalogue = []*Check{
 	regulatorCapacitors, regulatorBackflow,
 	resistorPower, resistorVoltage,
 	transistorVoltage, transistorCurrent, transistorJunctionTemperature, transistorSafeArea,
-	windingCurrent, chokeInductance, fuseCurrent, fuseSurge,
+	windingCurrent, chokeInductance, fuseCurrent, fuseSurge, limiterCurrent,
 	railVoltage, railRipple, outputShort,
 	sourceUnknown, peakOrRMS, unsolved,
 	polarity, floatingNode, noDCPath, shortedElement, sourceLoop, unconnectedTerminal,

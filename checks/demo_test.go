@@ -40,8 +40,25 @@ func TestDemoNetlists(t *testing.T) {
 					t.Fatal(err)
 				}
 				compare(t, expected, result.Findings)
+				distinct(t, result.Findings)
 			})
 		}
+	}
+}
+
+// distinct holds that a finding is known by its check, element and quantity.
+func distinct(t *testing.T, found []Finding) {
+	t.Helper()
+	seen := map[string]bool{}
+	for _, f := range found {
+		if f.Stress == nil {
+			continue
+		}
+		key := f.Check + " " + f.Element + " " + string(f.Stress.Quantity)
+		if seen[key] {
+			t.Errorf("%s stands twice", key)
+		}
+		seen[key] = true
 	}
 }
 

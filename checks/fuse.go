@@ -50,6 +50,27 @@ var fuseSurge = &Check{
 	},
 }
 
+var limiterCurrent = &Check{
+	Name: "limiter-current", Title: "current of an inrush limiter",
+	Applies: "resistors that stand for an inrush limiter (Rcold stated)",
+	Stress:  "RMS current in the steady state", Rating: "Imax", Worst: "full load, high line",
+	Formula:      "bridge with reservoir: 1.6 to 2.3 times Idc in the winding",
+	Assumptions:  "the ambient does not lower Imax",
+	SeverityRule: "critical beyond the rating",
+	Source:       "highest steady current: makers' data of the type",
+	Remedy:       "a limiter with a higher Imax, or a relay that bridges it",
+	run: func(p *Pass) {
+		p.each(func(id netlist.ElementID, e *netlist.Element) {
+			if p.isLimiter(id) {
+				p.report(id, p.judgePlain(upper{
+					stress: p.get(e.Name, study.RMSCurrent), rating: p.known(id, "Imax"), symbol: "Imax", unit: quantity.Ampere,
+					remedy: "a limiter with a higher Imax, or a relay that bridges it",
+				}))
+			}
+		})
+	},
+}
+
 // eachFuse calls f for every resistor that stands for a fuse.
 func (p *Pass) eachFuse(f func(id netlist.ElementID, e *netlist.Element)) {
 	p.each(func(id netlist.ElementID, e *netlist.Element) {

@@ -16,7 +16,7 @@ var regulatorHeadroom = &Check{
 	Stress:  "smallest input voltage over the period less the highest output voltage and the drop-out voltage, the load current held at its regulated value",
 	Rating:  "VDO, the drop-out voltage at its worst", Worst: "low line, full load, reservoir at its low tolerance",
 	Formula:      "crest - diode drops - ripple - VOUT - VDO, with ripple about I/(f C) at the ripple frequency f",
-	Assumptions:  "the drop-out voltage is the row's highest value where one is known",
+	Assumptions:  "the drop-out voltage is the row's highest value where one is known; a series-pass transistor behind a zener loses regulation with the zener: see zener-regulation",
 	SeverityRule: "critical below zero: out of regulation at the trough; major below the reserve of the policy",
 	Source:       "drop-out voltage: makers' data of the type; the reserve is common practice",
 	Remedy:       "a larger reservoir or a higher winding voltage", Policy: policy.HeadroomReserve,
@@ -152,8 +152,12 @@ func (p *Pass) judgeDifference(difference, input *study.Stress, vio *Rating) Fin
 		stress: difference, rating: vio, symbol: "VIO", unit: quantity.Volt, key: policy.RegulatorInputVoltage,
 		remedy: "a lower winding voltage, a pre-regulator, or a type with a higher VIO",
 	}
+	whole := input // with the output shorted
+	if input != nil {
+		whole = derived(input, study.MaxDifferential, quantity.Volt, 0, 1)
+	}
 	if difference == nil {
-		u.stress, u.note = input, "the whole input, which bounds the difference from above"
+		u.stress, u.note = whole, "the whole input, which bounds the difference from above"
 		f := p.judge(u)
 		if f.Verdict == Violated {
 			f.Verdict, f.Severity, f.Remedy, f.Margin = Unproven, "", "", 0
@@ -162,13 +166,13 @@ func (p *Pass) judgeDifference(difference, input *study.Stress, vio *Rating) Fin
 		return f
 	}
 	f := p.judge(u)
-	if !found(input) {
+	if !found(whole) {
 		return f
 	}
-	f.Note = join(f.Note, "output shorted: "+quantity.Format(input.Value, quantity.Volt, 3))
-	if f.Verdict == Proven && input.Value+input.Error > vio.Value {
-		f.Verdict, f.Severity, f.Stress, f.Limit = Violated, Major, input, p.unchanged(vio.Value)
-		f.Margin = (vio.Value - input.Value - input.Error) / vio.Value
+	f.Note = join(f.Note, "output shorted: "+quantity.Format(whole.Value, quantity.Volt, 3))
+	if f.Verdict == Proven && whole.Value+whole.Error > vio.Value {
+		f.Verdict, f.Severity, f.Stress, f.Limit = Violated, Major, whole, p.unchanged(vio.Value)
+		f.Margin = (vio.Value - whole.Value - whole.Error) / vio.Value
 		f.Remedy = "a lower winding voltage, a pre-regulator, or a type that bears the whole input with its output shorted"
 	}
 	return f
