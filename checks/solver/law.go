@@ -98,7 +98,7 @@ func limitJunction(v, old, scale, knee float64) (float64, bool) {
 	if v <= knee || math.Abs(v-old) <= 2*scale {
 		return v, false
 	}
-	if old < knee {
+	if old < knee-0.1*scale { // a margin, so that rounding cannot keep it at the knee for ever
 		return knee, true
 	}
 	arg := 1 + (v-old)/scale

@@ -134,6 +134,20 @@ func (st *stage) factorise() error {
 // solve finds the port voltages of a stage with predicted states x and inputs u at time t, starting from the
 // last solution. Afterwards v, w and slope hold the solution.
 func (st *stage) solve(x, u []float64, t float64) error {
+	err := st.attempt(x, u, t, dampFrom)
+	if err == nil || len(st.v) == 0 {
+		return err
+	}
+	// From no bias at all, every step damped.
+	for j := range st.v {
+		st.v[j] = 0
+	}
+	st.jacValid = false
+	return st.attempt(x, u, t, 0)
+}
+
+// attempt is one search for the port voltages; steps are damped from the given iteration on.
+func (st *stage) attempt(x, u []float64, t float64, dampFrom int) error {
 	for j := range st.open {
 		st.open[j] = 0
 	}

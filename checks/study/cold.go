@@ -19,6 +19,9 @@ const (
 	coldQuiet   = 3 // such periods in a row
 )
 
+// unboundedSurge is the relative change of a peak current from one grid to the next from which nothing limits it.
+const unboundedSurge = 0.2
+
 // surge follows the current of one diode through a start.
 type surge struct {
 	peak, at  float64
@@ -140,8 +143,12 @@ func (p *Plan) coldStart(ctx context.Context, set Setting, surgeOnly bool, emit 
 				emit(Stress{Element: e.Name, Quantity: q, Unit: unitOf(q), Value: value, Error: math.Abs(value - other), Phase: at, Condition: cond, Unproven: blocked})
 			}
 			if diode {
-				put(SurgeCurrent, f.peak, g.peak, f.at)
-				put(SurgeI2t, f.integral, g.integral, math.NaN())
+				if math.Abs(f.peak-g.peak) > unboundedSurge*f.peak && f.peak > 1 {
+					fail(id, "its surge grows as the time step shrinks: nothing but the diode limits the current into an empty capacitor")
+				} else {
+					put(SurgeCurrent, f.peak, g.peak, f.at)
+					put(SurgeI2t, f.integral, g.integral, math.NaN())
+				}
 				if !surgeOnly {
 					put(PeakReverseVoltage, math.Max(0, -f.lowest.Value), math.Max(0, -g.lowest.Value), f.lowest.At)
 				}
