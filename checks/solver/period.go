@@ -13,6 +13,10 @@ const (
 	leap       = (1 - gammaStage) / gammaStage
 )
 
+// longLeap is the extrapolation of a state, against its size, from which overshooting counts in a network
+// without inductors or regulators too: a source that jumps onto a capacitor.
+const longLeap = 0.02
+
 // march steps a system over uniform steps.
 type march struct {
 	sys   *system
@@ -30,6 +34,8 @@ type march struct {
 
 	onJump       func(share float64) // called just before a junction cuts off, see Trajectory.jumps
 	sampleNumber int
+	leaped       bool      // the last step extrapolated far, see longLeap
+	scale        []float64 // natural size of each state
 
 	before        []float64 // x, and the port currents, at the start of the step
 	currentBefore []float64
@@ -48,7 +54,7 @@ func newMarch(sys *system, step float64) (*march, error) {
 		u: make([]float64, len(sys.sources)), spare: make([]float64, m), spareInputs: make([]float64, len(sys.sources)), flow: newDense(m, m), work: newDense(m, m),
 		before: make([]float64, m), currentBefore: make([]float64, len(sys.ports)), flowBefore: make([]float64, m*m),
 	}
-	a.last = a.stage
+	a.last, a.scale = a.stage, sys.stateScale()
 	return a, nil
 }
 
@@ -61,7 +67,7 @@ func (a *march) inputs(t float64) {
 // advance takes one step from time t. Afterwards x is the new state, pred and u are the predicted state and
 // the inputs of the last stage, from which the unknowns can be read. With track it also propagates flow.
 func (a *march) advance(t float64, track bool) error {
-	guard := a.sys.overshoots
+	guard := len(a.sys.ports) > 0
 	if guard {
 		copy(a.before, a.x)
 		a.last.currents(a.currentBefore)
@@ -72,7 +78,7 @@ func (a *march) advance(t float64, track bool) error {
 	if err := a.twoStages(t, track); err != nil {
 		return err
 	}
-	if guard && a.cutsOff(a.stage) {
+	if guard && (a.sys.overshoots || a.leaped) && a.cutsOff(a.stage) {
 		copy(a.x, a.before)
 		if track {
 			copy(a.flow.data, a.flowBefore)
@@ -90,7 +96,7 @@ func (a *march) twoStages(t float64, track bool) error {
 		return fmt.Errorf("%w at %.6g s", err, t1)
 	}
 	a.stage.states(a.x1, a.x, a.u)
-	if a.sys.overshoots {
+	if len(a.sys.ports) > 0 {
 		// What flowed in the first stage counts as flowing before the second.
 		for j := range a.currentBefore {
 			if i := a.stage.w[j] + a.sys.ports[j].guess*a.stage.v[j]; math.Abs(i) > math.Abs(a.currentBefore[j]) {
@@ -109,8 +115,12 @@ func (a *march) twoStages(t float64, track bool) error {
 			a.work.data[k] = (1-leap)*a.flow.data[k] + leap*v
 		}
 	}
+	a.leaped = false
 	for k := range a.pred {
 		a.pred[k] = a.x[k] + leap*(a.x1[k]-a.x[k])
+		if math.Abs(a.pred[k]-a.x1[k]) > longLeap*(a.scale[k]+math.Abs(a.x1[k])) {
+			a.leaped = true
+		}
 	}
 	a.inputs(t2)
 	if err := a.stage.solve(a.pred, a.u, t2); err != nil {

@@ -248,7 +248,8 @@ func (c *collector) regulatorStresses(id netlist.ElementID, d *netlist.Regulator
 	differential := combine(law.Sign, vin, -law.Sign, vout)
 	set, dropout := law.Set, law.Dropout
 	if !c.out.set.Nominal {
-		set = c.plan.highOutput(id, law.Set)
+		// Held against the high end of the output voltage, wherever in its tolerance this condition has it.
+		set = c.plan.highOutput(id, law.Set/c.plan.factor(&c.out.set, id, "VOUT"))
 	}
 	c.put(MinDifferential, quantity.Volt, differential, smallest)
 	c.put(MinHeadroom, quantity.Volt, scaled(law.Sign, vin), func(st solver.Stats) (float64, float64) {

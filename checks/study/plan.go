@@ -30,6 +30,8 @@ type Plan struct {
 	// Parameters are the toleranced quantities.
 	Parameters []Parameter
 	index      map[statedKey]int
+	// Doubtful lists the sources whose amplitude looks like an RMS value of the mains.
+	Doubtful []netlist.ElementID
 	// Undeclared lists the sinusoidal sources that are neither line nor winding.
 	Undeclared                                []netlist.ElementID
 	DefaultLine, DefaultAmbient, LoadsAsDrawn bool
@@ -74,6 +76,11 @@ func NewPlan(s *Supply) *Plan {
 	}
 	for _, w := range s.Duty.Windings {
 		p.windings[w.Source] = w
+	}
+	for _, source := range s.Circuit.SineSources(s.Duty) {
+		if source.LooksRMS {
+			p.Doubtful = append(p.Doubtful, source.Element)
+		}
 	}
 	p.planLine()
 	p.planLoads()

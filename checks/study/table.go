@@ -2,9 +2,11 @@ package study
 
 import (
 	"context"
+	"fmt"
 	"math"
 	"runtime"
 	"sort"
+	"strings"
 	"sync"
 
 	"railproof/netlist"
@@ -175,24 +177,25 @@ func (t *Table) order(c *netlist.Circuit) {
 // rise and its resistance are unknown, and with them every stress of its island.
 func (t *Table) block() {
 	c := t.Plan.supply.Circuit
-	waiting := map[int]netlist.ElementID{}
-	for _, id := range t.Plan.Undeclared {
-		for i := range t.sources[id] {
-			if _, ok := waiting[i]; !ok {
-				waiting[i] = id
+	wait := func(sources []netlist.ElementID, why, missing string) {
+		waiting := map[int]netlist.ElementID{}
+		for _, id := range sources {
+			for i := range t.sources[id] {
+				if _, ok := waiting[i]; !ok {
+					waiting[i] = id
+				}
+			}
+		}
+		for k := range t.Stresses {
+			s := &t.Stresses[k]
+			if id, ok := waiting[t.home[s.Element]]; ok && s.Unproven == "" {
+				name := c.Elements[id].Name
+				s.Unproven, s.Missing = fmt.Sprintf(why, name), strings.ReplaceAll(missing, "NAME", name)
 			}
 		}
 	}
-	for k := range t.Stresses {
-		s := &t.Stresses[k]
-		id, ok := waiting[t.home[s.Element]]
-		if !ok || s.Unproven != "" {
-			continue
-		}
-		name := c.Elements[id].Name
-		s.Unproven = "the off-load voltage and the resistance of " + name + " are unknown"
-		s.Missing = "winding " + name + " ... or line " + name + " ..."
-	}
+	wait(t.Plan.Doubtful, "the amplitude of %s may be a peak or an RMS value", "line NAME ... or winding NAME as-drawn")
+	wait(t.Plan.Undeclared, "the off-load voltage and the resistance of %s are unknown", "winding NAME ... or line NAME ...")
 }
 
 // take merges an outcome into the table.
