@@ -118,7 +118,7 @@ func (p *Pass) judge(u upper) Finding {
 		f.Verdict = Unproven
 		f.Reason = "no stress was found"
 		if u.stress != nil && u.stress.Unproven != "" {
-			f.Reason = u.stress.Unproven
+			f.Reason, f.Needs = u.stress.Unproven, missing(u.stress)
 		}
 		return f
 	}

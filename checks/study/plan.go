@@ -175,6 +175,30 @@ func (p *Plan) drivesTransformer(id netlist.ElementID) bool {
 	return false
 }
 
+// bare reports whether a source has no resistance or inductance drawn in series with it.
+func (p *Plan) bare(id netlist.ElementID) bool {
+	c := p.supply.Circuit
+	if v, ok := c.Elements[id].Device.(netlist.VoltageSource); !ok || v.SeriesOhms > 0 {
+		return false
+	}
+	for _, n := range c.Elements[id].Nodes {
+		if n == netlist.Ground || len(c.Nodes[n].Terminals) != 2 {
+			continue
+		}
+		for _, t := range c.Nodes[n].Terminals {
+			switch d := c.Elements[t.Element].Device.(type) {
+			case netlist.Resistor:
+				if d.Ohms > 0 {
+					return false
+				}
+			case netlist.Inductor:
+				return false
+			}
+		}
+	}
+	return true
+}
+
 func (p *Plan) planLoads() {
 	given := map[netlist.ElementID]bool{}
 	for _, l := range p.supply.Duty.Loads {

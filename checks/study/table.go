@@ -194,8 +194,35 @@ func (t *Table) block() {
 			}
 		}
 	}
+	t.unbound()
 	wait(t.Plan.Doubtful, "the amplitude of %s may be a peak or an RMS value", "line NAME ... or winding NAME as-drawn")
 	wait(t.Plan.Undeclared, "the off-load voltage and the resistance of %s are unknown", "winding NAME ... or line NAME ...")
+}
+
+// unbound takes away the currents that nothing but a source's unknown resistance would limit: what was found
+// is then no stress, not even one that could violate.
+func (t *Table) unbound() {
+	islands := map[int]string{}
+	for _, id := range t.Plan.Undeclared {
+		if t.Plan.bare(id) {
+			for i := range t.sources[id] {
+				islands[i] = t.Plan.supply.Circuit.Elements[id].Name
+			}
+		}
+	}
+	for k := range t.Stresses {
+		s := &t.Stresses[k]
+		switch s.Quantity {
+		case SurgeCurrent, SurgeI2t, RippleCurrentRMS, RippleCurrentEquivalent:
+			if name, ok := islands[t.home[s.Element]]; ok {
+				s.Value, s.Error, s.Phase = math.NaN(), 0, math.NaN()
+				if s.Unproven == "" {
+					s.Unproven = "no resistance of " + name + " is drawn or stated, and nothing else limits the current"
+					s.Missing = "winding " + name + " ..."
+				}
+			}
+		}
+	}
 }
 
 // take merges an outcome into the table.
