@@ -21,6 +21,9 @@ type Regulator struct {
 	Rejection float64
 	// Body is the saturation current of the reverse path from out to in, A; 0: none. VT is its thermal voltage.
 	Body, VT float64
+	// Sink is the conductance from out to reference of the regulator's own divider, S, which keeps leakage from
+	// lifting an output that nothing loads.
+	Sink float64
 	// Held keeps the output at Set whatever the input, as the load would draw it in regulation, so that
 	// the input is loaded with the regulated current and the shortage of headroom can be read off.
 	Held bool
@@ -89,6 +92,8 @@ func (r *regulator) Evaluate(v []float64, _ float64, i, g []float64) {
 	g[0], g[1] = dvin+dquiescent+gmin, dvout
 	g[2], g[3] = -dvin, -dvout
 	i[0] += gmin * v[0]
+	i[1] += r.Sink * v[1]
+	g[3] += r.Sink
 }
 
 func (r *regulator) Limit(v, old []float64) bool {

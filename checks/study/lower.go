@@ -20,6 +20,9 @@ type lowered struct {
 
 const none solver.Device = -1
 
+// shortOhms stands for a shorted output: a few centimetres of wire and its joints (our choice).
+const shortOhms = 10e-3
+
 // openOhms stands for an open load.
 const openOhms = 1e15
 
@@ -68,6 +71,10 @@ func (low *lowered) add(s *Supply, id netlist.ElementID, e *netlist.Element, set
 		}
 		return solver.Reference
 	}
+	if set.Short != nil && *set.Short == id && len(e.Nodes) >= 2 {
+		low.devices[id] = n.AddResistor(at(0), at(1), shortOhms)
+		return nil
+	}
 	shift := func(symbol netlist.Symbol) float64 { return plan.factor(set, id, symbol) }
 	var dev solver.Device
 	switch d := e.Device.(type) {
@@ -88,12 +95,12 @@ func (low *lowered) add(s *Supply, id netlist.ElementID, e *netlist.Element, set
 		farads := d.Farads * shift("C")
 		if esr := s.number(id, "ESR", 0) * shift("ESR"); esr > 0 && !set.Nominal || esr > 0 && s.writtenOnCard(id, "ESR") {
 			inner := n.AddNode()
-			dev = n.AddCapacitor(at(0), inner, farads, 0)
+			dev = n.AddCapacitor(at(0), inner, farads, set.Charge[id])
 			n.AddResistor(inner, at(1), esr)
 			n.MeasureAcross(dev, at(0), at(1))
 			break
 		}
-		dev = n.AddCapacitor(at(0), at(1), farads, 0)
+		dev = n.AddCapacitor(at(0), at(1), farads, set.Charge[id])
 	case netlist.Inductor:
 		if d.Henries == 0 {
 			dev = n.AddResistor(at(0), at(1), 0)
@@ -197,6 +204,9 @@ func (low *lowered) voltageSource(s *Supply, id netlist.ElementID, e *netlist.El
 			wave = sine
 			ohms += w.Voltage * w.Regulation / w.Current
 		}
+	}
+	if _, fed := plan.lines[id]; fed && set.LineOff {
+		return n.AddResistor(plus, minus, openOhms)
 	}
 	source := plan.wave(wave, plan.lineFactor(id, set), set)
 	if ohms > 0 {

@@ -120,6 +120,10 @@ func (low *lowered) regulator(s *Supply, id netlist.ElementID, e *netlist.Elemen
 	return n.AddRegulator(node(0), node(1), node(2), law), ""
 }
 
+// dividerCurrent is what a regulator's own divider draws from its output, A: less than that of any common type
+// (from memory), enough to drain the leakage of diodes around it.
+const dividerCurrent = 100e-6
+
 // regulatorLaw gathers the law of a series regulator from its ratings.
 func (s *Supply) regulatorLaw(id netlist.ElementID, e *netlist.Element, d *netlist.Regulator, set *Setting, plan *Plan) (solver.Regulator, string) {
 	symbol := netlist.Symbol("VOUT")
@@ -149,6 +153,21 @@ func (s *Supply) regulatorLaw(id netlist.ElementID, e *netlist.Element, d *netli
 	if typical, has := s.Property(id, "IQtyp"); has && set.Nominal && !s.isStated(id, "IQ") && !d.Adjustable {
 		quiescent = typical.Value()
 	}
+	if set.NoBleed {
+		quiescent = 0
+	}
+	sink := 0.0
+	if !set.Nominal && !set.NoBleed && vout.Value() != 0 {
+		sink = dividerCurrent / math.Abs(vout.Value())
+	}
+	limit := 0.0
+	if set.Short != nil {
+		p, ok := s.Property(id, "Ilim")
+		if !ok {
+			return solver.Regulator{}, "its current limit is unknown (rate " + e.Name + " Ilim=)"
+		}
+		limit = p.Value()
+	}
 	sign := float64(d.Polarity)
 	if sign == 0 {
 		sign = 1
@@ -156,7 +175,7 @@ func (s *Supply) regulatorLaw(id netlist.ElementID, e *netlist.Element, d *netli
 	return solver.Regulator{
 		Sign: sign, Set: math.Abs(vout.Value()) * plan.factor(set, id, "VOUT"),
 		Dropout: math.Abs(dropout.Value()), Quiescent: math.Abs(quiescent),
-		ROut: s.number(id, "Rout", 0), Held: set.Held,
+		ROut: s.number(id, "Rout", 0), Held: set.Held, CurrentLimit: limit, Sink: sink,
 	}, ""
 }
 

@@ -33,6 +33,13 @@ type Setting struct {
 	Phase float64
 	// Cold starts from empty instead of looking for the steady state.
 	Cold bool
+	// LineOff opens every source that the line feeds; Charge is the voltage each capacitor then has, and with
+	// NoBleed regulators draw no current of their own.
+	LineOff bool
+	NoBleed bool
+	Charge  map[netlist.ElementID]float64
+	// Short is the load whose output is shorted; nil: none.
+	Short *netlist.ElementID
 	// Nominal solves the netlist exactly as written.
 	Nominal bool
 }

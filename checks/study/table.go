@@ -120,6 +120,8 @@ func Worst(ctx context.Context, s *Supply, jobs int) *Table {
 	}
 	t.tolerances(ctx, base, jobs)
 	p.coldStarts(ctx, jobs, t)
+	p.lineOffs(ctx, jobs, t)
+	p.outputShorts(ctx, jobs, t)
 	t.order(s.Circuit)
 	t.block()
 	return t

@@ -1,0 +1,47 @@
+package study
+
+import (
+	"context"
+
+	"railproof/netlist"
+)
+
+// outputShorts adds the steady state with each output shorted in turn, at high line with the other loads full:
+// the mean power of what may get hot, and the current of what would have to carry it or clear it.
+func (p *Plan) outputShorts(ctx context.Context, jobs int, t *Table) {
+	outcomes := make([]*outcome, len(p.loads))
+	inParallel(len(p.loads), jobs, func(k int) {
+		loads := make([]float64, len(p.loads))
+		for j := range loads {
+			loads[j] = 1
+		}
+		id := p.loads[k].element
+		outcomes[k] = p.solve(ctx, Setting{Line: LineHigh, Loads: loads, Ambient: p.Ambient[1], Short: &id}, nil)
+	})
+	c := p.supply.Circuit
+	kinds := map[string]netlist.Device{}
+	for k := range c.Elements {
+		kinds[c.Elements[k].Name] = c.Elements[k].Device
+	}
+	for k, out := range outcomes {
+		t.Solved++
+		shorted := c.Elements[p.loads[k].element].Name
+		p.extract(out, func(s Stress) {
+			if s.Element == shorted {
+				return
+			}
+			_, diode := kinds[s.Element].(netlist.Diode)
+			switch {
+			case s.Quantity == MeanPower:
+				s.Quantity = ShortPower
+			case s.Quantity == MeanCurrent && diode, s.Quantity == RMSCurrent && !diode:
+				s.Quantity = ShortCurrent
+			default:
+				return
+			}
+			s.Condition.Name = "high line, output " + shorted + " shorted"
+			s.Condition.Load = "shorted"
+			t.merge(s)
+		})
+	}
+}
