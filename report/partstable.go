@@ -6,6 +6,7 @@ import (
 	"strings"
 
 	"railproof/checks/parts"
+	"railproof/netlist"
 	"railproof/netlist/quantity"
 )
 
@@ -29,6 +30,37 @@ func WritePartTypes(w io.Writer, t *parts.Table, colour bool) error {
 	return err
 }
 
+// pinWord names a terminal as `pins=` of the duty sheet does.
+func pinWord(p netlist.Pin, role netlist.Role) string {
+	switch p {
+	case netlist.PinIn:
+		return "in"
+	case netlist.PinReference:
+		switch role {
+		case netlist.RoleAdjustable:
+			return "adj"
+		case netlist.RoleShunt:
+			return "ref"
+		}
+		return "gnd"
+	case netlist.PinOut:
+		return "out"
+	case netlist.PinAnode:
+		return "anode"
+	case netlist.PinCathode:
+		return "cathode"
+	case netlist.PinAC1:
+		return "ac1"
+	case netlist.PinAC2:
+		return "ac2"
+	case netlist.PinPlus:
+		return "plus"
+	case netlist.PinMinus:
+		return "minus"
+	}
+	return "?"
+}
+
 // WritePart writes a row of the parts table: every value with its condition, source and how sure it is.
 func WritePart(w io.Writer, row *parts.Row, colour bool) error {
 	l := &ledger{palette: newPalette(colour)}
@@ -36,7 +68,7 @@ func WritePart(w io.Writer, row *parts.Row, colour bool) error {
 	if len(row.Pins) > 0 {
 		var pins []string
 		for _, p := range row.Pins {
-			pins = append(pins, string(p))
+			pins = append(pins, pinWord(p, row.Role))
 		}
 		text := strings.Join(pins, ", ")
 		if row.PinsDoubtful {

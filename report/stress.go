@@ -72,6 +72,9 @@ func (t *StressTable) WriteText(w io.Writer, colour bool) error {
 	l.head(f)
 	l.line("")
 	rows := [][]string{{"part", "quantity", "worst", "+-", "when"}}
+	if t.Nominal {
+		rows[0][2] = "value"
+	}
 	last := ""
 	unproven := false
 	for k := range t.Stresses {
@@ -86,7 +89,7 @@ func (t *StressTable) WriteText(w io.Writer, colour bool) error {
 		if s.Unproven != "" {
 			value, unproven = value+" ?", true
 		}
-		rows = append(rows, []string{name, string(s.Quantity), value, quantity.Format(s.Error, s.Unit, 1), whenWords(s)})
+		rows = append(rows, []string{name, string(s.Quantity), value, quantity.Format(s.Error, s.Unit, 1), t.when(s)})
 	}
 	l.table(rows)
 	if unproven {
@@ -102,6 +105,14 @@ func (t *StressTable) WriteText(w io.Writer, colour bool) error {
 	l.listAssumptions(f)
 	_, err := io.WriteString(w, l.out.String())
 	return err
+}
+
+// when is the condition of a stress in words; as written there is but one, and only the moment is told.
+func (t *StressTable) when(s *study.Stress) string {
+	if t.Nominal && s.Condition.Start != "cold" {
+		return momentWords(s)
+	}
+	return whenWords(s)
 }
 
 // WriteCSV writes one line a stress, SI units.

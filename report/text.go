@@ -54,6 +54,7 @@ func (l *ledger) file(f *File) {
 	l.listNeeded(f)
 	l.listAssumptions(f)
 	l.listNotRead(f)
+	l.listTables(f)
 }
 
 func (l *ledger) head(f *File) {

@@ -2,6 +2,7 @@ package report
 
 import (
 	"fmt"
+	"math"
 	"slices"
 	"strings"
 
@@ -103,6 +104,15 @@ func foundLine(f *Finding) string {
 	return fmt.Sprintf("found %s   %s %s   %s %s", found, allowed, limit, last, difference(f.Stress.Value, f.Limit.Value, f.Stress.Unit))
 }
 
+// ofLimit is a stress beside its limit in short: "580 mW of 600 mW".
+func ofLimit(f *Finding) string {
+	found, limit := pair(f.Stress.Value, f.Limit.Value, f.Stress.Unit)
+	if f.Floor {
+		return found + ", at least " + limit
+	}
+	return found + " of " + limit
+}
+
 // placeWords names the place of every part of an entry: "a.cir:14 and lines 15, 16".
 func placeWords(f *Folded) string {
 	if len(f.Places) == 0 || f.Places[0].At.Line == 0 {
@@ -141,8 +151,9 @@ func (l *ledger) listUnproven(f *File) {
 			}
 			l.entry("UNPROVEN", first, tail)
 			l.say("why", first.forAll(first.Reason))
-			if first.Stress != nil && first.Limit != nil {
-				l.say("so far", foundLine(&first.Finding))
+			if first.Stress != nil && !math.IsNaN(first.Stress.Value) {
+				l.hang(entryIndent, entryIndent, foundLine(&first.Finding))
+				l.say("when", whenWords(first.Stress))
 			}
 			l.say("note", first.forAll(first.Note))
 			l.say("needs", first.forAll(needWords(&first.Finding)))
@@ -227,7 +238,7 @@ func (l *ledger) listNearLimit(f *File) {
 			l.section("Proven, but near the limit")
 			started = true
 		}
-		l.hang("  ", "    ", fmt.Sprintf("%s  %s: %s (%s to spare)", x.Name(), x.Title, strings.TrimPrefix(foundLine(&x.Finding), "found "), quantity.Percent(x.Margin, 2)))
+		l.hang("  ", "    ", fmt.Sprintf("%s  %s: %s (%s to spare)", x.Name(), x.Title, ofLimit(&x.Finding), quantity.Percent(x.Margin, 2)))
 	}
 }
 

@@ -138,14 +138,17 @@ func (l *ledger) listNotRead(f *File) {
 	}
 }
 
+func (l *ledger) listTables(f *File) {
+	if f.PartsVersion+f.PolicyVersion == "" {
+		return
+	}
+	l.line("")
+	l.hang("", "", fmt.Sprintf("judged by parts tables %s, policy %s", f.PartsVersion, f.PolicyVersion))
+}
+
 func (l *ledger) cautions() {
 	l.line(l.strong.Sprint("Cautions"))
 	for _, c := range Cautions {
 		l.hang("  ", "  ", c)
 	}
-}
-
-// tablesLine names the tables a file was judged by.
-func tablesLine(f *File) string {
-	return fmt.Sprintf("parts tables %s, policy %s", f.PartsVersion, f.PolicyVersion)
 }

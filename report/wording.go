@@ -48,15 +48,18 @@ func conditionWords(c study.Condition) string {
 
 // whenWords is the condition and the moment of an extremum.
 func whenWords(s *study.Stress) string {
-	words := conditionWords(s.Condition)
-	if math.IsNaN(s.Phase) || math.IsInf(s.Phase, 0) {
-		return words
+	return joinWith(conditionWords(s.Condition), momentWords(s), ", ")
+}
+
+// momentWords is the moment of an extremum, empty if there is none.
+func momentWords(s *study.Stress) string {
+	switch {
+	case math.IsNaN(s.Phase) || math.IsInf(s.Phase, 0):
+		return ""
+	case s.Condition.Start == "cold":
+		return figure(s.Phase, quantity.Second) + " after switch-on"
 	}
-	moment := figure(s.Phase, quantity.Second)
-	if s.Condition.Start == "cold" {
-		return joinWith(words, moment+" after switch-on", ", ")
-	}
-	return joinWith(words, moment+" into the cycle", ", ")
+	return figure(s.Phase, quantity.Second) + " into the cycle"
 }
 
 // limitWords says how the limit follows from the rating.
