@@ -20,7 +20,7 @@ const (
 	defaultSteps = 128
 	// inductiveSteps is the first grid of a network with inductors, whose node voltages jump where a junction
 	// cuts their current off: what lies between two samples at a jump is known to one step only.
-	inductiveSteps  = 512
+	inductiveSteps  = 1024
 	defaultMaxSteps = 8192
 	// VoltageTolerance and CurrentTolerance are the relative changes between two grids below which a
 	// solution counts as accurate: of voltages and mean values, and of peak and RMS currents.
@@ -136,10 +136,30 @@ func (s *Solution) grid(ctx context.Context, sys *system, x []float64, steps, pl
 	if err != nil {
 		return nil, err
 	}
+	s.Periods++
+	if sys.centre(m, tr) {
+		if tr, err = m.record(ctx, 0, steps, false); err != nil {
+			return nil, err
+		}
+		s.Periods++
+	}
 	copy(x, m.x)
 	tr.Periodic = true
-	s.Periods++
 	return tr, nil
+}
+
+// centre moves the flux of inductors that ideal sources alone drive, so that their mean current over the
+// recorded period is zero: a winding without resistance keeps whatever direct current it had, and a real one
+// loses it. It reports whether it moved any.
+func (s *system) centre(m *march, tr *Trajectory) bool {
+	for _, k := range s.lossless {
+		_, current := tr.BranchOf(s.inductors[k], 0)
+		mean := tr.Mean(func(n int) float64 { return current[n] })
+		for j, l := range s.inductance.row(k) {
+			m.x[len(s.capacitors)+j] -= l * mean
+		}
+	}
+	return len(s.lossless) > 0
 }
 
 // disagreement compares the branch voltages and currents and the node voltages of the two grids; it names the

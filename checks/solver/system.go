@@ -24,6 +24,8 @@ type system struct {
 	ports    []port
 	laws     []lawSlot
 	maxPorts int
+	// lossless lists the inductors that ideal sources alone drive: a constant current in them is undetermined.
+	lossless []int
 	// overshoots: the network has inductors or regulators, see march.cutsOff.
 	overshoots bool
 }
@@ -65,6 +67,12 @@ func newSystem(n *Network) (*system, error) {
 		}
 	}
 	s.unknowns = next
+	fixed := n.fixedNodes()
+	for k, d := range s.inductors {
+		if b := n.devices[d].branches[0]; fixed[b.A] && fixed[b.B] {
+			s.lossless = append(s.lossless, k)
+		}
+	}
 	s.inductance = newDense(len(s.inductors), len(s.inductors))
 	for k, d := range s.inductors {
 		s.inductance.row(k)[k] = n.devices[d].value
