@@ -1,6 +1,9 @@
 package netlist
 
-import "slices"
+import (
+	"slices"
+	"strings"
+)
 
 // adoptPart takes an element for a row of the parts table, as `part ELEMENT TYPE pins=...` says: a diode
 // becomes a zener or a rectifier, a call of an undefined type becomes the regulator or diode it names, and
@@ -35,7 +38,8 @@ func (c *Circuit) adoptPart(id ElementID, typeName string, stated []string) (why
 // adoptUnknown gives a law to a call of an undefined type.
 func (c *Circuit) adoptUnknown(id ElementID, part KnownPart, pins []Pin) (why string) {
 	e := &c.Elements[id]
-	if pins == nil {
+	assumed := pins == nil
+	if assumed {
 		pins = part.Pins
 	}
 	switch {
@@ -51,7 +55,12 @@ func (c *Circuit) adoptUnknown(id ElementID, part KnownPart, pins []Pin) (why st
 	case part.Role == RoleRegulator || part.Role == RoleAdjustable || part.Role == RoleShunt || slices.Contains(pins, PinIn):
 		d := Regulator{Polarity: Positive, PinsAssumed: true}
 		d.takeRole(part)
-		return c.placeRegulator(id, d, slices.Clone(e.Nodes), pins)
+		why := c.placeRegulator(id, d, slices.Clone(e.Nodes), pins)
+		if placed, ok := e.Device.(Regulator); ok && assumed {
+			placed.PinsAssumed = true
+			e.Device = placed
+		}
+		return why
 	}
 	return ""
 }
@@ -84,9 +93,20 @@ func (c *Circuit) placeRegulator(id ElementID, d Regulator, written []NodeID, pi
 		}
 		c.setNodes(id, ordered)
 		d.PinsAssumed = false
+		c.dropRemark(c.Elements[id].Name, pinsTaken)
 	}
 	c.Elements[id].Device = d
 	return ""
+}
+
+// pinsTaken begins the remark of a reader that had to assume the order of an element's pins.
+const pinsTaken = "its pins are taken in the customary order"
+
+// dropRemark removes an assumption about an element that a statement has settled.
+func (c *Circuit) dropRemark(element, beginning string) {
+	c.Remarks = slices.DeleteFunc(c.Remarks, func(r Remark) bool {
+		return r.Kind == RemarkAssumption && r.Element == element && strings.HasPrefix(r.Text, beginning)
+	})
 }
 
 // adoptRegulator takes a call of an undefined type with three nodes for a three-terminal regulator, in

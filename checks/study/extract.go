@@ -228,6 +228,15 @@ func positive(st solver.Stats) (float64, float64) {
 	return st.Max.Value, st.Max.At
 }
 
+// wrongWay is the mean input voltage, V, against its polarity from which a regulator's pins count as mistaken.
+const wrongWay = 1.0
+
+// meanOf is the mean of a signal of the island's solution.
+func (c *collector) meanOf(s signal) float64 {
+	tr := c.island.solution.Fine
+	return tr.Mean(s(tr))
+}
+
 func (c *collector) regulatorStresses(id netlist.ElementID, d *netlist.Regulator, dev solver.Device) {
 	if d.Shunt {
 		v, i := c.voltage(dev, 0), c.current(dev, 0)
@@ -246,6 +255,11 @@ func (c *collector) regulatorStresses(id netlist.ElementID, d *netlist.Regulator
 	vin, iin := c.voltage(dev, 0), c.current(dev, 0)
 	vout, iout := c.voltage(dev, 1), c.current(dev, 1)
 	differential := combine(law.Sign, vin, -law.Sign, vout)
+	if c.island.solution != nil && c.island.blocked == "" && law.Sign*c.meanOf(vin) < -wrongWay {
+		doubtful := *c.island
+		doubtful.blocked = "its input has the wrong polarity for its type: state its pins with part ... pins="
+		c.island = &doubtful
+	}
 	set, dropout := law.Set, law.Dropout
 	if !c.out.set.Nominal {
 		// Held against the high end of the output voltage, wherever in its tolerance this condition has it.
