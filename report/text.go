@@ -124,11 +124,14 @@ func (r *Report) Outcome() (word, why string) {
 	case ExitViolated:
 		return "STOPPED", fmt.Sprintf("%s: %s at or above it", gate, counted(r.Gate.Stops, "violation"))
 	case ExitUnproven:
-		why := counted(r.Totals.HeadlineUnproven, "headline check") + " unproven"
-		if r.Totals.Unsolved > 0 {
-			why += ", " + counted(r.Totals.Unsolved, "part") + " of the circuit unsolved"
+		var why []string
+		if n := r.Totals.HeadlineUnproven; n > 0 {
+			why = append(why, counted(n, "headline check")+" unproven")
 		}
-		return "NOT PROVEN", gate + ": nothing violates it, but " + why
+		if n := r.Totals.Unsolved; n > 0 {
+			why = append(why, counted(n, "part")+" of the circuit unsolved")
+		}
+		return "NOT PROVEN", gate + ": nothing violates it, but " + strings.Join(why, ", ")
 	}
 	if r.Totals.HeadlineUnproven+r.Totals.Unsolved > 0 {
 		return "PASSED", gate + ", unproven headline checks allowed"
