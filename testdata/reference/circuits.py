@@ -3,7 +3,7 @@
 import importlib
 from dataclasses import dataclass, field
 
-CHAPTERS = ("rectifiers", "variants", "filters", "transformers", "shunts", "regulators", "coldstarts", "direct")
+CHAPTERS = ("rectifiers", "variants", "filters", "transformers", "shunts", "regulators", "coldstarts", "direct", "corners")
 LIST = []
 
 
@@ -19,6 +19,7 @@ class Circuit:
     cycles: int = 0  # of a cold start
     rtol: float = 1e-10
     plain: int = 2  # periods integrated before the search for the steady state
+    steps: int = 1000  # least number in a period of the waveform
     instants: int = 20000  # at which a circuit without states is solved; few for direct sources
     second: tuple = ("Radau", 1e-8)  # the method that checks, and its tolerance
     closed_form: dict = field(default_factory=dict)  # (element, quantity): value known without integration

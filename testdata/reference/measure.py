@@ -38,14 +38,16 @@ def read(cards):
     return elements, models, rates
 
 
-def sine(field_list, t):
-    """The waveform of SIN(VO VA FREQ TD THETA PHASE) or of a constant."""
-    text = " ".join(field_list)
-    m = re.fullmatch(r"SIN\((.*)\)", text)
+def wave(fields, t):
+    """The waveform of SIN(VO VA FREQ TD THETA PHASE), of PULSE(V1 V2 TD TR TF PW PER) or of a constant."""
+    m = re.fullmatch(r"(SIN|PULSE)\((.*)\)", " ".join(fields))
     if not m:
-        return np.full(len(t), number(field_list[-1]))
-    p = [number(x) for x in m.group(1).split()] + [0, 0, 0]
-    return p[0] + p[1] * np.sin(2 * np.pi * p[2] * t + np.pi / 180 * p[5])
+        return np.full(len(t), number(fields[-1]))
+    p = [number(x) for x in m.group(2).split()] + [0, 0, 0]
+    if m.group(1) == "SIN":
+        return p[0] + p[1] * np.sin(2 * np.pi * p[2] * t + np.pi / 180 * p[5])
+    corners = np.cumsum([0, p[3], p[5], p[4]])
+    return np.interp((t - p[2]) % p[6], corners, [p[0], p[1], p[1], p[0]])
 
 
 def residual(cards, t, nodes, currents):
@@ -93,9 +95,9 @@ def residual(cards, t, nodes, currents):
         if kind == "R":
             fault(e, i * number(f[2]), v)
         elif kind == "I":
-            fault(e, i, sine(f[2:], t))
+            fault(e, i, wave(f[2:], t))
         elif kind == "V":
-            fault(e, v, sine(f[2:], t))
+            fault(e, v, wave(f[2:], t))
         elif kind == "C":
             fault(e, integral(t, i) / number(f[2]), (v - v[0])[::2], 1e-3 * np.max(np.abs(v)))
         elif kind == "L":

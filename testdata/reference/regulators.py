@@ -59,7 +59,8 @@ def regulator_constant_current():
 
 
 @circuit("regulator-output-capacitor", cards("Radio rail in and out of drop-out with a capacitor at the output",
-                                             19, 0.8, "1000u", X12 + "\nC2 OUT 0 220u\nRL OUT 0 20"), [15.0])
+                                             19, 0.8, "1000u", X12 + "\nC2 OUT 0 220u\nRL OUT 0 20"), [15.0],
+         second=("LSODA", 1e-9))
 def regulator_output_capacitor():
     """In drop-out the output follows the input and C2 is charged with it: (C1 + C2) p' = f + r - IQ - o/RL.
 
