@@ -21,6 +21,10 @@ type format struct {
 var reportFormats = []format{
 	{"text", "the ledger for people", func(r *Report, w io.Writer, s Style) error { return r.WriteText(w, s.Colour) }},
 	{"json", "schema " + ReportSchema, func(r *Report, w io.Writer, _ Style) error { return r.WriteJSON(w) }},
+	{"sarif", "SARIF 2.1.0", func(r *Report, w io.Writer, _ Style) error { return r.WriteSARIF(w) }},
+	{"junit", "JUnit XML", func(r *Report, w io.Writer, _ Style) error { return r.WriteJUnit(w) }},
+	{"markdown", "the ledger as Markdown", func(r *Report, w io.Writer, _ Style) error { return r.WriteMarkdown(w) }},
+	{"csv", "the stress table for the design file", func(r *Report, w io.Writer, _ Style) error { return r.WriteCSV(w) }},
 }
 
 // stressFormats is every format of `stress`, the default first.

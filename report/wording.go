@@ -146,3 +146,14 @@ func joinWith(a, b, between string) string {
 }
 
 func joined(a, b string) string { return joinWith(a, b, "; ") }
+
+// inSentence turns the columns of a ledger line into a sentence.
+func inSentence(line string) string { return strings.ReplaceAll(line, "   ", ", ") }
+
+// capital begins a sentence.
+func capital(text string) string {
+	if text == "" {
+		return ""
+	}
+	return strings.ToUpper(text[:1]) + text[1:]
+}
