@@ -1,6 +1,8 @@
 package study
 
 import (
+	"errors"
+	"fmt"
 	"math"
 
 	"railproof/checks/solver"
@@ -19,6 +21,13 @@ type collector struct {
 	joint   *solver.Device // set when the element was put together from several islands
 }
 
+// A solution that could not be refined far enough still proves a stress whose own numerical error, which counts
+// against the part, is below these: relative, and absolute in the unit of the quantity.
+const (
+	loose      = 0.01
+	looseFloor = 1e-3
+)
+
 type signal = func(tr *solver.Trajectory) func(k int) float64
 
 func (c *collector) put(q Quantity, unit quantity.Unit, s signal, pick func(solver.Stats) (float64, float64)) {
@@ -26,12 +35,15 @@ func (c *collector) put(q Quantity, unit quantity.Unit, s signal, pick func(solv
 	switch {
 	case c.island.blocked != "":
 		st.Unproven = c.island.blocked
-	case c.island.err != nil:
+	case c.island.err != nil && (!errors.Is(c.island.err, solver.ErrInaccurate) || c.island.solution == nil):
 		st.Unproven = c.island.err.Error()
 	}
 	if c.island.solution != nil {
 		r := readStat(c.island.solution, s, pick)
 		st.Value, st.Error, st.Phase = r.value, r.err, r.at
+		if c.island.err != nil && st.Unproven == "" && st.Error > loose*math.Abs(st.Value)+looseFloor {
+			st.Unproven = fmt.Sprintf("its value changes with the time step, by %s at the finest", quantity.Format(st.Error, unit, 2))
+		}
 	}
 	c.emit(st)
 }

@@ -123,7 +123,7 @@ func (p *Plan) lineOff(ctx context.Context, steady *outcome, discharge bool, emi
 			}
 			if steady.failed != nil {
 				s.Unproven = steady.failed.Error()
-			} else if i := steady.islandOf(c, w.id); i >= 0 && steady.islands[i].err != nil {
+			} else if i := steady.islandOf(c, w.id); i >= 0 && steady.islands[i].err != nil && steady.islands[i].solution == nil {
 				s.Unproven = steady.islands[i].err.Error()
 			}
 			emit(s)

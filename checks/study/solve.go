@@ -33,6 +33,13 @@ type solvedIsland struct {
 // states holds the periodic states of a neighbouring setting, by island, from which the search starts.
 type states map[int][]float64
 
+// The grids of the many conditions of a check: the difference of two grids counts against the part, so that they
+// may be coarser than those of the netlist exactly as written.
+const (
+	workingSteps    = 128
+	workingMaxSteps = 2048
+)
+
 // solve finds the steady state of every island of the supply in one setting.
 func (p *Plan) solve(ctx context.Context, set Setting, warm states) *outcome {
 	out := &outcome{set: set}
@@ -72,9 +79,15 @@ func (p *Plan) solve(ctx context.Context, set Setting, warm states) *outcome {
 			}
 		}
 		if out.failed == nil {
-			is.solution, is.err = solver.SteadyState(ctx, part.Network, solver.Options{Start: warm[i]})
-			if is.err != nil && warm[i] != nil && ctx.Err() == nil {
-				is.solution, is.err = solver.SteadyState(ctx, part.Network, solver.Options{})
+			effort := solver.Options{Steps: workingSteps, MaxSteps: workingMaxSteps}
+			if set.Nominal {
+				effort = solver.Options{}
+			}
+			effort.Start = warm[i]
+			is.solution, is.err = solver.SteadyState(ctx, part.Network, effort)
+			if is.err != nil && !errors.Is(is.err, solver.ErrInaccurate) && warm[i] != nil && ctx.Err() == nil {
+				effort.Start = nil
+				is.solution, is.err = solver.SteadyState(ctx, part.Network, effort)
 			}
 		} else {
 			is.err = out.failed

@@ -2,6 +2,7 @@ package study
 
 import (
 	"context"
+	"errors"
 	"fmt"
 	"math"
 	"runtime"
@@ -9,6 +10,7 @@ import (
 	"strings"
 	"sync"
 
+	"railproof/checks/solver"
 	"railproof/netlist"
 )
 
@@ -278,7 +280,7 @@ func (t *Table) note(out *outcome) {
 	for i := range out.islands {
 		is := &out.islands[i]
 		why := is.blocked
-		if why == "" && is.err != nil {
+		if why == "" && is.err != nil && !errors.Is(is.err, solver.ErrInaccurate) {
 			why = is.err.Error()
 		}
 		if why == "" {
