@@ -7,24 +7,33 @@ type Island struct {
 	Nodes   []Node   // Nodes[k] is the node of the whole network that the island's node k is
 }
 
+// forest is a partition of 0..n-1 into sets, each a tree whose root names it.
+type forest []int
+
+func newForest(n int) forest {
+	f := make(forest, n)
+	for k := range f {
+		f[k] = k
+	}
+	return f
+}
+
+// root names the set that k is in.
+func (f forest) root(k int) int {
+	for f[k] != k {
+		f[k] = f[f[k]]
+		k = f[k]
+	}
+	return k
+}
+
 // Islands splits a network into parts that influence one another only through the reference and through
 // nodes whose potential independent voltage sources fix. A source that fixes a node of several islands is
 // copied into each. Controlling quantities and couplings hold islands together.
 func (n *Network) Islands() []Island {
 	fixed := n.fixedNodes()
-	parent := make([]int, n.nodes+len(n.devices))
-	for k := range parent {
-		parent[k] = k
-	}
-	var find func(int) int
-	find = func(k int) int {
-		for parent[k] != k {
-			parent[k] = parent[parent[k]]
-			k = parent[k]
-		}
-		return k
-	}
-	join := func(a, b int) { parent[find(a)] = find(b) }
+	parent := newForest(n.nodes + len(n.devices))
+	join := func(a, b int) { parent[parent.root(a)] = parent.root(b) }
 	joinNode := func(d int, k Node) {
 		if !fixed[k] {
 			join(n.nodes+d, int(k))
@@ -82,7 +91,7 @@ func (n *Network) Islands() []Island {
 		if anchors[d] {
 			continue
 		}
-		root := find(n.nodes + d)
+		root := parent.root(n.nodes + d)
 		if _, ok := index[root]; !ok {
 			index[root] = len(order)
 			order = append(order, root)
@@ -94,7 +103,7 @@ func (n *Network) Islands() []Island {
 	members := make([][]Device, len(order))
 	for d := range n.devices {
 		if !anchors[d] {
-			k := index[find(n.nodes+d)]
+			k := index[parent.root(n.nodes+d)]
 			members[k] = append(members[k], Device(d))
 		}
 	}
@@ -251,19 +260,9 @@ func (n *Network) extract(devices []Device, fixed []bool, via map[Node]Device) I
 // Anchor ties each galvanically separate part of the network that lacks the reference to it through one
 // resistor, which carries no current: the potentials become defined, the stresses of elements stay the same.
 func (n *Network) Anchor() {
-	parent := make([]int, n.nodes)
-	for k := range parent {
-		parent[k] = k
-	}
-	find := func(k int) int {
-		for parent[k] != k {
-			parent[k] = parent[parent[k]]
-			k = parent[k]
-		}
-		return k
-	}
+	parent := newForest(n.nodes)
 	join := func(b Branch) {
-		parent[find(int(b.A))] = find(int(b.B))
+		parent[parent.root(int(b.A))] = parent.root(int(b.B))
 	}
 	for d := range n.devices {
 		dev := &n.devices[d]
@@ -282,10 +281,10 @@ func (n *Network) Anchor() {
 		}
 	}
 	for k := 1; k < n.nodes; k++ {
-		if find(k) == find(int(Reference)) {
+		if parent.root(k) == parent.root(int(Reference)) {
 			continue
 		}
 		n.AddResistor(Node(k), Reference, 1)
-		parent[find(k)] = find(int(Reference))
+		parent[parent.root(k)] = parent.root(int(Reference))
 	}
 }

@@ -24,15 +24,13 @@ const unboundedSurge = 0.2
 
 // surge follows the current of one diode through a start.
 type surge struct {
-	peak, at  float64
-	integral  float64 // largest of one conduction pulse, at most a period long, A^2 s
-	running   float64
-	since     float64
-	last      float64 // peak of the last period
-	reverse   float64 // largest reverse voltage, V
-	reverseAt float64
-	highest   solver.Extreme // of the voltage
-	lowest    solver.Extreme
+	peak, at float64
+	integral float64 // largest of one conduction pulse, at most a period long, A^2 s
+	running  float64
+	since    float64
+	last     float64        // peak of the last period
+	highest  solver.Extreme // of the voltage
+	lowest   solver.Extreme
 }
 
 // follow takes a period into account. A pulse is conduction above a thousandth of the largest current so far.

@@ -204,7 +204,7 @@ func (c *collector) elementStresses(id netlist.ElementID, e *netlist.Element, de
 		c.put(RMSCurrent, quantity.Ampere, i, rms)
 	case netlist.Inductor, netlist.VoltageSource, netlist.CurrentSource, netlist.VoltageControlled, netlist.CurrentControlled, netlist.Behavioural:
 		c.share(dev)
-		v, i = c.voltage(dev, 0), c.current(dev, 0)
+		i = c.current(dev, 0)
 		c.put(RMSCurrent, quantity.Ampere, i, rms)
 		c.put(MeanCurrent, quantity.Ampere, i, mean)
 		c.put(PeakCurrent, quantity.Ampere, i, magnitude)
