@@ -3,6 +3,7 @@
 package report
 
 import (
+	"strings"
 	"time"
 
 	"railproof/checks"
@@ -161,7 +162,7 @@ func newFile(in Input, now time.Time) File {
 	if r == nil || f.Unread() {
 		return f
 	}
-	f.Title, f.Circumstances, f.RailMap = r.Title, r.Circumstances, r.RailMap
+	f.Title, f.Circumstances, f.RailMap = ownTitle(r.Title), r.Circumstances, r.RailMap
 	f.Assumptions, f.NotRead, f.Stresses = r.Assumptions, r.NotRead, r.Stresses
 	f.PartsVersion, f.PolicyVersion = r.PartsVersion, r.PolicyVersion
 	if r.Circuit != nil {
@@ -213,4 +214,14 @@ func (r *Report) Unread() int {
 		}
 	}
 	return n
+}
+
+// ownTitle leaves out a title that is only the path of the author's own drawing, which exporters write there.
+func ownTitle(title string) string {
+	slashed := strings.ReplaceAll(title, `\`, "/")
+	drive := len(slashed) > 2 && slashed[1] == ':' && slashed[2] == '/'
+	if drive || strings.HasPrefix(slashed, "/") || strings.HasPrefix(slashed, "~/") {
+		return ""
+	}
+	return title
 }
