@@ -3,7 +3,7 @@
 Every law returns (current, slope). Voltages in V, currents in A, slopes in S.
 """
 
-from math import exp, log1p, sqrt
+from math import exp, log1p
 
 BOLTZMANN = 1.380649e-23  # J/K, exact (SI 2019)
 CHARGE = 1.602176634e-19  # C, exact (SI 2019)
