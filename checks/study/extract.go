@@ -191,7 +191,9 @@ func (c *collector) elementStresses(id netlist.ElementID, e *netlist.Element, de
 		c.put(MeanCurrent, quantity.Ampere, i, mean)
 		c.put(RMSCurrent, quantity.Ampere, i, rms)
 		c.put(PeakCurrent, quantity.Ampere, i, magnitude)
-		c.put(MinCurrent, quantity.Ampere, scaled(-1, i), smallest)
+		if !c.out.set.Nominal {
+			c.put(MinCurrent, quantity.Ampere, scaled(-1, i), smallest) // of a zener: its working current
+		}
 		c.put(MeanPower, quantity.Watt, power, mean)
 	case netlist.Capacitor:
 		c.put(MaxVoltage, quantity.Volt, v, largest)

@@ -54,10 +54,13 @@ func (c *corners) shifted(shift []float64) Setting {
 	return set
 }
 
-// readings extracts the values of the stresses of interest from an outcome.
-func (c *corners) readings(out *outcome) map[tableKey]Stress {
-	m := map[tableKey]Stress{}
-	c.plan.extract(out, func(s Stress) { m[tableKey{s.Element, s.Quantity}] = s })
+// readings indexes the stresses of a settled outcome.
+func readings(out *outcome) map[tableKey]*Stress {
+	m := make(map[tableKey]*Stress, len(out.read))
+	for k := range out.read {
+		s := &out.read[k]
+		m[tableKey{s.Element, s.Quantity}] = s
+	}
 	return m
 }
 
@@ -73,12 +76,12 @@ func (c *corners) solve(ctx context.Context, keys []tableKey, jobs int) {
 			settings = append(settings, c.shifted(shift))
 		}
 	}
-	nominal := c.readings(c.base)
-	moved := make([]map[tableKey]Stress, len(settings))
+	nominal := readings(c.base)
+	moved := make([]map[tableKey]*Stress, len(settings))
 	outcomes := make([]*outcome, len(settings))
 	inParallel(len(settings), jobs, func(k int) {
-		outcomes[k] = c.plan.solve(ctx, settings[k], c.warm)
-		moved[k] = c.readings(outcomes[k])
+		outcomes[k] = c.plan.settle(c.plan.solve(ctx, settings[k], c.warm))
+		moved[k] = readings(outcomes[k])
 	})
 	for _, out := range outcomes {
 		c.table.take(out)
@@ -101,7 +104,7 @@ func (c *corners) solve(ctx context.Context, keys []tableKey, jobs int) {
 				continue
 			}
 			low, high := moved[2*c.rank[k]][key], moved[2*c.rank[k]+1][key]
-			signs[k] = badEnd(&at, &low, &high)
+			signs[k] = badEnd(at, low, high)
 		}
 		perIsland[island] = addCorner(perIsland[island], signs)
 	}
@@ -120,7 +123,7 @@ func (c *corners) solve(ctx context.Context, keys []tableKey, jobs int) {
 		settings = append(settings, c.shifted(shift))
 	}
 	outcomes = make([]*outcome, len(settings))
-	inParallel(len(settings), jobs, func(k int) { outcomes[k] = c.plan.solve(ctx, settings[k], c.warm) })
+	inParallel(len(settings), jobs, func(k int) { outcomes[k] = c.plan.settle(c.plan.solve(ctx, settings[k], c.warm)) })
 	for _, out := range outcomes {
 		c.table.take(out)
 	}
@@ -130,6 +133,9 @@ func (c *corners) solve(ctx context.Context, keys []tableKey, jobs int) {
 func badEnd(at, low, high *Stress) float64 {
 	threshold := indifferent * math.Abs(at.Value)
 	gain := func(s *Stress) float64 {
+		if s == nil {
+			return 0
+		}
 		d := s.Value - at.Value
 		if smallerIsWorse[at.Quantity] {
 			d = -d

@@ -18,6 +18,7 @@ type outcome struct {
 	nodes   []place                   // node of the whole network -> where it was solved
 	uses    map[solver.Device][]place // device -> where it takes part
 	failed  error                     // no network could be built
+	read    []Stress                  // every stress, once the waveforms are given up; see settle
 	base    int                       // index among the base conditions
 }
 
@@ -93,6 +94,18 @@ func (p *Plan) solve(ctx context.Context, set Setting, warm states) *outcome {
 			is.err = out.failed
 		}
 		out.islands = append(out.islands, is)
+	}
+	return out
+}
+
+// settle reads every stress of the outcome and gives up the waveforms, which are large; the periodic states are
+// kept for neighbouring conditions.
+func (p *Plan) settle(out *outcome) *outcome {
+	p.extract(out, func(s Stress) { out.read = append(out.read, s) })
+	for i := range out.islands {
+		if s := out.islands[i].solution; s != nil {
+			out.islands[i].solution = &solver.Solution{States: s.States}
+		}
 	}
 	return out
 }

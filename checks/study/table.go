@@ -233,19 +233,19 @@ func (t *Table) unbound() {
 func (t *Table) take(out *outcome) {
 	t.Solved++
 	held := out.set.Held
-	t.Plan.extract(out, func(s Stress) {
+	for _, s := range out.read {
 		// Held regulators are a device to read missing headroom; every other stress comes from the real law.
 		if held != (s.Quantity == MinHeadroom) {
 			if held || !t.Plan.held() {
-				return
+				continue
 			}
 			if s.Quantity == MinHeadroom {
-				return
+				continue
 			}
 		}
 		s.base = out.base
 		t.merge(s)
-	})
+	}
 	t.note(out)
 }
 
@@ -374,7 +374,7 @@ func (p *Plan) baseSettings() []Setting {
 // on the number of jobs.
 func (p *Plan) solveAll(ctx context.Context, settings []Setting, jobs int) []*outcome {
 	outcomes := make([]*outcome, len(settings))
-	inParallel(len(settings), jobs, func(k int) { outcomes[k] = p.solve(ctx, settings[k], nil) })
+	inParallel(len(settings), jobs, func(k int) { outcomes[k] = p.settle(p.solve(ctx, settings[k], nil)) })
 	return outcomes
 }
 
