@@ -108,6 +108,9 @@ func (low *lowered) regulator(s *Supply, id netlist.ElementID, e *netlist.Elemen
 		if z, ok := s.Property(id, "ZKA"); ok && z.Value() > 0 {
 			gain = 1 / z.Value()
 		}
+		if set.Nominal && !s.isStated(id, "ZKA") {
+			gain = 1e3 // as good as ideal: 1 mV/A
+		}
 		return n.AddShuntReference(node(0), node(1), node(2), solver.ShuntReference{
 			Set: ref.Value() * plan.factor(set, id, "VOUT"), Gain: gain, Minimum: 0.5,
 		}), ""
