@@ -165,6 +165,15 @@ func (c *collector) block(lines []syntax.Line, section string) {
 	}
 }
 
+// secondWord is the word behind the first, up to a blank, bracket, comma or equals sign.
+func secondWord(text string) string {
+	rest := strings.TrimLeft(text[len(firstWord(text)):], " \t")
+	if k := strings.IndexAny(rest, " \t(=,"); k >= 0 {
+		return rest[:k]
+	}
+	return rest
+}
+
 // firstWord is the text up to the first blank or bracket.
 func firstWord(text string) string {
 	if k := strings.IndexAny(text, " \t"); k >= 0 {
@@ -212,14 +221,14 @@ func (c *collector) directive(key string, l *syntax.Line) {
 		c.include(key, l)
 		return
 	case "model":
-		f := strings.Fields(strings.NewReplacer("(", " ", "=", " ", ",", " ").Replace(l.Text[:min(len(l.Text), 400)]))
-		if len(f) < 2 {
+		written := secondWord(l.Text)
+		if written == "" {
 			c.fault(l.Start(), ".model without a name", ".model NAME TYPE(parameters)")
 			return
 		}
-		name := strings.ToLower(f[1])
+		name := strings.ToLower(written)
 		if _, double := c.current.models[name]; double {
-			c.remark(RemarkModel, l.Start(), "", "model "+f[1]+" is defined again; the first definition holds")
+			c.remark(RemarkModel, l.Start(), "", "model "+written+" is defined again; the first definition holds")
 			return
 		}
 		c.current.models[name] = l

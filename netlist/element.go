@@ -70,6 +70,11 @@ func (c *elementCard) assigned(key string) (*syntax.Value, bool) {
 // element reads one card of a level.
 func (x *expander) element(lv *level, line *syntax.Line) {
 	card, fault := syntax.ParseElement(line)
+	x.parsed(lv, line, card, fault)
+}
+
+// parsed reads one parsed card of a level.
+func (x *expander) parsed(lv *level, line *syntax.Line, card *syntax.ElementCard, fault *syntax.Diagnostic) {
 	if fault != nil {
 		x.faults = append(x.faults, *fault)
 		return

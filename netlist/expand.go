@@ -2,7 +2,9 @@ package netlist
 
 import (
 	"fmt"
+	"runtime"
 	"strings"
+	"sync"
 
 	"railproof/netlist/syntax"
 )
@@ -93,7 +95,8 @@ func (x *expander) node(lv *level, name string) NodeID {
 
 // expand adds the elements of a level.
 func (x *expander) expand(lv *level) {
-	for _, line := range lv.scope.elements {
+	cards := parseAhead(lv.scope.elements)
+	for k, line := range lv.scope.elements {
 		if len(x.faults) >= maxFaults || x.overflow {
 			return
 		}
@@ -102,8 +105,41 @@ func (x *expander) expand(lv *level) {
 			x.overflow = true
 			return
 		}
-		x.element(lv, line)
+		if cards == nil {
+			x.element(lv, line)
+		} else {
+			x.parsed(lv, line, cards[k].card, cards[k].fault)
+		}
 	}
+}
+
+// aheadFrom is how many cards a level must have to be parsed on all cores before it is expanded.
+const aheadFrom = 2000
+
+type aheadCard struct {
+	card  *syntax.ElementCard
+	fault *syntax.Diagnostic
+}
+
+// parseAhead parses many cards at once; nil if there are too few to be worth it.
+func parseAhead(lines []*syntax.Line) []aheadCard {
+	if len(lines) < aheadFrom {
+		return nil
+	}
+	cards := make([]aheadCard, len(lines))
+	workers := runtime.GOMAXPROCS(0)
+	var group sync.WaitGroup
+	for w := range workers {
+		group.Add(1)
+		go func() {
+			defer group.Done()
+			for k := len(lines) * w / workers; k < len(lines)*(w+1)/workers; k++ {
+				cards[k].card, cards[k].fault = syntax.ParseElement(lines[k])
+			}
+		}()
+	}
+	group.Wait()
+	return cards
 }
 
 // add puts an element into the circuit and returns its number.

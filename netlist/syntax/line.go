@@ -15,9 +15,10 @@ const (
 
 // Line is one logical line: a card with its continuation lines joined and its comments cut off.
 type Line struct {
-	File     string
-	Text     string
-	segments []segment
+	File  string
+	Text  string
+	first segment
+	more  []segment // of continuation lines
 }
 
 // segment says where in the file a part of a logical line stands.
@@ -28,13 +29,15 @@ type segment struct {
 
 // Position returns the place in the file of a byte offset into the text of the line.
 func (l *Line) Position(offset int) Position {
-	k := sort.Search(len(l.segments), func(k int) bool { return l.segments[k].offset > offset }) - 1
-	if k < 0 {
+	at := l.first
+	if k := sort.Search(len(l.more), func(k int) bool { return l.more[k].offset > offset }); k > 0 {
+		at = l.more[k-1]
+	}
+	if at.line == 0 {
 		return Position{File: l.File, Line: 1, Column: 1}
 	}
-	s := l.segments[k]
-	end := min(max(offset, s.offset), len(l.Text))
-	return Position{File: l.File, Line: s.line, Column: s.column + utf8.RuneCountInString(l.Text[s.offset:end])}
+	end := min(max(offset, at.offset), len(l.Text))
+	return Position{File: l.File, Line: at.line, Column: at.column + utf8.RuneCountInString(l.Text[at.offset:end])}
 }
 
 // Start is the place of the first character of the line.
@@ -63,7 +66,7 @@ func Lines(file, text string) (lines []Line, inline []Inline, faults []Diagnosti
 		switch {
 		case body == "":
 			if number == 1 {
-				lines = append(lines, Line{File: file, segments: []segment{{0, 1, 1}}})
+				lines = append(lines, Line{File: file, first: segment{0, 1, 1}})
 			}
 			continue
 		case strings.HasPrefix(body, "*:"):
@@ -74,7 +77,7 @@ func Lines(file, text string) (lines []Line, inline []Inline, faults []Diagnosti
 			fallthrough
 		case body[0] == '*', body[0] == ';', body[0] == '#', strings.HasPrefix(body, "//"):
 			if number == 1 {
-				lines = append(lines, Line{File: file, Text: "*" + strings.TrimLeft(body, "*;#/: "), segments: []segment{{0, 1, column}}})
+				lines = append(lines, Line{File: file, Text: "*" + strings.TrimLeft(body, "*;#/: "), first: segment{0, 1, column}})
 			}
 			continue
 		}
@@ -89,7 +92,7 @@ func Lines(file, text string) (lines []Line, inline []Inline, faults []Diagnosti
 				continue
 			}
 			last.Text += " "
-			last.segments = append(last.segments, segment{len(last.Text), number, column + 1})
+			last.more = append(last.more, segment{len(last.Text), number, column + 1})
 			last.Text += rest
 			continue
 		}
@@ -104,7 +107,7 @@ func Lines(file, text string) (lines []Line, inline []Inline, faults []Diagnosti
 		if cut == "" && number > 1 {
 			continue
 		}
-		lines = append(lines, Line{File: file, Text: cut, segments: []segment{{0, number, column}}})
+		lines = append(lines, Line{File: file, Text: cut, first: segment{0, number, column}})
 	}
 	return lines, inline, faults
 }
