@@ -10,12 +10,13 @@ import (
 
 // Baseline is an earlier JSON report, against which findings are new or unchanged.
 type Baseline struct {
+	name     string
 	document jsonReport
 }
 
 // ReadBaseline reads a JSON report as WriteJSON writes it.
 func ReadBaseline(name string, text []byte) (*Baseline, error) {
-	var b Baseline
+	b := Baseline{name: name}
 	if err := json.Unmarshal(text, &b.document); err != nil {
 		return nil, fmt.Errorf("%s: not a JSON report: %w", name, err)
 	}
@@ -23,6 +24,16 @@ func ReadBaseline(name string, text []byte) (*Baseline, error) {
 		return nil, fmt.Errorf("%s: schema %q; expected %q, as `railproof check --format json` writes", name, b.document.Schema, ReportSchema)
 	}
 	return &b, nil
+}
+
+// unread is the first file that was not checked, empty if all were.
+func (b *Baseline) unread() string {
+	for _, f := range b.document.Files {
+		if len(f.Diagnostics) > 0 {
+			return f.File
+		}
+	}
+	return ""
 }
 
 // file finds the file of an earlier report that a file is to be compared with: the one of the same path, or

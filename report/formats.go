@@ -23,6 +23,7 @@ var reportFormats = []format{
 	{"json", "schema " + ReportSchema, func(r *Report, w io.Writer, _ Style) error { return r.WriteJSON(w) }},
 	{"sarif", "SARIF 2.1.0", func(r *Report, w io.Writer, _ Style) error { return r.WriteSARIF(w) }},
 	{"junit", "JUnit XML", func(r *Report, w io.Writer, _ Style) error { return r.WriteJUnit(w) }},
+	{"html", "one self-contained page", func(r *Report, w io.Writer, _ Style) error { return r.WriteHTML(w) }},
 	{"markdown", "the ledger as Markdown", func(r *Report, w io.Writer, _ Style) error { return r.WriteMarkdown(w) }},
 	{"csv", "the stress table for the design file", func(r *Report, w io.Writer, _ Style) error { return r.WriteCSV(w) }},
 }

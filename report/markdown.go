@@ -6,7 +6,6 @@ import (
 	"strings"
 
 	"railproof/checks"
-	"railproof/netlist/quantity"
 )
 
 // WriteMarkdown writes the ledger as Markdown with GitHub-flavoured tables.
@@ -147,7 +146,7 @@ func (m *markdown) proven(f *File) {
 		if x.Rating != nil {
 			origin = originWords(x.Rating)
 		}
-		rows = append(rows, []string{x.Name(), x.Title, found, limit, quantity.Percent(x.Margin, 2), limitWords(&x.Finding), origin})
+		rows = append(rows, []string{x.Name(), x.Title, found, limit, marginWords(x.Margin), limitWords(&x.Finding), origin})
 	}
 	if len(rows) == 0 {
 		return

@@ -157,3 +157,14 @@ func capital(text string) string {
 	}
 	return strings.ToUpper(text[:1]) + text[1:]
 }
+
+// marginWords writes a margin as a percentage; far inside or outside the figure no longer matters.
+func marginWords(margin float64) string {
+	switch {
+	case margin > 9.99:
+		return "over 999 %"
+	case margin < -9.99:
+		return "under -999 %"
+	}
+	return quantity.Percent(margin, 2)
+}
