@@ -161,7 +161,7 @@ func waveform(kind string, n []float64) (Waveform, string) {
 		}
 		s := Sine{Offset: at(0), Amplitude: at(1), Frequency: at(2), Delay: at(3), Damping: at(4), PhaseDegrees: at(5)}
 		if s.Frequency <= 0 {
-			return nil, "a sine without frequency"
+			return nil, "" // its period would be that of an analysis that is not read
 		}
 		return s, ""
 	case "pulse":
