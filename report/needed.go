@@ -60,8 +60,11 @@ func (f *File) Needed() []Needed {
 	return out
 }
 
+// advisoryCheck studies a fault; what it asks for is no demand on the part where another check makes one.
+const advisoryCheck = "output-short"
+
 // demands lists the ratings that unproven findings wait for, one part a line. Where several checks ask for
-// one rating of a part, the severest demand stands.
+// one rating of a part, the severest demand stands, that of a fault study aside.
 func (f *File) demands() []Needed {
 	var single []Needed
 	for _, x := range f.Findings {
@@ -75,6 +78,13 @@ func (f *File) demands() []Needed {
 			continue
 		}
 		o := &single[k]
+		switch {
+		case x.Check == advisoryCheck:
+			continue
+		case o.Checks[0] == advisoryCheck:
+			*o = Needed{[]string{x.Element}, n.Symbol, n.Value, n.Unit, x.Floor, n.NextStandard, []string{x.Check}}
+			continue
+		}
 		if !slices.Contains(o.Checks, x.Check) {
 			o.Checks = append(o.Checks, x.Check)
 		}

@@ -7,6 +7,8 @@ import (
 	"unicode/utf8"
 
 	"github.com/fatih/color"
+
+	"railproof/checks"
 )
 
 // width is how many columns the ledger takes.
@@ -79,17 +81,24 @@ func (l *ledger) head(f *File) {
 }
 
 func (l *ledger) totals(t Totals) {
-	violated := "violated: 0"
-	var parts []string
+	violated, painted := "violated: 0", "violated: 0"
+	var plain, colourful []string
 	for _, s := range severities {
 		if n := t.of(s); n > 0 {
-			parts = append(parts, l.of("violated", s).Sprint(fmt.Sprintf("%d %s", n, s)))
+			text := fmt.Sprintf("%d %s", n, s)
+			plain, colourful = append(plain, text), append(colourful, l.of(checks.Violated, s).Sprint(text))
 		}
 	}
-	if len(parts) > 0 {
-		violated = "violated: " + strings.Join(parts, ", ")
+	if len(plain) > 0 {
+		violated, painted = "violated: "+strings.Join(plain, ", "), "violated: "+strings.Join(colourful, ", ")
 	}
-	l.line(fmt.Sprintf("%s   unproven: %d   proven: %d   conceded: %d", violated, t.Unproven, t.Proven, t.Conceded))
+	rest := fmt.Sprintf("unproven: %d   proven: %d   conceded: %d", t.Unproven, t.Proven, t.Conceded)
+	if columns(violated)+3+columns(rest) > width {
+		l.line(painted)
+		l.line(rest)
+		return
+	}
+	l.line(painted + "   " + rest)
 }
 
 // verdict is the last word on the whole run.

@@ -101,6 +101,9 @@ func foundLine(f *Finding) string {
 	if short {
 		last = beyond
 	}
+	if math.IsInf(f.Stress.Value, 0) {
+		return fmt.Sprintf("found %s   %s %s", found, allowed, limit)
+	}
 	return fmt.Sprintf("found %s   %s %s   %s %s", found, allowed, limit, last, difference(f.Stress.Value, f.Limit.Value, f.Stress.Unit))
 }
 

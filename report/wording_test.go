@@ -89,7 +89,7 @@ func TestNeeded(t *testing.T) {
 		return checks.Finding{Check: check, Element: element, Verdict: checks.Unproven, Needs: &checks.Needs{Symbol: "UR", Value: v, Unit: quantity.Volt, NextStandard: next}}
 	}
 	f := File{}
-	for _, x := range []checks.Finding{need("C1", "a", 20, 25), need("C1", "b", 30, 35), need("C2", "a", 30, 35), need("C2", "b", 20, 25), need("C3", "a", 30, 35)} {
+	for _, x := range []checks.Finding{need("C1", "a", 20, 25), need("C1", "b", 30, 35), need("C2", "a", 30, 35), need("C2", "b", 20, 25), need("C3", "a", 30, 35), need("C3", "output-short", 300, 350)} {
 		f.Findings = append(f.Findings, Finding{Finding: x})
 	}
 	list := f.Needed()
