@@ -119,6 +119,7 @@ func parse(name string, text []byte, sheet []DutyLine, library Library, opened *
 		c.Remarks = append(c.Remarks, Remark{Kind: RemarkAssumption, At: Position{File: name, Line: 1, Column: 1}, Text: "no element touches node 0: voltages between nodes hold, voltages to ground are arbitrary"})
 	}
 	d, faults := interpretDuty(c, x.inline, sheet)
+	c.inferPins()
 	if len(faults) > 0 {
 		return c, d, faults[:min(len(faults), maxFaults)]
 	}

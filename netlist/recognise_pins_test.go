@@ -1,0 +1,63 @@
+package netlist
+
+import (
+	"strings"
+	"testing"
+)
+
+// regulators is a library that knows two type names.
+type regulators struct{}
+
+func (regulators) Recognise(name string) (KnownPart, bool) {
+	pins := []Pin{PinIn, PinReference, PinOut}
+	switch name {
+	case "LM7812":
+		return KnownPart{Type: "7812", Role: RoleRegulator, Polarity: Positive, Pins: pins}, true
+	case "LM317":
+		return KnownPart{Type: "317", Role: RoleAdjustable, Polarity: Positive, Pins: pins}, true
+	}
+	return KnownPart{}, false
+}
+
+// Whatever the order on the card, the pins are those that ground and the rectifier show; only a changed order is
+// remarked as inferred.
+func TestPinsFromTopology(t *testing.T) {
+	supply := "title\nV1 a 0 SIN(0 24 50)\nD1 a raw DX\nC1 raw 0 1m\nRL out 0 100\n.model DX D\n"
+	adjustable := supply + "R1 out adj 240\nR2 adj 0 2k\n"
+	for card, inferred := range map[string]bool{
+		supply + "X1 raw 0 out LM7812":      false,
+		supply + "X1 raw out 0 LM7812":      true,
+		supply + "X1 0 raw out LM7812":      true,
+		supply + "X1 0 out raw LM7812":      true,
+		supply + "X1 out 0 raw LM7812":      true,
+		supply + "X1 out raw 0 LM7812":      true,
+		adjustable + "X1 raw adj out LM317": false,
+		adjustable + "X1 out adj raw LM317": true,
+		adjustable + "X1 adj raw out LM317": true,
+	} {
+		c, _, faults := Parse("t.cir", []byte(card+"\n"), nil, regulators{})
+		if len(faults) > 0 {
+			t.Fatal(faults)
+		}
+		id, _ := c.Find("X1")
+		var names []string
+		for _, n := range c.Elements[id].Nodes {
+			names = append(names, c.Nodes[n].Name)
+		}
+		want := "raw 0 out"
+		if strings.Contains(card, "LM317") {
+			want = "raw adj out"
+		}
+		last := card[strings.LastIndex(card, "X1"):]
+		if got := strings.Join(names, " "); got != want {
+			t.Errorf("%s: pins %s, want %s", last, got, want)
+		}
+		said := false
+		for _, r := range c.Remarks {
+			said = said || r.Element == "X1" && strings.Contains(r.Text, "inferred from the circuit")
+		}
+		if said != inferred {
+			t.Errorf("%s: remarked as inferred: %v, want %v", last, said, inferred)
+		}
+	}
+}
