@@ -43,6 +43,10 @@ func (p *Plan) Assumptions() []Assumption {
 	for k := range c.Elements {
 		e := &c.Elements[k]
 		switch d := e.Device.(type) {
+		case netlist.VoltageSource:
+			if level, ends := finalLevel(d.Wave); ends {
+				list = append(list, Assumption{e.Name, "does not repeat: its steady state is that of its final value, " + quantity.Format(level, quantity.Volt, 4), "its waveform"})
+			}
 		case netlist.Diode:
 			if d.Model != nil && !d.Model.Bare {
 				continue

@@ -12,8 +12,27 @@ import (
 // not affordable.
 const maxCycles = 400
 
-// commonPeriod returns the shortest time in which every periodic source repeats, 0 if all are constant.
-// Waveforms that do not repeat are an error that names the element.
+// finalLevel is the constant value at which a waveform that does not repeat ends: the last point of a piecewise
+// line, the end of an exponential or of a single pulse, the offset of a damped sine. ok is false for the others.
+func finalLevel(w netlist.Waveform) (level float64, ok bool) {
+	switch w := w.(type) {
+	case netlist.Piecewise:
+		if n := len(w.Levels); n > 0 {
+			return w.Levels[n-1], true
+		}
+		return 0, true
+	case netlist.Exponential:
+		return w.Low, true
+	case netlist.Pulse:
+		return w.Low, w.Period <= 0
+	case netlist.Sine:
+		return w.Offset, w.Damping > 0
+	}
+	return 0, false
+}
+
+// commonPeriod returns the shortest time in which every periodic source repeats, 0 if none does. Waveforms that do
+// not repeat count with the value at which they end; one that never settles is an error that names the element.
 func commonPeriod(c *netlist.Circuit) (float64, error) {
 	var frequencies []float64
 	for k := range c.Elements {
@@ -28,19 +47,18 @@ func commonPeriod(c *netlist.Circuit) (float64, error) {
 		switch w := w.(type) {
 		case netlist.Sine:
 			if w.Amplitude != 0 && w.Frequency > 0 {
-				if w.Damping != 0 {
-					return 0, fmt.Errorf("%s is a damped sine, which has no periodic steady state", e.Name)
+				if w.Damping > 0 {
+					continue // dies out
+				}
+				if w.Damping < 0 {
+					return 0, fmt.Errorf("%s is a sine that grows without end, which has no steady state", e.Name)
 				}
 				frequencies = append(frequencies, w.Frequency)
 			}
 		case netlist.Pulse:
 			if w.Period > 0 && w.Low != w.High {
 				frequencies = append(frequencies, 1/w.Period)
-			} else if w.Low != w.High {
-				return 0, fmt.Errorf("%s is a single pulse, which has no periodic steady state", e.Name)
 			}
-		case netlist.Exponential:
-			return 0, fmt.Errorf("%s is an EXP waveform, which has no periodic steady state", e.Name)
 		}
 	}
 	if len(frequencies) == 0 {
@@ -69,6 +87,9 @@ func commonPeriod(c *netlist.Circuit) (float64, error) {
 // wave turns a waveform into a solver source, scaled by a factor. In the periodic steady state a start delay
 // only shifts the phase; from a cold start it is honoured.
 func (p *Plan) wave(w netlist.Waveform, factor float64, set *Setting) solver.Wave {
+	if level, ends := finalLevel(w); ends && !set.Cold {
+		return solver.Level(level * factor)
+	}
 	switch w := w.(type) {
 	case netlist.Constant:
 		return solver.Level(w.Level * factor)
