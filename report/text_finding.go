@@ -169,13 +169,16 @@ func (l *ledger) listUnproven(f *File) {
 		}
 		l.hangPainted(l.unproven, "UNPROVEN", "  ", fmt.Sprintf("%d findings: %s", n, first.Reason))
 		l.say("needs", needWords(&first.Finding))
-		for k := range group {
-			g := &group[k]
-			mark := ""
-			if g.Headline {
-				mark = " (headline)"
+		for k := 0; k < len(group); {
+			title, names := group[k].Title, []string{}
+			if group[k].Headline {
+				title += " (headline)"
 			}
-			l.hang(entryIndent+"- ", entryIndent+"  ", g.Title+mark+": "+g.Name())
+			check := group[k].Check
+			for ; k < len(group) && group[k].Check == check; k++ {
+				names = append(names, group[k].Elements...)
+			}
+			l.hang(entryIndent+"- ", entryIndent+"  ", title+": "+strings.Join(foldNames(names), " "))
 		}
 	}
 }
