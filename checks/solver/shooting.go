@@ -13,9 +13,10 @@ import (
 var ErrUnsettled = errors.New("no periodic steady state was found")
 
 const (
-	plainPeriods = 2   // integrated before Newton's method starts
-	maxPeriods   = 600 // integrated in all before the search is given up
-	stuckPeriods = 12  // plain periods after a Newton step that made things worse
+	plainPeriods = 2       // integrated before Newton's method starts
+	maxPeriods   = 600     // integrated in all before the search is given up
+	stuckPeriods = 12      // plain periods after a Newton step that made things worse
+	maxSteps     = 600_000 // time steps on one grid before the search is given up
 	// relativeState and absoluteState (in units of stateScale) bound the last Newton step; what is then left
 	// is of the order of its square.
 	relativeState = 1e-6
@@ -39,7 +40,7 @@ func (s *search) settle(ctx context.Context, x []float64, plain int) error {
 	n := len(x)
 	residual := make([]float64, n)
 	best, worse := math.Inf(1), 0
-	for s.periods < maxPeriods {
+	for s.periods < maxPeriods && s.periods*s.steps < maxSteps {
 		track := plain <= 0
 		copy(s.m.x, x)
 		if err := s.m.period(ctx, 0, s.steps, track); err != nil {

@@ -79,22 +79,26 @@ func (p *Plan) solve(ctx context.Context, set Setting, warm states) *outcome {
 				out.nodes[n] = place{i, local}
 			}
 		}
-		if out.failed == nil {
-			effort := solver.Options{Steps: workingSteps, MaxSteps: workingMaxSteps}
-			if set.Nominal {
-				effort = solver.Options{}
-			}
-			effort.Start = warm[i]
-			is.solution, is.err = solver.SteadyState(ctx, part.Network, effort)
-			if is.err != nil && !errors.Is(is.err, solver.ErrInaccurate) && warm[i] != nil && ctx.Err() == nil {
-				effort.Start = nil
-				is.solution, is.err = solver.SteadyState(ctx, part.Network, effort)
-			}
-		} else {
-			is.err = out.failed
-		}
+		is.err = out.failed
 		out.islands = append(out.islands, is)
 	}
+	if out.failed != nil {
+		return out
+	}
+	// The conditions of a check fill the cores by themselves; a netlist exactly as written has only its islands.
+	jobs, effort := 1, solver.Options{Steps: workingSteps, MaxSteps: workingMaxSteps}
+	if set.Nominal {
+		jobs, effort = 0, solver.Options{}
+	}
+	inParallel(len(parts), jobs, func(i int) {
+		is, own := &out.islands[i], effort
+		own.Start = warm[i]
+		is.solution, is.err = solver.SteadyState(ctx, parts[i].Network, own)
+		if is.err != nil && !errors.Is(is.err, solver.ErrInaccurate) && warm[i] != nil && ctx.Err() == nil {
+			own.Start = nil
+			is.solution, is.err = solver.SteadyState(ctx, parts[i].Network, own)
+		}
+	})
 	return out
 }
 
