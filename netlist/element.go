@@ -75,6 +75,9 @@ func (x *expander) element(lv *level, line *syntax.Line) {
 
 // parsed reads one parsed card of a level.
 func (x *expander) parsed(lv *level, line *syntax.Line, card *syntax.ElementCard, fault *syntax.Diagnostic) {
+	if upper(line.Text[0]) == 'B' && x.formulaLine(lv, line) {
+		return
+	}
 	if fault != nil {
 		x.faults = append(x.faults, *fault)
 		return

@@ -304,6 +304,32 @@ func (x *expander) behaviouralCard(lv *level, c *elementCard) {
 	x.add(lv, c, nodes, Unknown{Letter: 'B', Why: "it has no V= or I= formula"}, "")
 }
 
+// formulaLine reads `B name n n V=formula` where the formula stands without braces: it is then everything behind
+// the equals sign. It reports whether the line is of that form.
+func (x *expander) formulaLine(lv *level, line *syntax.Line) bool {
+	at := strings.IndexByte(line.Text, '=')
+	if at < 0 {
+		return false
+	}
+	left := strings.Fields(line.Text[:at])
+	body := strings.TrimLeft(line.Text[at+1:], " \t")
+	if len(left) != 4 || body == "" || body[0] == '{' || body[0] == '\'' || strings.ContainsAny(line.Text[:at], "(){}'\",") {
+		return false
+	}
+	out := OutVoltage
+	switch strings.ToLower(left[3]) {
+	case "v":
+	case "i":
+		out = OutCurrent
+	default:
+		return false
+	}
+	c := &elementCard{line: line, letter: 'B', name: left[0], shown: left[0]}
+	nodes := []NodeID{x.node(lv, left[1]), x.node(lv, left[2])}
+	x.formulaSource(lv, c, nodes, out, body, len(line.Text)-len(body))
+	return true
+}
+
 // formulaSource compiles a formula into a behavioural source. A formula that cannot be read leaves the
 // element unknown: macromodels carry functions of their own.
 func (x *expander) formulaSource(lv *level, c *elementCard, nodes []NodeID, out Quantity, text string, offset int) {

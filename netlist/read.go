@@ -109,7 +109,9 @@ func parse(name string, text []byte, sheet []DutyLine, library Library, opened *
 	x.finish()
 	c := x.circuit
 	c.Title, c.Temperature, c.Remarks = x.title, x.temperature, x.remarks
-	if len(x.faults) == 0 && len(c.Elements) == 0 {
+	if len(x.faults) == 0 && len(c.Elements) == 0 && len(x.top.subckts)+len(x.top.models) > 0 {
+		c.Remarks = append(c.Remarks, Remark{Kind: RemarkModel, At: Position{File: name, Line: 1, Column: 1}, Text: "the file holds definitions only: there is no circuit to check"})
+	} else if len(x.faults) == 0 && len(c.Elements) == 0 {
 		x.fault(Position{File: name, Line: 1, Column: 1}, "the file holds no element", "element cards such as `R1 in out 1k`")
 	}
 	if len(x.faults) > 0 {
