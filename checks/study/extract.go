@@ -38,7 +38,7 @@ func (c *collector) put(q Quantity, unit quantity.Unit, s signal, pick func(solv
 	case c.island.err != nil && (!errors.Is(c.island.err, solver.ErrInaccurate) || c.island.solution == nil):
 		st.Unproven = c.island.err.Error()
 	}
-	if c.island.solution != nil {
+	if c.island.solution != nil && c.island.blocked == "" {
 		r := readStat(c.island.solution, s, pick)
 		st.Value, st.Error, st.Phase = r.value, r.err, r.at
 		if c.island.err != nil && st.Unproven == "" && st.Error > loose*math.Abs(st.Value)+looseFloor {
