@@ -1,7 +1,6 @@
 package report
 
 import (
-	"slices"
 	"strings"
 
 	"railproof/checks"
@@ -16,13 +15,15 @@ func DraftLines(r *checks.Result) []netlist.DraftLine {
 		f.Findings = append(f.Findings, newFinding(x, r.Circuit))
 	}
 	var lines []netlist.DraftLine
+	type asked struct {
+		element netlist.ElementID
+		symbol  netlist.Symbol
+	}
+	seen := map[asked]bool{}
 	add := func(element string, symbol netlist.Symbol, hint, purpose string) {
 		id, ok := r.Circuit.Find(element)
-		if !ok {
-			return
-		}
-		k := slices.IndexFunc(lines, func(l netlist.DraftLine) bool { return l.Element == id && l.Symbol == symbol })
-		if k < 0 {
+		if key := (asked{id, symbol}); ok && !seen[key] {
+			seen[key] = true
 			lines = append(lines, netlist.DraftLine{Element: id, Symbol: symbol, Hint: hint, For: purpose})
 		}
 	}

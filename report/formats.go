@@ -7,8 +7,11 @@ import (
 	"strings"
 )
 
-// Style is how a stream may be written to.
-type Style struct{ Colour bool }
+// Style is how a report for people is to look.
+type Style struct {
+	Colour bool
+	Proven bool // the ledger lists what is proven too
+}
 
 // format is one way to write a report.
 type format struct {
@@ -19,7 +22,7 @@ type format struct {
 
 // reportFormats is every format of `check`, the default first. A new one is one file with its writer and one line here.
 var reportFormats = []format{
-	{"text", "the ledger for people", func(r *Report, w io.Writer, s Style) error { return r.WriteText(w, s.Colour) }},
+	{"text", "the ledger for people", func(r *Report, w io.Writer, s Style) error { return r.WriteText(w, s) }},
 	{"json", "schema " + ReportSchema, func(r *Report, w io.Writer, _ Style) error { return r.WriteJSON(w) }},
 	{"sarif", "SARIF 2.1.0", func(r *Report, w io.Writer, _ Style) error { return r.WriteSARIF(w) }},
 	{"junit", "JUnit XML", func(r *Report, w io.Writer, _ Style) error { return r.WriteJUnit(w) }},

@@ -1,6 +1,7 @@
 package report
 
 import (
+	"fmt"
 	"slices"
 	"strings"
 
@@ -43,12 +44,12 @@ func (n Needed) NextStep() string {
 // Needed gathers the ratings that unproven findings of a file wait for. Parts with the same demand share a line.
 func (f *File) Needed() []Needed {
 	var out []Needed
+	index := map[string]int{}
 	for _, s := range f.demands() {
-		k := slices.IndexFunc(out, func(o Needed) bool {
-			return o.Symbol == s.Symbol && o.Floor == s.Floor && rounded(o.Value) == rounded(s.Value) &&
-				o.Next == s.Next && slices.Equal(o.Checks, s.Checks)
-		})
-		if k < 0 {
+		key := fmt.Sprint(s.Symbol, s.Floor, rounded(s.Value), s.Next, s.Checks)
+		k, ok := index[key]
+		if !ok {
+			index[key] = len(out)
 			out = append(out, s)
 			continue
 		}
@@ -67,14 +68,18 @@ const advisoryCheck = "output-short"
 // one rating of a part, the severest demand stands, that of a fault study aside.
 func (f *File) demands() []Needed {
 	var single []Needed
+	index := map[string]int{}
 	for _, x := range f.Findings {
 		n := x.Needs
 		if x.Verdict != checks.Unproven || n == nil || n.Symbol == "" {
 			continue
 		}
-		k := slices.IndexFunc(single, func(o Needed) bool { return o.Elements[0] == x.Element && o.Symbol == n.Symbol && o.Floor == x.Floor })
-		if k < 0 {
-			single = append(single, Needed{[]string{x.Element}, n.Symbol, n.Value, n.Unit, x.Floor, n.NextStandard, []string{x.Check}})
+		demand := Needed{[]string{x.Element}, n.Symbol, n.Value, n.Unit, x.Floor, n.NextStandard, []string{x.Check}}
+		key := fmt.Sprint(x.Element, "\x00", n.Symbol, x.Floor)
+		k, ok := index[key]
+		if !ok {
+			index[key] = len(single)
+			single = append(single, demand)
 			continue
 		}
 		o := &single[k]
@@ -82,7 +87,7 @@ func (f *File) demands() []Needed {
 		case x.Check == advisoryCheck:
 			continue
 		case o.Checks[0] == advisoryCheck:
-			*o = Needed{[]string{x.Element}, n.Symbol, n.Value, n.Unit, x.Floor, n.NextStandard, []string{x.Check}}
+			*o = demand
 			continue
 		}
 		if !slices.Contains(o.Checks, x.Check) {
@@ -98,11 +103,14 @@ func (f *File) demands() []Needed {
 // Statements lists the duty statements that unproven findings wait for, each once, in the order of the findings.
 func (f *File) Statements() []string {
 	var out []string
+	seen := map[string]bool{"": true}
 	for _, x := range fold(f.Findings) {
-		if x.Verdict == checks.Unproven && x.Needs != nil && x.Needs.Statement != "" {
-			if s := x.statement(); !slices.Contains(out, s) {
-				out = append(out, s)
-			}
+		if x.Verdict != checks.Unproven {
+			continue
+		}
+		if s := x.statement(); !seen[s] {
+			seen[s] = true
+			out = append(out, s)
 		}
 	}
 	return out

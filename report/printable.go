@@ -6,10 +6,10 @@ import (
 	"unicode/utf8"
 )
 
-// printable makes text from an input safe for a terminal and for line-bound formats: control characters,
+// Printable makes text from an input safe for a terminal and for line-bound formats: control characters,
 // direction overrides and invalid bytes become U+FFFD, so that a name can neither move the cursor nor
 // break a line.
-func printable(text string) string {
+func Printable(text string) string {
 	return strings.Map(func(r rune) rune {
 		if r == utf8.RuneError || unicode.IsControl(r) || unicode.Is(unicode.Bidi_Control, r) || r == '\u2028' || r == '\u2029' {
 			return utf8.RuneError
@@ -17,3 +17,5 @@ func printable(text string) string {
 		return r
 	}, text)
 }
+
+func printable(text string) string { return Printable(text) }

@@ -21,8 +21,8 @@ type ledger struct {
 }
 
 // WriteText writes the report as a ledger for people.
-func (r *Report) WriteText(w io.Writer, colour bool) error {
-	l := &ledger{palette: newPalette(colour)}
+func (r *Report) WriteText(w io.Writer, style Style) error {
+	l := &ledger{palette: newPalette(style.Colour)}
 	for k := range r.Files {
 		f := &r.Files[k]
 		if f.Unread() {
@@ -33,7 +33,7 @@ func (r *Report) WriteText(w io.Writer, colour bool) error {
 			l.line(l.faint.Sprint(strings.Repeat("=", width)))
 			l.line("")
 		}
-		l.file(f)
+		l.file(f, style.Proven)
 	}
 	if l.out.Len() > 0 {
 		l.line("")
@@ -45,14 +45,18 @@ func (r *Report) WriteText(w io.Writer, colour bool) error {
 	return err
 }
 
-func (l *ledger) file(f *File) {
+func (l *ledger) file(f *File, proven bool) {
 	l.head(f)
 	l.line("")
 	l.totals(f.Totals)
 	l.listViolations(f)
 	l.listUnproven(f)
 	l.listConceded(f)
-	l.listNearLimit(f)
+	if proven {
+		l.listProven(f)
+	} else {
+		l.listNearLimit(f)
+	}
 	l.listNeeded(f)
 	l.listAssumptions(f)
 	l.listNotRead(f)
@@ -223,27 +227,25 @@ func (l *ledger) fill(words []string, gap string) []string {
 // inside a line are kept.
 func wrap(text string, limit int) []string {
 	var lines []string
-	for columns(text) > limit {
+	for {
 		at, column := -1, 0
 		for k, r := range text {
-			if column > limit {
-				break
-			}
 			if r == ' ' && k > 0 {
+				if column > limit && at > 0 {
+					break
+				}
 				at = k
 			}
-			column++
-		}
-		if at <= 0 {
-			at = strings.IndexByte(text, ' ')
-			if at < 0 {
+			if column++; column > limit && at > 0 {
 				break
 			}
+		}
+		if column <= limit || at <= 0 {
+			return append(lines, text)
 		}
 		lines = append(lines, strings.TrimRight(text[:at], " "))
 		text = strings.TrimLeft(text[at:], " ")
 	}
-	return append(lines, text)
 }
 
 // columns is how many columns a text takes, one a character.

@@ -3,6 +3,8 @@ package report
 import (
 	"fmt"
 	"strings"
+
+	"railproof/checks"
 )
 
 func (l *ledger) listNeeded(f *File) {
@@ -20,6 +22,33 @@ func (l *ledger) listNeeded(f *File) {
 		for _, s := range statements {
 			l.hang("  ", "    ", s)
 		}
+	}
+}
+
+// listProven lists every proven finding with its margin.
+func (l *ledger) listProven(f *File) {
+	rows := [][]string{{"part", "stress", "limit", "margin", "check"}}
+	for _, x := range fold(f.Findings) {
+		if x.Verdict != checks.Proven {
+			continue
+		}
+		found, limit, margin := "", "", ""
+		switch {
+		case x.Stress != nil && x.Limit != nil:
+			found, limit = pair(x.Stress.Value, x.Limit.Value, x.Stress.Unit)
+			margin = marginWords(x.Margin)
+		case x.Stress != nil:
+			found = figure(x.Stress.Value, x.Stress.Unit)
+		}
+		title := x.Title
+		if x.NearLimit() {
+			title += " (near limit)"
+		}
+		rows = append(rows, []string{printable(x.Name()), found, limit, margin, title})
+	}
+	if len(rows) > 1 {
+		l.section("Proven")
+		l.table(rows)
 	}
 }
 

@@ -5,6 +5,8 @@ import (
 	"strings"
 	"testing"
 
+	"pgregory.net/rapid"
+
 	"railproof/checks"
 	"railproof/netlist/quantity"
 )
@@ -101,5 +103,29 @@ func TestNeeded(t *testing.T) {
 func TestPrintable(t *testing.T) {
 	if got := printable("a\x1b[31mb\u202ec\x00\nd\xff"); strings.ContainsAny(got, "\x1b\u202e\x00\n") || !contains(got, "a") {
 		t.Errorf("%q", got)
+	}
+}
+
+// Wrapped lines keep to the limit unless one word is longer, and no word is lost.
+func TestWrapKeepsWords(t *testing.T) {
+	rapid.Check(t, func(rt *rapid.T) {
+		words := rapid.SliceOfN(rapid.StringMatching(`[a-zµ]{1,12}`), 1, 40).Draw(rt, "words")
+		limit := rapid.IntRange(4, 30).Draw(rt, "limit")
+		lines := wrap(strings.Join(words, " "), limit)
+		for _, line := range lines {
+			if columns(line) > limit && strings.Contains(line, " ") {
+				rt.Fatalf("%q is wider than %d", line, limit)
+			}
+		}
+		if got := strings.Join(lines, " "); got != strings.Join(words, " ") {
+			rt.Fatalf("%q became %q", words, lines)
+		}
+	})
+}
+
+// A title of a megabyte is laid out at once: 16 words of five columns a line.
+func TestWrapIsLinear(t *testing.T) {
+	if n := len(wrap(strings.Repeat("word ", 1<<18), 80)); n != (1<<18)/16 {
+		t.Errorf("%d lines", n)
 	}
 }

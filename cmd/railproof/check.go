@@ -25,6 +25,7 @@ type checkOptions struct {
 	now           string
 	baseline      string
 	newOnly       bool
+	proven        bool
 }
 
 func newCheck(s *streams) *cobra.Command {
@@ -46,6 +47,7 @@ When an input cannot be read, its faults stand on the error stream, no FILE is w
 	c.Flags().StringVar(&o.now, "now", "", "the `DATE` on which concessions are judged, as 2006-01-02 (default: today)")
 	c.Flags().StringVar(&o.baseline, "baseline", "", "an earlier JSON report `FILE`: findings it has are marked unchanged, others new")
 	c.Flags().BoolVar(&o.newOnly, "new-only", false, "with --baseline: the gate looks at new findings only")
+	c.Flags().BoolVar(&o.proven, "proven", false, "let the text ledger list what is proven too")
 	completeWords(c, "gate", "critical", "major", "minor", "never")
 	return c
 }
@@ -75,7 +77,11 @@ func runCheck(ctx context.Context, s *streams, o *checkOptions, args []string) e
 	if r.Exit == report.ExitBadInput {
 		targets = standardOnly(s, targets, r)
 	}
-	if err := deliver(s, targets, func(w io.Writer, format string, style report.Style) error { return r.Write(w, format, style) }); err != nil {
+	err = deliver(s, targets, func(w io.Writer, format string, style report.Style) error {
+		style.Proven = o.proven
+		return r.Write(w, format, style)
+	})
+	if err != nil {
 		return err
 	}
 	if r.Exit != report.ExitPassed {
@@ -166,11 +172,11 @@ func complain(s *streams, inputs []report.Input) {
 	said := map[string]bool{}
 	for _, in := range inputs {
 		for _, d := range in.Diagnostics {
-			fmt.Fprintln(s.err, d.Error())
+			s.say(d.Error())
 		}
 		if in.Failure != nil && !said[in.Failure.Error()] {
 			said[in.Failure.Error()] = true
-			fmt.Fprintln(s.err, "railproof: "+in.Failure.Error())
+			s.say("railproof: " + in.Failure.Error())
 		}
 	}
 }
@@ -182,7 +188,7 @@ func standardOnly(s *streams, targets []target, r *report.Report) []target {
 	for _, t := range targets {
 		switch {
 		case t.file != "":
-			fmt.Fprintf(s.err, "railproof: %s is not written\n", t.file)
+			s.say("railproof: " + t.file + " is not written")
 		case t.format == "text" && r.Unread() == len(r.Files):
 		default:
 			kept = append(kept, t)

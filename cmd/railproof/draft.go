@@ -2,7 +2,6 @@ package main
 
 import (
 	"context"
-	"fmt"
 	"time"
 
 	"github.com/spf13/cobra"
@@ -40,7 +39,7 @@ func runDraft(ctx context.Context, s *streams, o *draftOptions, file string) err
 	}
 	if len(diagnostics) > 0 {
 		for _, d := range diagnostics {
-			fmt.Fprintln(s.err, d.Error())
+			s.say(d.Error())
 		}
 		return exitStatus(report.ExitBadInput)
 	}

@@ -31,7 +31,7 @@ func run(ctx context.Context, args []string, s streams) int {
 	case errors.As(err, &status):
 		return int(status)
 	}
-	fmt.Fprintln(s.err, "railproof: "+err.Error())
+	s.say("railproof: " + err.Error())
 	return int(report.ExitBadInput)
 }
 

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"io"
 	"os"
+	"strings"
 
 	"github.com/mattn/go-isatty"
 
@@ -54,3 +55,10 @@ func (s *streams) paint(terminal bool) bool {
 }
 
 func (s *streams) outStyle() report.Style { return report.Style{Colour: s.paint(s.outTerm)} }
+
+// say writes a message to the error stream, line by line, made safe for a terminal: it may quote an input.
+func (s *streams) say(message string) {
+	for _, line := range strings.Split(message, "\n") {
+		fmt.Fprintln(s.err, report.Printable(line))
+	}
+}

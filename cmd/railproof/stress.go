@@ -2,7 +2,6 @@ package main
 
 import (
 	"context"
-	"fmt"
 	"io"
 
 	"github.com/spf13/cobra"
@@ -49,7 +48,7 @@ func runStress(ctx context.Context, s *streams, o *stressOptions, file string) e
 	}
 	if len(diagnostics) > 0 {
 		for _, d := range diagnostics {
-			fmt.Fprintln(s.err, d.Error())
+			s.say(d.Error())
 		}
 		return exitStatus(report.ExitBadInput)
 	}
