@@ -36,6 +36,14 @@ func sortCard(line *syntax.Line, card *syntax.ElementCard) *elementCard {
 				walk(i.Group.Items)
 			case i.Assign != nil && i.Assign.Value == nil:
 				c.words = append(c.words, i.Assign.Key)
+			case i.Assign != nil && i.Assign.Key.IsExpression():
+				// TABLE {formula} = (x,y) ...: the points are words too.
+				c.words = append(c.words, i.Assign.Key)
+				if i.Assign.Value.Group != nil {
+					walk(i.Assign.Value.Group.Items)
+				} else {
+					c.words = append(c.words, i.Assign.Value.Atom)
+				}
 			case i.Assign != nil:
 				c.assigns = append(c.assigns, assignment{strings.ToLower(i.Assign.Key.Text()), i.Assign.Value, line})
 				if i.Assign.Value.Atom != nil {

@@ -199,6 +199,9 @@ func (x *expander) finish() {
 		}
 		e.Device = CurrentControlled{Output: out, Control: control, Gain: gain}
 	}
+	for _, compile := range x.formulas {
+		compile()
+	}
 }
 
 func (x *expander) coupling(lv *level, c *elementCard, find func(*syntax.Atom) (ElementID, bool)) Device {

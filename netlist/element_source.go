@@ -3,6 +3,7 @@ package netlist
 import (
 	"fmt"
 	"math"
+	"strconv"
 	"strings"
 
 	"railproof/netlist/syntax"
@@ -213,7 +214,7 @@ func (x *expander) voltageControlled(lv *level, c *elementCard) {
 	}
 	for _, key := range []string{"value", "vol", "cur"} {
 		if v, ok := c.assigned(key); ok && v.Atom != nil {
-			x.formulaSource(lv, c, nodes, out, v.Atom.Text(), v.Atom.Pos.Offset)
+			x.formulaSource(lv, c, nodes, out, v.Atom.Text())
 			return
 		}
 	}
@@ -222,18 +223,21 @@ func (x *expander) voltageControlled(lv *level, c *elementCard) {
 		switch strings.ToLower(rest[0].Text()) {
 		case "value", "vol", "cur":
 			if len(rest) > 1 {
-				x.formulaSource(lv, c, nodes, out, rest[1].Text(), rest[1].Pos.Offset)
+				x.formulaSource(lv, c, nodes, out, rest[1].Text())
 				return
 			}
 		case "poly":
 			x.polynomial(lv, c, nodes, out, rest[1:])
 			return
-		case "table", "laplace", "freq", "chebyshev":
+		case "table":
+			x.table(lv, c, nodes, out, rest[1:])
+			return
+		case "laplace", "freq", "chebyshev":
 			x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "a source of kind " + strings.ToLower(rest[0].Text()) + " is not modelled"}, "")
 			return
 		}
 		if rest[0].IsExpression() {
-			x.formulaSource(lv, c, nodes, out, rest[0].Text(), rest[0].Pos.Offset)
+			x.formulaSource(lv, c, nodes, out, rest[0].Text())
 			return
 		}
 	}
@@ -250,34 +254,77 @@ func (x *expander) voltageControlled(lv *level, c *elementCard) {
 	x.add(lv, c, nodes, VoltageControlled{Output: out, Gain: gain}, "")
 }
 
-// polynomial reads POLY(1) n+ n- p0 p1 ...; more variables are not modelled.
+// polynomial reads POLY(n) n+ n- ... p0 p1 ...: constant, linear and quadratic terms of n voltages, and for one
+// voltage every power. Higher terms of several voltages are not modelled.
 func (x *expander) polynomial(lv *level, c *elementCard, nodes []NodeID, out Quantity, rest []*syntax.Atom) {
-	if len(rest) < 4 || rest[0].Text() != "1" {
-		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "a polynomial of several voltages is not modelled"}, "")
+	unknown := func(why string) {
+		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: why}, "")
+	}
+	if len(rest) == 0 {
+		unknown("a polynomial without its number of voltages")
 		return
 	}
-	var p []float64
-	for _, w := range rest[3:] {
+	n, ok := spice(rest[0].Text())
+	count := int(n)
+	if !ok || n != float64(count) || count < 1 || count > 20 || len(rest) < 2+2*count {
+		unknown("a polynomial whose voltages or coefficients are missing")
+		return
+	}
+	terms := make([]string, 0, count)
+	for k := range count {
+		terms = append(terms, "V("+rest[1+2*k].Text()+","+rest[2+2*k].Text()+")")
+	}
+	coefficients := rest[1+2*count:]
+	products := []string{"1"}
+	products = append(products, terms...)
+	for i := range terms {
+		for j := i; j < count; j++ {
+			products = append(products, terms[i]+"*"+terms[j])
+		}
+	}
+	for power := 3; count == 1 && power < len(coefficients); power++ {
+		products = append(products, terms[0]+"^"+strconv.Itoa(power))
+	}
+	if len(coefficients) > len(products) {
+		unknown("cubic terms of several voltages are not modelled")
+		return
+	}
+	if len(coefficients) == 1 && count == 1 { // one coefficient is the linear one
+		products = products[1:]
+	}
+	var parts []string
+	for k, w := range coefficients {
 		v, err := lv.env.atom(w)
 		if err != nil {
 			x.fault(c.line.Position(w.Pos.Offset), err.Error(), "a coefficient")
 			return
 		}
-		p = append(p, v)
-	}
-	if len(p) == 1 { // one coefficient is the linear one
-		p = []float64{0, p[0]}
-	}
-	probe := Probe{Plus: x.node(lv, rest[1].Text()), Minus: x.node(lv, rest[2].Text())}
-	f := func(v []float64, _ float64, wrt int) (float64, float64) {
-		y, dy := 0.0, 0.0
-		for k := len(p) - 1; k >= 0; k-- {
-			dy = dy*v[0] + y
-			y = y*v[0] + p[k]
+		if v != 0 {
+			parts = append(parts, "("+strconv.FormatFloat(v, 'e', -1, 64)+")*"+products[k])
 		}
-		return y, dy * truth(wrt == 0)
 	}
-	x.add(lv, c, nodes, Behavioural{Output: out, Expression: &formulaExpression{f, []Probe{probe}, "polynomial"}}, "")
+	if len(parts) == 0 {
+		parts = []string{"0"}
+	}
+	x.formulaSource(lv, c, nodes, out, strings.Join(parts, " + "))
+}
+
+// table reads TABLE {formula} = (x,y) (x,y) ...: linear between the points, flat beyond them.
+func (x *expander) table(lv *level, c *elementCard, nodes []NodeID, out Quantity, rest []*syntax.Atom) {
+	if len(rest) < 3 || len(rest)%2 == 0 {
+		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "a table whose points are missing"}, "")
+		return
+	}
+	list := []string{rest[0].Text()}
+	for _, w := range rest[1:] {
+		v, err := lv.env.atom(w)
+		if err != nil {
+			x.fault(c.line.Position(w.Pos.Offset), err.Error(), "a number of the table")
+			return
+		}
+		list = append(list, strconv.FormatFloat(v, 'e', -1, 64))
+	}
+	x.formulaSource(lv, c, nodes, out, "table("+strings.Join(list, ", ")+")")
 }
 
 func (x *expander) behaviouralCard(lv *level, c *elementCard) {
@@ -292,13 +339,12 @@ func (x *expander) behaviouralCard(lv *level, c *elementCard) {
 		}
 		// The formula may stand without braces: it is everything behind the equals sign.
 		text := c.line.Text
-		offset := 0
 		if a.value.Atom != nil && a.value.Atom.IsExpression() {
-			text, offset = a.value.Atom.Text(), a.value.Atom.Pos.Offset
+			text = a.value.Atom.Text()
 		} else if k := strings.IndexByte(text, '='); k >= 0 {
-			text, offset = strings.TrimSpace(text[k+1:]), k+1
+			text = strings.TrimSpace(text[k+1:])
 		}
-		x.formulaSource(lv, c, nodes, out, text, offset)
+		x.formulaSource(lv, c, nodes, out, text)
 		return
 	}
 	x.add(lv, c, nodes, Unknown{Letter: 'B', Why: "it has no V= or I= formula"}, "")
@@ -326,27 +372,31 @@ func (x *expander) formulaLine(lv *level, line *syntax.Line) bool {
 	}
 	c := &elementCard{line: line, letter: 'B', name: left[0], shown: left[0]}
 	nodes := []NodeID{x.node(lv, left[1]), x.node(lv, left[2])}
-	x.formulaSource(lv, c, nodes, out, body, len(line.Text)-len(body))
+	x.formulaSource(lv, c, nodes, out, body)
 	return true
 }
 
-// formulaSource compiles a formula into a behavioural source. A formula that cannot be read leaves the
-// element unknown: macromodels carry functions of their own.
-func (x *expander) formulaSource(lv *level, c *elementCard, nodes []NodeID, out Quantity, text string, offset int) {
+// formulaSource adds a behavioural source whose formula is compiled when every element it may refer to is known.
+func (x *expander) formulaSource(lv *level, c *elementCard, nodes []NodeID, out Quantity, text string) {
+	id := x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "its formula is not read"}, "")
+	x.formulas = append(x.formulas, func() { x.circuit.Elements[id].Device = x.behavioural(lv, c, out, text) })
+}
+
+// behavioural compiles a formula into a behavioural source. A formula that cannot be read leaves the element
+// unknown: macromodels carry functions of their own.
+func (x *expander) behavioural(lv *level, c *elementCard, out Quantity, text string) Device {
 	f, err := syntax.ParseFormula(text)
 	if err != nil {
-		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: err.Error()}, "")
-		return
+		return Unknown{Letter: c.letter, Why: err.Error()}
 	}
 	e := &formulaExpression{text: f.String()}
 	r := &resolver{value: lv.env.value, function: lv.env.function}
-	var currents []int
 	r.probe = func(probe string) (int, error) {
 		inside := probe[2 : len(probe)-1]
 		if upper(probe[0]) == 'I' {
 			id, ok := x.byName[strings.ToLower(lv.prefix+strings.TrimSpace(inside))]
 			if !ok {
-				return 0, fmt.Errorf("it refers to the current of %s, which is not defined before it", strings.TrimSpace(inside))
+				return 0, fmt.Errorf("it refers to the current of %s, which is not there", strings.TrimSpace(inside))
 			}
 			switch x.circuit.Elements[id].Device.(type) {
 			case VoltageSource, VoltageControlled, Inductor:
@@ -354,7 +404,6 @@ func (x *expander) formulaSource(lv *level, c *elementCard, nodes []NodeID, out 
 				return 0, fmt.Errorf("it refers to the current of %s, which is no voltage source", strings.TrimSpace(inside))
 			}
 			e.probes = append(e.probes, Probe{Current: true, Element: id})
-			currents = append(currents, len(e.probes)-1)
 			return len(e.probes) - 1, nil
 		}
 		plus, minus, two := strings.Cut(inside, ",")
@@ -372,11 +421,10 @@ func (x *expander) formulaSource(lv *level, c *elementCard, nodes []NodeID, out 
 	}
 	compiled, err := r.formula(f)
 	if err != nil {
-		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: err.Error()}, "")
-		return
+		return Unknown{Letter: c.letter, Why: err.Error()}
 	}
 	e.f = compiled
-	x.add(lv, c, nodes, Behavioural{Output: out, Expression: e}, "")
+	return Behavioural{Output: out, Expression: e}
 }
 
 // formulaExpression is a compiled formula as an Expression.

@@ -25,6 +25,7 @@ type expander struct {
 	calls        int             // subcircuit calls so far
 	overflow     bool            // a limit of the expansion was met: nothing more is added
 	late         []lateCard
+	formulas     []func()             // compile what refers to elements by name, when all are known
 	byName       map[string]ElementID // lower case full path
 }
 
