@@ -77,8 +77,14 @@ func (c *elementCard) assigned(key string) (*syntax.Value, bool) {
 
 // element reads one card of a level.
 func (x *expander) element(lv *level, line *syntax.Line) {
-	card, fault := syntax.ParseElement(line)
-	x.parsed(lv, line, card, fault)
+	known, ok := x.cards[line]
+	if !ok {
+		known.card, known.fault = syntax.ParseElement(line)
+		if lv.depth > 0 { // a subcircuit may be called again
+			x.cards[line] = known
+		}
+	}
+	x.parsed(lv, line, known.card, known.fault)
 }
 
 // parsed reads one parsed card of a level.

@@ -25,8 +25,9 @@ type expander struct {
 	calls        int             // subcircuit calls so far
 	overflow     bool            // a limit of the expansion was met: nothing more is added
 	late         []lateCard
-	formulas     []func()             // compile what refers to elements by name, when all are known
-	byName       map[string]ElementID // lower case full path
+	cards        map[*syntax.Line]aheadCard // parsed lines of subcircuits
+	formulas     []func()                   // compile what refers to elements by name, when all are known
+	byName       map[string]ElementID       // lower case full path
 }
 
 // lateCard is an element that refers to others by name, resolved when all are known.

@@ -93,7 +93,7 @@ func parse(name string, text []byte, sheet []DutyLine, library Library, opened *
 			files: opened, globals: map[string]bool{}, skipped: map[string]bool{}, temperature: 27, faults: faults,
 		},
 		library: library, nodes: map[string]NodeID{}, models: map[*syntax.Line]*modelCard{},
-		environments: map[*scope]*environment{}, names: map[string]bool{}, byName: map[string]ElementID{},
+		environments: map[*scope]*environment{}, names: map[string]bool{}, cards: map[*syntax.Line]aheadCard{}, byName: map[string]ElementID{},
 		circuit: &Circuit{File: name, Nodes: []Node{{Name: "0"}}, Library: library},
 	}
 	x.top = newScope("", nil)

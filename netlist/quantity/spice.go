@@ -15,21 +15,24 @@ type Spice struct {
 	Coded  bool   // in the letter-for-point code of IEC 60062: 4k7
 }
 
-// spiceFactors are the scale factors of SPICE, longest first. Case does not matter.
+// mil marks the one scale factor that is no power of ten: 25.4e-6.
+const mil = 1000
+
+// spiceFactors are the scale factors of SPICE as powers of ten, longest first. Case does not matter.
 var spiceFactors = []struct {
-	letters string
-	factor  float64
+	letters  string
+	exponent int
 }{
-	{"meg", 1e6}, {"mil", 25.4e-6},
-	{"t", 1e12}, {"g", 1e9}, {"k", 1e3}, {"m", 1e-3},
-	{"u", 1e-6}, {"µ", 1e-6}, {"μ", 1e-6}, {"n", 1e-9}, {"p", 1e-12}, {"f", 1e-15},
+	{"meg", 6}, {"mil", mil},
+	{"t", 12}, {"g", 9}, {"k", 3}, {"m", -3},
+	{"u", -6}, {"µ", -6}, {"μ", -6}, {"n", -9}, {"p", -12}, {"f", -15},
 }
 
-// coded are the letters of IEC 60062 that may stand for the decimal point, in their own case: unlike in
+// coded are the letters of IEC 60062 that may stand for the decimal point, as powers of ten, in their own case: unlike in
 // SPICE, M is mega and m milli.
-var coded = map[string]float64{
-	"R": 1, "r": 1, "k": 1e3, "K": 1e3, "M": 1e6, "G": 1e9, "m": 1e-3,
-	"u": 1e-6, "U": 1e-6, "µ": 1e-6, "μ": 1e-6, "n": 1e-9, "N": 1e-9, "p": 1e-12, "P": 1e-12,
+var coded = map[string]int{
+	"R": 0, "r": 0, "k": 3, "K": 3, "M": 6, "G": 9, "m": -3,
+	"u": -6, "U": -6, "µ": -6, "μ": -6, "n": -9, "N": -9, "p": -12, "P": -12,
 }
 
 // ParseSpice reads a number with SPICE scale factor and unit letters, or in the code of IEC 60062.
@@ -56,7 +59,7 @@ func ParseSpice(text string) (s Spice, ok bool) {
 	for _, f := range spiceFactors {
 		if strings.HasPrefix(lower, f.letters) {
 			s.Factor, s.Unit = rest[:len(f.letters)], rest[len(f.letters):]
-			value *= f.factor
+			value = scaled(text[:mantissa], value, f.exponent)
 			break
 		}
 	}
@@ -68,6 +71,26 @@ func ParseSpice(text string) (s Spice, ok bool) {
 	}
 	s.Value = value
 	return s, true
+}
+
+// scaled is a mantissa, whose own value is known, times a power of ten, read as one decimal so that 100u is exactly
+// what 100e-6 is.
+func scaled(mantissa string, value float64, exponent int) float64 {
+	if exponent == mil {
+		return value * 25.4e-6
+	}
+	if e := strings.IndexAny(mantissa, "eE"); e >= 0 {
+		own, err := strconv.Atoi(mantissa[e+1:])
+		if err != nil {
+			return value * math.Pow10(exponent)
+		}
+		mantissa, exponent = mantissa[:e], exponent+own
+	}
+	v, err := strconv.ParseFloat(mantissa+"e"+strconv.Itoa(exponent), 64)
+	if err != nil {
+		return math.Inf(1)
+	}
+	return v
 }
 
 // spiceMantissa measures sign, digits, point and exponent; 0 if there is no digit.
@@ -110,7 +133,7 @@ func parseCoded(whole, rest string) (Spice, bool) {
 	if strings.ContainsAny(whole, ".eE") {
 		return Spice{}, false
 	}
-	for letter, factor := range coded {
+	for letter, exponent := range coded {
 		if !strings.HasPrefix(rest, letter) {
 			continue
 		}
@@ -126,7 +149,7 @@ func parseCoded(whole, rest string) (Spice, bool) {
 		if err != nil {
 			return Spice{}, false
 		}
-		return Spice{Value: value * factor, Factor: letter, Unit: decimals[k:], Coded: true}, true
+		return Spice{Value: scaled(whole+"."+decimals[:k], value, exponent), Factor: letter, Unit: decimals[k:], Coded: true}, true
 	}
 	return Spice{}, false
 }
