@@ -41,6 +41,7 @@ type pageFile struct {
 	Rails                       []railDrawing
 	Entries                     []pageEntry
 	Needed                      []Needed
+	NeededNote                  string
 	Statements                  []string
 	Rows                        []pageRow
 	Assumptions                 []string
@@ -53,6 +54,7 @@ type pageEntry struct {
 	Label, Class, Name, Title, Found string
 	Bar                              bar
 	Lines                            []pageLine
+	Items                            []string // of a group that waits for one thing
 }
 
 type pageLine struct{ Word, Text string }
@@ -133,7 +135,7 @@ func newPageFile(index int, f *File) pageFile {
 	p := pageFile{
 		Index: index, Name: printable(f.Name), Title: printable(f.Title),
 		Line: printable(c.Line), Load: printable(c.Load), Ambient: printable(c.Ambient), Policy: printable(c.Policy),
-		Needed: f.Needed(), Statements: f.Statements(), Assumptions: foldAssumptions(f), NotRead: f.NotRead,
+		Needed: f.Needed(), NeededNote: doubtNote(f.Needed()), Statements: f.Statements(), Assumptions: foldAssumptions(f), NotRead: f.NotRead,
 		PartsVersion: f.PartsVersion, PolicyVersion: f.PolicyVersion,
 	}
 	if f.Failure != "" {
@@ -144,11 +146,7 @@ func newPageFile(index int, f *File) pageFile {
 	}
 	p.Short, p.Class = f.short()
 	p.Rails = drawRails(f)
-	for _, x := range fold(f.Findings) {
-		if x.Verdict != checks.Proven {
-			p.Entries = append(p.Entries, newPageEntry(&x))
-		}
-	}
+	p.Entries = entriesOf(f)
 	for k := range f.Findings {
 		p.Rows = append(p.Rows, newPageRow(k, &f.Findings[k]))
 	}
@@ -172,6 +170,32 @@ func (f *File) short() (word, class string) {
 	return "proven", "proven"
 }
 
+// entriesOf lists violations, what is unproven, and what is conceded, in the order of the ledger.
+func entriesOf(f *File) []pageEntry {
+	var violated, conceded, list []pageEntry
+	for _, x := range fold(f.Findings) {
+		switch x.Verdict {
+		case checks.Violated:
+			violated = append(violated, newPageEntry(&x))
+		case checks.Conceded:
+			conceded = append(conceded, newPageEntry(&x))
+		}
+	}
+	list = violated
+	for _, group := range unprovenGroups(f) {
+		if len(group) == 1 {
+			list = append(list, newPageEntry(&group[0]))
+			continue
+		}
+		e := pageEntry{Label: string(checks.Unproven), Class: string(checks.Unproven), Title: printable(groupWords(group)), Items: groupLines(group)}
+		if needs := needWords(&group[0].Finding); needs != "" {
+			e.Lines = []pageLine{{"needs", printable(needs)}}
+		}
+		list = append(list, e)
+	}
+	return append(list, conceded...)
+}
+
 func newPageEntry(x *Folded) pageEntry {
 	e := pageEntry{Label: labelOf(&x.Finding), Class: classOf(&x.Finding), Name: printable(x.Name()), Title: x.Title + strings.TrimPrefix(stateTail(x), " "), Found: inSentence(foundLine(&x.Finding)), Bar: newBar(&x.Finding)}
 	add := func(word, text string) {
@@ -190,6 +214,7 @@ func newPageEntry(x *Folded) pageEntry {
 	add("note", x.forAll(x.Note))
 	if x.Verdict == checks.Unproven {
 		add("needs", x.forAll(needWords(&x.Finding)))
+		add("but", doubtWords(&x.Finding))
 	}
 	add("at", placeWords(x))
 	if c := x.Concession; c != nil {

@@ -9,6 +9,8 @@ import (
 	"strings"
 	"testing"
 	"time"
+
+	"railproof/checks"
 )
 
 func TestHTMLHostileNames(t *testing.T) {
@@ -136,6 +138,23 @@ func TestBar(t *testing.T) {
 		// 50 V is the largest and takes 0.94 of 160: 150.4; 41.8/50 and 40/50 of that.
 		if b := newBar(f); b.Rating != "150.4" || b.Stress != "125.7" || b.Limit != "120.3" {
 			t.Errorf("%+v", b)
+		}
+	}
+}
+
+// Findings that wait for one and the same thing share an entry, in every format for people.
+func TestGroupOfUnproven(t *testing.T) {
+	r := benchResult(t)
+	for k := range r.Findings {
+		if f := &r.Findings[k]; f.Verdict != checks.Proven && f.Check != "after-end" {
+			f.Verdict, f.Severity, f.Reason, f.Needs, f.Remedy = checks.Unproven, "", "the subcircuit FOO is not defined", nil, ""
+		}
+	}
+	rep := New([]Input{{File: r.File, Result: r}}, Options{Now: day})
+	for _, format := range []string{"text", "html", "markdown"} {
+		text := string(written(t, rep, format, Style{}))
+		if !strings.Contains(text, "7 findings: the subcircuit FOO is not defined") || !strings.Contains(text, "(headline): D1..D4") {
+			t.Errorf("%s does not gather them:\n%s", format, text)
 		}
 	}
 }

@@ -129,6 +129,7 @@ type jsonStress struct {
 	Error     number         `json:"error"`
 	Condition jsonCondition  `json:"condition"`
 	Phase     number         `json:"phase_s"`
+	Unproven  string         `json:"unproven,omitempty"`
 }
 
 type jsonCondition struct {
@@ -288,7 +289,7 @@ func toJSONNeeds(f *Finding) *jsonNeeds {
 
 func toJSONStress(s *study.Stress) jsonStress {
 	return jsonStress{
-		Quantity: s.Quantity, Value: number(s.Value), Unit: s.Unit.String(), Error: number(s.Error), Phase: number(s.Phase),
+		Quantity: s.Quantity, Value: number(s.Value), Unit: s.Unit.String(), Error: number(s.Error), Phase: number(s.Phase), Unproven: s.Unproven,
 		Condition: jsonCondition{s.Condition.Name, s.Condition.Line, s.Condition.Load, s.Condition.Start, s.Condition.Also},
 	}
 }

@@ -88,37 +88,52 @@ func (m *markdown) file(f *File) {
 
 func (m *markdown) findings(f *File) {
 	var rows [][]string
-	for _, x := range fold(f.Findings) {
-		if x.Verdict == checks.Proven {
-			continue
-		}
-		label := string(x.Verdict)
-		if x.Verdict == checks.Violated {
-			label = strings.ToUpper(string(x.Severity))
-		}
-		when := ""
-		if x.Stress != nil {
-			when = whenWords(x.Stress)
-		}
-		action := x.forAll(x.Remedy)
-		if x.Verdict == checks.Unproven {
-			action = x.forAll(needWords(&x.Finding))
-			if action != "" {
-				action = "needs " + action
+	folded := fold(f.Findings)
+	add := func(v checks.Verdict) {
+		for k := range folded {
+			if folded[k].Verdict == v {
+				rows = append(rows, markdownRow(&folded[k]))
 			}
 		}
-		if c := x.Concession; c != nil {
-			action = fmt.Sprintf("conceded until %s, up to %s: %s", c.Until, ceilingWords(c), c.Reason)
-		}
-		found := joined(joined(inSentence(foundLine(&x.Finding)), x.forAll(x.Reason)), x.forAll(x.Note))
-		rows = append(rows, []string{label, x.Name(), x.Title, found, when, placeWords(&x), action})
 	}
+	add(checks.Violated)
+	for _, group := range unprovenGroups(f) {
+		if len(group) == 1 {
+			rows = append(rows, markdownRow(&group[0]))
+			continue
+		}
+		rows = append(rows, []string{string(checks.Unproven), "several", strings.Join(groupLines(group), "; "), groupWords(group), "", "", needWords(&group[0].Finding)})
+	}
+	add(checks.Conceded)
 	if len(rows) == 0 {
 		return
 	}
 	m.line("")
 	m.line("### Findings")
 	m.table([]string{"verdict", "part", "check", "found", "when", "at", "fix or need"}, rows)
+}
+
+func markdownRow(x *Folded) []string {
+	label := string(x.Verdict)
+	if x.Verdict == checks.Violated {
+		label = strings.ToUpper(string(x.Severity))
+	}
+	when := ""
+	if x.Stress != nil {
+		when = whenWords(x.Stress)
+	}
+	action := x.forAll(x.Remedy)
+	if x.Verdict == checks.Unproven {
+		action = x.forAll(needWords(&x.Finding))
+		if action != "" {
+			action = joined("needs "+action, doubtWords(&x.Finding))
+		}
+	}
+	if c := x.Concession; c != nil {
+		action = fmt.Sprintf("conceded until %s, up to %s: %s", c.Until, ceilingWords(c), c.Reason)
+	}
+	found := joined(joined(inSentence(foundLine(&x.Finding)), x.forAll(x.Reason)), x.forAll(x.Note))
+	return []string{label, x.Name(), x.Title, found, when, placeWords(x), action}
 }
 
 func (m *markdown) needed(f *File) {
@@ -133,6 +148,10 @@ func (m *markdown) needed(f *File) {
 		rows = append(rows, []string{n.Name(), string(n.Symbol), n.Bound(), n.NextStep(), strings.Join(n.Checks, ", ")})
 	}
 	m.table([]string{"part", "rating", "needed", "next step", "for"}, rows)
+	if note := doubtNote(list); note != "" {
+		m.line("")
+		m.line(md(note))
+	}
 }
 
 func (m *markdown) proven(f *File) {

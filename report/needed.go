@@ -19,13 +19,22 @@ type Needed struct {
 	Floor    bool    // the rating must be at most Value, not at least
 	Next     float64 // next standard rating, 0 if there is none
 	Checks   []string
+	Doubtful bool // the stress behind it proves nothing yet
 }
 
 // Name lists the parts, runs shortened.
 func (n Needed) Name() string { return strings.Join(foldNames(n.Elements), " ") }
 
-// Bound is the rating in words, rounded to the safe side: "at least 77.4 V".
+// Bound is the rating in words, rounded to the safe side: "at least 77.4 V". What rests on a stress that
+// proves nothing yet bears a question mark.
 func (n Needed) Bound() string {
+	if n.Doubtful {
+		if n.Value == 0 {
+			return "?"
+		}
+		n.Doubtful = false
+		return n.Bound() + " ?"
+	}
 	word := "at least "
 	if n.Floor {
 		word = "at most "
@@ -46,7 +55,7 @@ func (f *File) Needed() []Needed {
 	var out []Needed
 	index := map[string]int{}
 	for _, s := range f.demands() {
-		key := fmt.Sprint(s.Symbol, s.Floor, rounded(s.Value), s.Next, s.Checks)
+		key := fmt.Sprint(s.Symbol, s.Floor, rounded(s.Value), s.Next, s.Checks, s.Doubtful)
 		k, ok := index[key]
 		if !ok {
 			index[key] = len(out)
@@ -74,7 +83,8 @@ func (f *File) demands() []Needed {
 		if x.Verdict != checks.Unproven || n == nil || n.Symbol == "" {
 			continue
 		}
-		demand := Needed{[]string{x.Element}, n.Symbol, n.Value, n.Unit, x.Floor, n.NextStandard, []string{x.Check}}
+		demand := Needed{[]string{x.Element}, n.Symbol, n.Value, n.Unit, x.Floor, n.NextStandard, []string{x.Check}, false}
+		demand.Doubtful = (&x).doubtful()
 		key := fmt.Sprint(x.Element, "\x00", n.Symbol, x.Floor)
 		k, ok := index[key]
 		if !ok {
@@ -90,6 +100,7 @@ func (f *File) demands() []Needed {
 			*o = demand
 			continue
 		}
+		o.Doubtful = o.Doubtful || demand.Doubtful
 		if !slices.Contains(o.Checks, x.Check) {
 			o.Checks = append(o.Checks, x.Check)
 		}
@@ -98,6 +109,14 @@ func (f *File) demands() []Needed {
 		}
 	}
 	return single
+}
+
+// doubtNote explains the question marks of a list, empty if it has none.
+func doubtNote(list []Needed) string {
+	if !slices.ContainsFunc(list, func(n Needed) bool { return n.Doubtful }) {
+		return ""
+	}
+	return "?: so far; the stress behind it is not proven, and may turn out worse"
 }
 
 // Statements lists the duty statements that unproven findings wait for, each once, in the order of the findings.

@@ -84,7 +84,7 @@ func (l *ledger) body(f *Folded) {
 
 // foundLine holds the stress against its limit: "found 1.42 V   needs 2.00 V   short by 0.58 V".
 func foundLine(f *Finding) string {
-	if f.Stress == nil {
+	if f.Stress == nil || math.IsNaN(f.Stress.Value) {
 		return ""
 	}
 	if f.Limit == nil {
@@ -154,70 +154,22 @@ func (l *ledger) listUnproven(f *File) {
 			}
 			l.entry("UNPROVEN", first, tail)
 			l.say("why", first.forAll(first.Reason))
-			if first.Stress != nil && !math.IsNaN(first.Stress.Value) {
-				l.hang(entryIndent, entryIndent, foundLine(&first.Finding))
+			if line := foundLine(&first.Finding); line != "" {
+				l.hang(entryIndent, entryIndent, line)
 				l.say("when", whenWords(first.Stress))
 			}
 			l.say("note", first.forAll(first.Note))
 			l.say("needs", first.forAll(needWords(&first.Finding)))
+			l.say("but", doubtWords(&first.Finding))
 			l.say("at", placeWords(first))
 			continue
 		}
-		n := 0
-		for k := range group {
-			n += len(group[k].Elements)
-		}
-		l.hangPainted(l.unproven, "UNPROVEN", "  ", fmt.Sprintf("%d findings: %s", n, first.Reason))
+		l.hangPainted(l.unproven, "UNPROVEN", "  ", groupWords(group))
 		l.say("needs", needWords(&first.Finding))
-		for k := 0; k < len(group); {
-			title, names := group[k].Title, []string{}
-			if group[k].Headline {
-				title += " (headline)"
-			}
-			check := group[k].Check
-			for ; k < len(group) && group[k].Check == check; k++ {
-				names = append(names, group[k].Elements...)
-			}
-			l.hang(entryIndent+"- ", entryIndent+"  ", title+": "+strings.Join(foldNames(names), " "))
+		for _, line := range groupLines(group) {
+			l.hang(entryIndent+"- ", entryIndent+"  ", line)
 		}
 	}
-}
-
-// shareFrom is how many entries must wait for the same thing to be told as one.
-const shareFrom = 3
-
-// unprovenGroups gathers the unproven entries of a file; the order is that of the first of each group.
-func unprovenGroups(f *File) [][]Folded {
-	var entries []Folded
-	count := map[string]int{}
-	for _, x := range fold(f.Findings) {
-		if x.Verdict == checks.Unproven {
-			entries = append(entries, x)
-			count[waitsFor(&x)]++
-		}
-	}
-	var groups [][]Folded
-	index := map[string]int{}
-	for _, x := range entries {
-		key := waitsFor(&x)
-		if k, ok := index[key]; ok {
-			groups[k] = append(groups[k], x)
-			continue
-		}
-		if key != "" && count[key] >= shareFrom {
-			index[key] = len(groups)
-		}
-		groups = append(groups, []Folded{x})
-	}
-	return groups
-}
-
-// waitsFor is what an entry waits for if that is no rating of its own, else empty.
-func waitsFor(f *Folded) string {
-	if f.Check == unsolvedCheck || f.Needs != nil && f.Needs.Symbol != "" || f.Element != "" && strings.Contains(f.Reason, f.Element) {
-		return ""
-	}
-	return f.Reason + "\x00" + needWords(&f.Finding)
 }
 
 func (l *ledger) listConceded(f *File) {

@@ -16,6 +16,9 @@ func (l *ledger) listNeeded(f *File) {
 			rows = append(rows, []string{printable(n.Name()), string(n.Symbol), n.Bound(), n.NextStep(), strings.Join(n.Checks, ", ")})
 		}
 		l.table(rows)
+		if note := doubtNote(list); note != "" {
+			l.hang("  ", "  ", note)
+		}
 	}
 	if statements := f.Statements(); len(statements) > 0 {
 		l.section("What else would prove it")

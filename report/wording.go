@@ -105,10 +105,27 @@ func needWords(f *Finding) string {
 		return ""
 	}
 	text := string(n.Symbol) + " of " + boundWord(f) + " " + upward(n.Value, n.Unit, f.Floor)
+	if f.doubtful() {
+		if n.Value == 0 {
+			return string(n.Symbol) + ", how much is not known yet"
+		}
+		text = string(n.Symbol) + ", so far " + boundWord(f) + " " + upward(n.Value, n.Unit, f.Floor)
+	}
 	if n.NextStandard > 0 {
 		text += ", next step " + quantity.Format(n.NextStandard, n.Unit, 4)
 	}
 	return text
+}
+
+// doubtful reports whether the stress of a finding proves nothing, so that what it asks for is provisional.
+func (f *Finding) doubtful() bool { return f.Stress != nil && f.Stress.Unproven != "" }
+
+// doubtWords says why a demand is provisional, unless the reason of the finding says it.
+func doubtWords(f *Finding) string {
+	if !f.doubtful() || f.Needs == nil || f.Needs.Symbol == "" || strings.Contains(f.Reason, f.Stress.Unproven) {
+		return ""
+	}
+	return "the stress is not proven yet: " + f.Stress.Unproven
 }
 
 func boundWord(f *Finding) string {

@@ -129,3 +129,23 @@ func TestWrapIsLinear(t *testing.T) {
 		t.Errorf("%d lines", n)
 	}
 }
+
+// What a part must be rated is provisional while the stress behind it proves nothing.
+func TestProvisionalNeed(t *testing.T) {
+	r := benchResult(t)
+	for k := range r.Findings {
+		if r.Findings[k].Check == "capacitor-voltage" {
+			r.Findings[k].Stress.Unproven = "the source resistance is unknown"
+		}
+	}
+	rep := New([]Input{{File: r.File, Result: r}}, Options{Now: day})
+	text := string(written(t, rep, "text", Style{}))
+	for _, want := range []string{"UR, so far at least 25.4 V", "the stress is not proven yet: the source resistance is unknown", "at least 25.4 V ?", "may turn out worse"} {
+		if !contains(text, want) {
+			t.Errorf("the ledger does not say %q:\n%s", want, text)
+		}
+	}
+	if err := validate(schemaOf(t, "report-1"), written(t, rep, "json", Style{})); err != nil {
+		t.Error(err)
+	}
+}
