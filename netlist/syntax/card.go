@@ -117,12 +117,15 @@ func plainCard(text string) *ElementCard {
 		for k < len(text) && !separator(text[k]) && text[k] != '=' {
 			k++
 		}
+		if k == start {
+			return nil // an equals sign without a name before it
+		}
 		atoms = append(atoms, atomAt(text, start, k))
 		if k < len(text) && text[k] == '=' {
 			from := k + 1
 			for k = from; k < len(text) && !separator(text[k]) && text[k] != '='; k++ {
 			}
-			if k == from || k < len(text) && text[k] == '=' || start == 0 {
+			if k == from || k < len(text) && text[k] == '=' || len(atoms) == 1 {
 				return nil // spaced or doubled: for the grammar
 			}
 			atoms = append(atoms, atomAt(text, from, k))
