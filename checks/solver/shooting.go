@@ -21,9 +21,11 @@ const (
 	// is of the order of its square.
 	relativeState = 1e-6
 	absoluteState = 1e-7
-	// neutral: directions in which a period changes the state by less than this fraction are left where
-	// they are (an isolated node between capacitors; the direct current in a winding without resistance).
-	neutral = 1e-11
+	// neutral: directions in which a period changes the state by less than this fraction are left where they
+	// are: an isolated node between capacitors, the direct current in a winding without resistance, an output
+	// that nothing loads. At 50 Hz it is a time constant of five hours and more, beyond which only the
+	// conductance assumed across every junction would decide.
+	neutral = 1e-6
 )
 
 // search is the state of a periodicity search.
@@ -117,7 +119,7 @@ func (s *search) newton(residual []float64) ([]float64, error) {
 	}
 	var lu mat.LU
 	lu.Factorize(a)
-	if lu.Cond() > 1/(neutral*1e3) {
+	if lu.Cond() > 1e-3/neutral {
 		var svd mat.SVD
 		if !svd.Factorize(a, mat.SVDThin) {
 			return nil, ErrUnsettled
