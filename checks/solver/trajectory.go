@@ -191,6 +191,10 @@ type Stats struct {
 // Ripple is the RMS value of the signal less its mean.
 func (s Stats) Ripple() float64 { return math.Sqrt(math.Max(0, s.RMS*s.RMS-s.Mean*s.Mean)) }
 
+// tie is the relative difference below which two extrema count as equal and the earlier one is shown: the half
+// cycles of a bridge differ by rounding only.
+const tie = 1e-7
+
 // Summary computes the statistics of a signal; value(k) is its sample k. Means are by the trapezoidal rule,
 // which for a periodic signal is also the most accurate; extrema inside the interval are refined by the
 // parabola through the three samples around them.
@@ -200,10 +204,10 @@ func (tr *Trajectory) Summary(value func(k int) float64) Stats {
 	maxAt, minAt := 0, 0
 	for k := range n {
 		v := value(k)
-		if v > st.Max.Value {
+		if k == 0 || v > st.Max.Value+tie*math.Abs(st.Max.Value) {
 			st.Max.Value, maxAt = v, k
 		}
-		if v < st.Min.Value {
+		if k == 0 || v < st.Min.Value-tie*math.Abs(st.Min.Value) {
 			st.Min.Value, minAt = v, k
 		}
 	}

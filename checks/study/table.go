@@ -56,6 +56,9 @@ func (t *Table) Island(id netlist.ElementID) int { return t.islands[id] }
 // smallerIsWorse are the quantities whose worst value is the smallest.
 var smallerIsWorse = map[Quantity]bool{MinVoltage: true, MinCurrent: true, MinDifferential: true, MinHeadroom: true, LeastCurrent: true, MinOutputCurrent: true}
 
+// tie is the relative difference below which two conditions count as equally bad and the first one is shown.
+const tie = 1e-6
+
 // worse reports whether a is worse than b, each with its numerical error counted against the part.
 func worse(a, b *Stress) bool {
 	if math.IsNaN(b.Value) {
@@ -64,10 +67,11 @@ func worse(a, b *Stress) bool {
 	if math.IsNaN(a.Value) {
 		return false
 	}
+	margin := tie * math.Abs(b.Value)
 	if smallerIsWorse[a.Quantity] {
-		return a.Value-a.Error < b.Value-b.Error
+		return a.Value-a.Error < b.Value-b.Error-margin
 	}
-	return a.Value+a.Error > b.Value+b.Error
+	return a.Value+a.Error > b.Value+b.Error+margin
 }
 
 // merge takes a stress into the table if it is the worst so far. A stress that proves nothing marks the
