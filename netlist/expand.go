@@ -176,6 +176,12 @@ func (x *expander) call(lv *level, c *elementCard) {
 		x.unknownWords(lv, c, nil, "the call names no subcircuit")
 		return
 	}
+	for k, w := range c.words {
+		if k > 0 && strings.HasSuffix(w.Word, ":") { // PARAMS: and its like end the nodes and the name
+			c.words = c.words[:k]
+			break
+		}
+	}
 	at := len(c.words) - 1
 	name := c.words[at].Text()
 	var nodes []NodeID
