@@ -59,7 +59,8 @@ func (b *Baseline) file(name string, alone bool) *jsonFile {
 }
 
 // mark gives the violated and unproven findings of a file their state. One is unchanged if the baseline has
-// the same fingerprint with a verdict as bad; a violation that was milder before is new.
+// the same fingerprint with a verdict as bad. A violation that was milder before is new, and so is what was
+// judged before and is unproven now: a gate must not open because a rating was taken away.
 func (b *Baseline) mark(f *File, alone bool) {
 	old := map[string]*jsonFinding{}
 	if o := b.file(f.Name, alone); o != nil {
@@ -73,7 +74,7 @@ func (b *Baseline) mark(f *File, alone bool) {
 			continue
 		}
 		x.State = IsNew
-		if o := old[x.Fingerprint]; o != nil && badness(o.Verdict, severityOf(o)) >= badness(x.Verdict, x.Severity) {
+		if o := old[x.Fingerprint]; o != nil && !judgementLost(o.Verdict, x.Verdict) && badness(o.Verdict, severityOf(o)) >= badness(x.Verdict, x.Severity) {
 			x.State = IsUnchanged
 		}
 	}
@@ -84,6 +85,11 @@ func severityOf(f *jsonFinding) checks.Severity {
 		return ""
 	}
 	return checks.Severity(*f.Severity)
+}
+
+// judgementLost reports whether a finding was judged before and is unproven now.
+func judgementLost(before, after checks.Verdict) bool {
+	return after == checks.Unproven && before != checks.Unproven
 }
 
 // badness orders outcomes: proven and conceded, unproven, then violations from minor to critical.

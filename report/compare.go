@@ -20,7 +20,7 @@ type Change string
 // The changes, gravest first. A finding that is neither violated nor unproven in either report is no change.
 const (
 	ChangeNew     Change = "new"     // violated or unproven now, proven, conceded or absent before
-	ChangeWorse   Change = "worse"   // graver, or a smaller margin
+	ChangeWorse   Change = "worse"   // graver, or a smaller margin, or a violation that is no longer judged
 	ChangeBetter  Change = "better"  // milder, or a larger margin
 	ChangeCleared Change = "cleared" // violated or unproven before, proven, conceded or absent now
 )
@@ -36,7 +36,8 @@ const marginStep = 0.005
 type Comparison struct {
 	Old, New  string // names of the reports
 	Changes   []Difference
-	Unchanged int // violated and unproven findings that stay as they were
+	Unchanged int    // violated and unproven findings that stay as they were
+	Gated     Totals // of what is new or worse
 	Gate      Gate
 	Exit      Exit
 }
@@ -158,7 +159,7 @@ func (c *Comparison) finding(file string, before, after *jsonFinding) {
 		change = ChangeNew
 	case is == 0:
 		change = ChangeCleared
-	case is > was || is == was && moved < -marginStep:
+	case is > was || is == was && moved < -marginStep || judgementLost(before.Verdict, after.Verdict):
 		change = ChangeWorse
 	case is < was || moved > marginStep:
 		change = ChangeBetter
@@ -177,14 +178,13 @@ func badnessOf(f *jsonFinding) int {
 }
 
 func (c *Comparison) close(allowUnproven bool) {
-	var t Totals
 	for _, d := range c.Changes {
 		if d.Change == ChangeNew || d.Change == ChangeWorse {
-			t.count(&Finding{Finding: checks.Finding{Check: d.New.Check, Headline: d.New.Headline, Verdict: d.New.Verdict, Severity: severityOf(d.New)}})
+			c.Gated.count(&Finding{Finding: checks.Finding{Check: d.New.Check, Headline: d.New.Headline, Verdict: d.New.Verdict, Severity: severityOf(d.New)}})
 		}
 	}
-	c.Gate.close(t)
-	c.Exit = exitOf(false, c.Gate, t, allowUnproven)
+	c.Gate.close(c.Gated)
+	c.Exit = exitOf(false, c.Gate, c.Gated, allowUnproven)
 }
 
 // WriteText writes the comparison for people.
@@ -211,7 +211,8 @@ func (c *Comparison) WriteText(w io.Writer, colour bool) error {
 	case ExitUnproven:
 		word, paint = "NOT PROVEN", l.unproven
 	}
-	l.hangPainted(paint, word, "  ", fmt.Sprintf("gate %s on what is new or worse: %s", c.Gate, counted(c.Gate.Stops, "violation")))
+	why := fmt.Sprintf("gate %s on what is new or worse: %s", c.Gate, counted(c.Gate.Stops, "violation"))
+	l.hangPainted(paint, word, "  ", joinWith(why, openWords(c.Gated), ", "))
 	_, err := io.WriteString(w, l.out.String())
 	return err
 }

@@ -90,6 +90,54 @@ func TestCompareWithItself(t *testing.T) {
 	}
 }
 
+// rubbed is the bench supply after its diode rating was taken away: D1 is no longer judged.
+func rubbed(t testing.TB) *checks.Result {
+	r := benchResult(t)
+	for k := range r.Findings {
+		if f := &r.Findings[k]; f.Element == "D1" {
+			f.Verdict, f.Severity, f.Rating, f.Limit, f.Margin, f.Reason = checks.Unproven, "", nil, nil, 0, "no rating VRRM is known"
+		}
+	}
+	return r
+}
+
+// A gate cannot be opened by taking a rating away: a violation that is no longer judged is worse, and new
+// against a baseline.
+func TestLostJudgement(t *testing.T) {
+	before := written(t, benchReport(t), "json", Style{})
+	after := written(t, New([]Input{{File: "bench/supply.cir", Result: rubbed(t)}}, Options{Now: day}), "json", Style{})
+	c, err := CompareReports("old.json", before, "new.json", after, gateAt(t, "critical"), false)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if len(c.Changes) != 1 || c.Changes[0].Change != ChangeWorse || c.Exit != ExitUnproven {
+		t.Errorf("changes %+v, exit %d; want one worse and exit 3", c.Changes, c.Exit)
+	}
+	var text bytes.Buffer
+	if err := c.WriteText(&text, false); err != nil {
+		t.Fatal(err)
+	}
+	if words := strings.Join(strings.Fields(text.String()), " "); !strings.HasSuffix(words, "0 violations, 1 headline check unproven") {
+		t.Errorf("the last line does not say why: %s", words)
+	}
+	base, err := ReadBaseline("old.json", before)
+	if err != nil {
+		t.Fatal(err)
+	}
+	o := Options{Gate: gateAt(t, "critical"), Now: day, Baseline: base, NewOnly: true}
+	if r := New([]Input{{File: "bench/supply.cir", Result: rubbed(t)}}, o); r.Exit != ExitUnproven {
+		t.Errorf("exit %d against the baseline, want 3", r.Exit)
+	}
+	// What was unproven in the baseline already is no news, and the last word does not call it allowed.
+	if o.Baseline, err = ReadBaseline("new.json", after); err != nil {
+		t.Fatal(err)
+	}
+	r := New([]Input{{File: "bench/supply.cir", Result: rubbed(t)}}, o)
+	if _, why := r.Outcome(); r.Exit != ExitPassed || !strings.Contains(why, "nothing new violates it; open as before: 2 headline checks unproven") {
+		t.Errorf("exit %d, %q", r.Exit, why)
+	}
+}
+
 func TestCompareRefuses(t *testing.T) {
 	good := written(t, benchReport(t), "json", Style{})
 	bad := written(t, badReport(t), "json", Style{})

@@ -10,7 +10,7 @@ import (
 // Style is how a report for people is to look.
 type Style struct {
 	Colour bool
-	Proven bool // the ledger lists what is proven too
+	Proven bool // the ledger lists all that is proven, not the headline checks alone
 }
 
 // format is one way to write a report.

@@ -16,9 +16,11 @@ type Report struct {
 	Version  string // of the tool
 	Files    []File // in the order of the inputs
 	Totals   Totals
+	Gated    Totals // what the gate looked at: all, or with NewOnly what the baseline does not have
 	Gate     Gate
 	Exit     Exit
 	Compared bool // a baseline was given: findings carry a State
+	NewOnly  bool // the gate looked at new findings only
 }
 
 // File is the outcome of one input.
@@ -130,8 +132,7 @@ type Options struct {
 
 // New draws up the report of a run.
 func New(inputs []Input, o Options) *Report {
-	r := &Report{Version: o.Version, Gate: o.Gate, Compared: o.Baseline != nil}
-	var gated Totals
+	r := &Report{Version: o.Version, Gate: o.Gate, Compared: o.Baseline != nil, NewOnly: o.NewOnly}
 	unread := false
 	for _, in := range inputs {
 		f := newFile(in, o.Now)
@@ -141,15 +142,15 @@ func New(inputs []Input, o Options) *Report {
 		for k := range f.Findings {
 			f.Totals.count(&f.Findings[k])
 			if !o.NewOnly || f.Findings[k].State != IsUnchanged {
-				gated.count(&f.Findings[k])
+				r.Gated.count(&f.Findings[k])
 			}
 		}
 		unread = unread || f.Unread()
 		r.Totals.add(f.Totals)
 		r.Files = append(r.Files, f)
 	}
-	r.Gate.close(gated)
-	r.Exit = exitOf(unread, r.Gate, gated, o.AllowUnproven)
+	r.Gate.close(r.Gated)
+	r.Exit = exitOf(unread, r.Gate, r.Gated, o.AllowUnproven)
 	return r
 }
 

@@ -52,9 +52,8 @@ func (l *ledger) file(f *File, proven bool) {
 	l.listViolations(f)
 	l.listUnproven(f)
 	l.listConceded(f)
-	if proven {
-		l.listProven(f)
-	} else {
+	l.listProven(f, proven)
+	if !proven {
 		l.listNearLimit(f)
 	}
 	l.listNeeded(f)
@@ -131,28 +130,39 @@ func (l *ledger) verdict(r *Report) {
 // Outcome is the last word on a run and its reason.
 func (r *Report) Outcome() (word, why string) {
 	gate := "gate " + r.Gate.String()
+	if r.NewOnly {
+		gate += " on new findings"
+	}
+	open := openWords(r.Gated)
 	switch r.Exit {
 	case ExitBadInput:
 		return "NOT CHECKED", "a file could not be read"
 	case ExitViolated:
 		return "STOPPED", fmt.Sprintf("%s: %s at or above it", gate, counted(r.Gate.Stops, "violation"))
 	case ExitUnproven:
-		var why []string
-		if n := r.Totals.HeadlineUnproven; n > 0 {
-			why = append(why, counted(n, "headline check")+" unproven")
-		}
-		if n := r.Totals.Unsolved; n > 0 {
-			why = append(why, counted(n, "part")+" of the circuit unsolved")
-		}
-		return "NOT PROVEN", gate + ": nothing violates it, but " + strings.Join(why, ", ")
+		return "NOT PROVEN", gate + ": nothing violates it, but " + open
 	}
-	if r.Totals.HeadlineUnproven+r.Totals.Unsolved > 0 {
-		return "PASSED", gate + ", unproven headline checks allowed"
-	}
-	if r.headlines() == 0 {
+	switch {
+	case open != "":
+		return "PASSED", gate + "; allowed: " + open
+	case r.NewOnly:
+		return "PASSED", joinWith(gate+": nothing new violates it", openWords(r.Totals), "; open as before: ")
+	case r.headlines() == 0:
 		return "PASSED", gate + ", but no headline check applies to any part"
 	}
 	return "PASSED", gate + ", every headline check judged"
+}
+
+// openWords tells what keeps a gate from being passed without a violation, empty if nothing does.
+func openWords(t Totals) string {
+	var words []string
+	if n := t.HeadlineUnproven; n > 0 {
+		words = append(words, counted(n, "headline check")+" unproven")
+	}
+	if n := t.Unsolved; n > 0 {
+		words = append(words, counted(n, "part")+" of the circuit unsolved")
+	}
+	return strings.Join(words, ", ")
 }
 
 // headlines is how many findings headline checks have.

@@ -186,10 +186,11 @@ func (l *ledger) listConceded(f *File) {
 	}
 }
 
+// listNearLimit lists what is proven by little; headline checks stand in a table of their own.
 func (l *ledger) listNearLimit(f *File) {
 	started := false
 	for _, x := range fold(f.Findings) {
-		if x.Verdict != checks.Proven || !x.NearLimit() {
+		if x.Headline || !x.NearLimit() {
 			continue
 		}
 		if !started {

@@ -28,29 +28,36 @@ func (l *ledger) listNeeded(f *File) {
 	}
 }
 
-// listProven lists every proven finding with its margin.
-func (l *ledger) listProven(f *File) {
+// listProven lists what is proven with its margin: every finding, or those of the headline checks alone.
+func (l *ledger) listProven(f *File, all bool) {
+	title := "Proven headline checks"
+	if all {
+		title = "Proven"
+	}
 	rows := [][]string{{"part", "stress", "limit", "margin", "check"}}
 	for _, x := range fold(f.Findings) {
-		if x.Verdict != checks.Proven {
+		if x.Verdict != checks.Proven || !all && !x.Headline {
 			continue
 		}
 		found, limit, margin := "", "", ""
 		switch {
 		case x.Stress != nil && x.Limit != nil:
 			found, limit = pair(x.Stress.Value, x.Limit.Value, x.Stress.Unit)
+			if x.Floor {
+				limit = "at least " + limit
+			}
 			margin = marginWords(x.Margin)
 		case x.Stress != nil:
 			found = figure(x.Stress.Value, x.Stress.Unit)
 		}
-		title := x.Title
+		check := x.Title
 		if x.NearLimit() {
-			title += " (near limit)"
+			check += " (near limit)"
 		}
-		rows = append(rows, []string{printable(x.Name()), found, limit, margin, title})
+		rows = append(rows, []string{printable(x.Name()), found, limit, margin, check})
 	}
 	if len(rows) > 1 {
-		l.section("Proven")
+		l.section(title)
 		l.table(rows)
 	}
 }

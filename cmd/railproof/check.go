@@ -47,7 +47,7 @@ When an input cannot be read, its faults stand on the error stream, no FILE is w
 	c.Flags().StringVar(&o.now, "now", "", "the `DATE` on which concessions are judged, as 2006-01-02 (default: today)")
 	c.Flags().StringVar(&o.baseline, "baseline", "", "an earlier JSON report `FILE`: findings it has are marked unchanged, others new")
 	c.Flags().BoolVar(&o.newOnly, "new-only", false, "with --baseline: the gate looks at new findings only")
-	c.Flags().BoolVar(&o.proven, "proven", false, "let the text ledger list what is proven too")
+	c.Flags().BoolVar(&o.proven, "proven", false, "let the text ledger list all that is proven, not the headline checks alone")
 	completeWords(c, "gate", "critical", "major", "minor", "never")
 	return c
 }
