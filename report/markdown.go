@@ -46,6 +46,19 @@ func (m *markdown) table(head []string, rows [][]string) {
 	}
 }
 
+// list writes a list under a heading if it has entries.
+func (m *markdown) list(title string, entries []string) {
+	if len(entries) == 0 {
+		return
+	}
+	m.line("")
+	m.line("### " + title)
+	m.line("")
+	for _, e := range entries {
+		m.line("- " + md(e))
+	}
+}
+
 func (m *markdown) file(f *File) {
 	m.line("")
 	m.line("## " + md(joinWith(f.Name, f.Title, ": ")))
@@ -73,15 +86,10 @@ func (m *markdown) file(f *File) {
 		t.Critical, t.Major, t.Minor, t.Unproven, t.Proven, t.Conceded))
 	m.findings(f)
 	m.needed(f)
+	m.list("What else would prove it", f.Statements())
 	m.proven(f)
-	if len(f.Assumptions) > 0 {
-		m.line("")
-		m.line("### Assumed, because nothing was stated")
-		m.line("")
-		for _, a := range foldAssumptions(f) {
-			m.line("- " + md(a))
-		}
-	}
+	m.list("Assumed, because nothing was stated", foldAssumptions(f))
+	m.list("Not read", f.NotRead)
 	m.line("")
 	m.line(md(fmt.Sprintf("Judged by parts tables %s, policy %s.", f.PartsVersion, f.PolicyVersion)))
 }

@@ -4,6 +4,7 @@ import (
 	"io"
 	"net/url"
 	"path"
+	"path/filepath"
 	"strings"
 
 	"railproof/checks"
@@ -190,11 +191,13 @@ func sarifPlace(at netlist.Position, file, element string) sarifLocation {
 
 // sarifArtifactOf turns a path into a URI, relative to the source root unless it is absolute.
 func sarifArtifactOf(file string) sarifArtifact {
+	absolute := filepath.IsAbs(file)
 	file = path.Clean(slashed(file))
-	if strings.HasPrefix(file, "/") {
-		return sarifArtifact{URI: (&url.URL{Scheme: "file", Path: file}).String()}
+	if absolute {
+		return sarifArtifact{URI: (&url.URL{Scheme: "file", Path: "/" + strings.TrimPrefix(file, "/")}).String()}
 	}
-	return sarifArtifact{URI: strings.TrimPrefix((&url.URL{Path: file}).String(), "./"), BaseID: sourceRoot}
+	// A first segment with a colon would be read as a scheme, so String puts ./ before it.
+	return sarifArtifact{URI: (&url.URL{Path: file}).String(), BaseID: sourceRoot}
 }
 
 func sarifFaults(f *File) []sarifNotification {

@@ -3,7 +3,9 @@ package report
 import (
 	"bytes"
 	"encoding/json"
+	"net/url"
 	"os"
+	"path/filepath"
 	"strings"
 	"testing"
 
@@ -121,6 +123,23 @@ func TestSARIFKinds(t *testing.T) {
 	}
 	if n := log.Runs[0].Invocations[0].Notifications; len(n) != 2 {
 		t.Errorf("%d notifications, want one for each unproven finding", len(n))
+	}
+}
+
+// A path becomes a URI reference that resolves to it and to nothing else (RFC 3986, 4.2: a first segment with
+// a colon must not stand bare).
+func TestSARIFArtifact(t *testing.T) {
+	for path, want := range map[string]string{
+		"boards/a.cir": "boards/a.cir", "./a.cir": "a.cir", "a:b.cir": "./a:b.cir", "100%?#.cir": "100%25%3F%23.cir", "../a.cir": "../a.cir",
+	} {
+		a := sarifArtifactOf(path)
+		if a.URI != want || a.BaseID != sourceRoot {
+			t.Errorf("%s became %+v, want %s", path, a, want)
+		}
+		u, err := url.Parse(a.URI)
+		if err != nil || u.Scheme != "" || filepath.Clean(u.Path) != filepath.Clean(path) {
+			t.Errorf("%s is read back as %v, %v", a.URI, u, err)
+		}
 	}
 }
 

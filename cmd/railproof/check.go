@@ -34,7 +34,8 @@ func newCheck(s *streams) *cobra.Command {
 		Use:   "check FILE|DIR...",
 		Short: "Check netlists and report findings",
 		Long: `check solves every condition of each netlist and judges each part. Of a folder every netlist below it is taken:
-files that end in ` + strings.Join(netlistEndings, ", ") + `. A file given by name is taken whatever its ending.
+files that end in ` + strings.Join(netlistEndings, ", ") + `; folders whose name begins with a dot are passed over. A file
+given by name is taken whatever its ending.
 
 When an input cannot be read, its faults stand on the error stream, no FILE is written, and the status is 2.`,
 		Args: cobra.MinimumNArgs(1),
@@ -66,6 +67,9 @@ func runCheck(ctx context.Context, s *streams, o *checkOptions, args []string) e
 		return err
 	}
 	if err := o.validate(len(files)); err != nil {
+		return err
+	}
+	if err := spare(named(targets), append(o.reads(files...), o.baseline)); err != nil {
 		return err
 	}
 	inputs := checkAll(ctx, s, o, files, drawn.Now)

@@ -42,6 +42,9 @@ func runCompare(s *streams, o *compareOptions, before, after string) error {
 	if err != nil {
 		return err
 	}
+	if err := spare(named(targets), []string{before, after}); err != nil {
+		return err
+	}
 	oldText, err := os.ReadFile(before)
 	if err != nil {
 		return err

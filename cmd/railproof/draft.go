@@ -2,6 +2,8 @@ package main
 
 import (
 	"context"
+	"fmt"
+	"os"
 	"time"
 
 	"github.com/spf13/cobra"
@@ -26,11 +28,17 @@ func newDraft(s *streams) *cobra.Command {
 		RunE:  func(c *cobra.Command, args []string) error { return runDraft(c.Context(), s, &o, args[0]) },
 	}
 	o.sourceFlags.add(c)
-	c.Flags().StringVarP(&o.file, "output", "o", "", "write to `FILE` instead of the standard output")
+	c.Flags().StringVarP(&o.file, "output", "o", "", "write to the new `FILE` instead of the standard output")
 	return c
 }
 
 func runDraft(ctx context.Context, s *streams, o *draftOptions, file string) error {
+	if info, err := os.Stat(o.file); o.file != "" && err == nil && info.Mode().IsRegular() {
+		return fmt.Errorf("%s is there already, and a sheet may have been filled in by hand; expected the name of a new file", o.file)
+	}
+	if err := o.validate(1); err != nil {
+		return err
+	}
 	options := o.options(file)
 	options.Now = time.Now()
 	result, diagnostics, err := checks.Run(ctx, options)

@@ -13,8 +13,8 @@ import (
 var netlistEndings = []string{".cir", ".net", ".sp", ".spice", ".ckt"}
 
 // findInputs turns arguments into files: a file stands for itself whatever its ending; a folder for every
-// netlist below it, in the order of their paths. Folders whose name begins with a dot are passed over, and
-// links are not followed. A file that is named twice is taken once.
+// netlist below it, in the order of their paths. Folders whose name begins with a dot are passed over; a link
+// to a file counts as a file, one to a folder is not followed. A file that is named twice is taken once.
 func findInputs(arguments []string) ([]string, error) {
 	var files []string
 	for _, a := range arguments {
@@ -53,8 +53,10 @@ func netlistsBelow(folder string) ([]string, error) {
 			if path != folder && strings.HasPrefix(d.Name(), ".") {
 				return filepath.SkipDir
 			}
-		case d.Type().IsRegular() && slices.Contains(netlistEndings, strings.ToLower(filepath.Ext(path))):
-			found = append(found, filepath.Clean(path))
+		case slices.Contains(netlistEndings, strings.ToLower(filepath.Ext(path))):
+			if info, err := os.Stat(path); err != nil || info.Mode().IsRegular() {
+				found = append(found, filepath.Clean(path)) // a dangling link is reported with the unread files
+			}
 		}
 		return nil
 	})

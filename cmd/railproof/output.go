@@ -4,7 +4,6 @@ import (
 	"bytes"
 	"fmt"
 	"io"
-	"os"
 	"path/filepath"
 	"slices"
 	"strings"
@@ -67,7 +66,19 @@ func (o *outputFlags) targets(known []string) ([]target, error) {
 	return list, nil
 }
 
-// deliver renders every target before the first is written, so that a failure leaves no half of them.
+// named lists the files of the targets.
+func named(list []target) []string {
+	var files []string
+	for _, t := range list {
+		if t.file != "" {
+			files = append(files, t.file)
+		}
+	}
+	return files
+}
+
+// deliver renders every target and lays it down beside its place before the first is put there, so that a
+// failure leaves no half of them.
 func deliver(s *streams, list []target, render func(w io.Writer, format string, style report.Style) error) error {
 	pages := make([]bytes.Buffer, len(list))
 	for k, t := range list {
@@ -81,43 +92,33 @@ func deliver(s *streams, list []target, render func(w io.Writer, format string, 
 			return err
 		}
 	}
+	var laid []*replacement
+	defer func() {
+		for _, r := range laid {
+			r.drop()
+		}
+	}()
+	for k, t := range list {
+		if t.file == "" {
+			continue
+		}
+		r, err := lay(t.file, pages[k].Bytes())
+		if err != nil {
+			return err
+		}
+		laid = append(laid, r)
+	}
 	for k, t := range list {
 		if t.file == "" {
 			if _, err := s.out.Write(pages[k].Bytes()); err != nil {
 				return err
 			}
-			continue
 		}
-		if err := replaceFile(t.file, pages[k].Bytes()); err != nil {
+	}
+	for _, r := range laid {
+		if err := r.put(); err != nil {
 			return err
 		}
 	}
 	return nil
-}
-
-// replaceFile writes a file beside its place and renames it there, so that a reader sees the old bytes or
-// the new ones. A link is followed; what is no regular file, such as a pipe, is written to directly.
-func replaceFile(name string, content []byte) error {
-	if real, err := filepath.EvalSymlinks(name); err == nil {
-		name = real
-		if info, err := os.Stat(name); err == nil && !info.Mode().IsRegular() {
-			return os.WriteFile(name, content, 0o666)
-		}
-	}
-	temporary := filepath.Join(filepath.Dir(name), fmt.Sprintf(".%s.%d.part", filepath.Base(name), os.Getpid()))
-	f, err := os.OpenFile(temporary, os.O_WRONLY|os.O_CREATE|os.O_EXCL, 0o666)
-	if err != nil {
-		return err
-	}
-	_, err = f.Write(content)
-	if closed := f.Close(); err == nil {
-		err = closed
-	}
-	if err == nil {
-		err = os.Rename(temporary, name)
-	}
-	if err != nil {
-		os.Remove(temporary)
-	}
-	return err
 }

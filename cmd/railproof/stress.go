@@ -23,7 +23,8 @@ func newStress(s *streams) *cobra.Command {
 		Use:   "stress FILE",
 		Short: "Print the stress table of every part, rated or not",
 		Long: `stress prints what every part is subjected to, at its worst over all conditions. With --nominal the netlist is
-solved once, exactly as written: no variation of line, load or tolerance.`,
+solved once, exactly as written: no variation of line, load or tolerance. The worst over all conditions holds the
+switch-on anyway; --cold-start adds it to the netlist as written.`,
 		Args: cobra.ExactArgs(1),
 		RunE: func(c *cobra.Command, args []string) error { return runStress(c.Context(), s, &o, args[0]) },
 	}
@@ -40,6 +41,9 @@ func runStress(ctx context.Context, s *streams, o *stressOptions, file string) e
 		return err
 	}
 	if err := o.validate(1); err != nil {
+		return err
+	}
+	if err := spare(named(targets), o.reads(file)); err != nil {
 		return err
 	}
 	result, diagnostics, err := checks.Stresses(ctx, o.options(file), o.nominal, o.cold)

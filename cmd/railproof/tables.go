@@ -2,6 +2,8 @@ package main
 
 import (
 	"fmt"
+	"path/filepath"
+	"strings"
 
 	"github.com/spf13/cobra"
 
@@ -38,6 +40,18 @@ func (f *sourceFlags) validate(files int) error {
 		return fmt.Errorf("--jobs %d; expected 0 or more", f.jobs)
 	}
 	return nil
+}
+
+// reads lists every file that a run over netlists reads by name: the netlists, their sheets, and the tables.
+func (f *sourceFlags) reads(netlists ...string) []string {
+	list := []string{f.duty, f.parts}
+	if strings.HasSuffix(strings.ToLower(f.policy), ".csv") {
+		list = append(list, f.policy)
+	}
+	for _, n := range netlists {
+		list = append(list, n, strings.TrimSuffix(n, filepath.Ext(n))+".duty")
+	}
+	return list
 }
 
 func (f *sourceFlags) options(file string) checks.Options {
