@@ -3,10 +3,8 @@ package report
 import (
 	"fmt"
 	"io"
-	"math"
 	"path"
 	"slices"
-	"strings"
 
 	"railproof/checks"
 )
@@ -36,8 +34,9 @@ const marginStep = 0.005
 type Comparison struct {
 	Old, New  string // names of the reports
 	Changes   []Difference
-	Unchanged int    // violated and unproven findings that stay as they were
-	Gated     Totals // of what is new or worse
+	Judges    []JudgeChange // files judged by other tables than before: then a change need not be one of the supply
+	Unchanged int           // violated and unproven findings that stay as they were
+	Gated     Totals        // of what is new or worse
 	Gate      Gate
 	Exit      Exit
 }
@@ -48,6 +47,15 @@ type Difference struct {
 	File     string
 	Old, New *jsonFinding // nil: absent
 }
+
+// JudgeChange names the revisions of parts tables and policy that a file was judged by, where they differ.
+type JudgeChange struct {
+	File     string
+	Old, New Judges
+}
+
+// Judges is what a file was judged by.
+type Judges struct{ Parts, Policy string }
 
 // CompareReports compares two JSON reports. The gate looks at what is new or worse.
 func CompareReports(oldName string, oldText []byte, newName string, newText []byte, gate Gate, allowUnproven bool) (*Comparison, error) {
@@ -121,6 +129,9 @@ func pairFiles(before, after []jsonFile) [][2]*jsonFile {
 }
 
 func (c *Comparison) files(before, after *jsonFile) {
+	if before != nil && after != nil && before.Tables != after.Tables {
+		c.Judges = append(c.Judges, JudgeChange{after.File, Judges(before.Tables), Judges(after.Tables)})
+	}
 	old := map[string]*jsonFinding{}
 	if before != nil {
 		for k := range before.Findings {
@@ -187,83 +198,12 @@ func (c *Comparison) close(allowUnproven bool) {
 	c.Exit = exitOf(false, c.Gate, c.Gated, allowUnproven)
 }
 
-// WriteText writes the comparison for people.
-func (c *Comparison) WriteText(w io.Writer, colour bool) error {
-	l := &ledger{palette: newPalette(colour)}
-	l.hang("", "", c.Old+"  to  "+c.New)
-	count := map[Change]int{}
-	for _, d := range c.Changes {
-		count[d.Change]++
-	}
-	var words []string
-	for _, change := range changeOrder {
-		words = append(words, fmt.Sprintf("%s: %d", change, count[change]))
-	}
-	l.line(strings.Join(append(words, fmt.Sprintf("unchanged: %d", c.Unchanged)), "   "))
-	for _, d := range c.Changes {
-		l.difference(&d)
-	}
-	l.line("")
-	word, paint := "PASSED", l.proven
-	switch c.Exit {
-	case ExitViolated:
-		word, paint = "STOPPED", l.major
-	case ExitUnproven:
-		word, paint = "NOT PROVEN", l.unproven
-	}
-	why := fmt.Sprintf("gate %s on what is new or worse: %s", c.Gate, counted(c.Gate.Stops, "violation"))
-	l.hangPainted(paint, word, "  ", joinWith(why, openWords(c.Gated), ", "))
-	_, err := io.WriteString(w, l.out.String())
-	return err
-}
-
-func (l *ledger) difference(d *Difference) {
-	f := d.New
-	if f == nil {
-		f = d.Old
-	}
-	label := strings.ToUpper(string(d.Change))
-	paint := l.proven
-	if d.Change == ChangeNew || d.Change == ChangeWorse {
-		paint = l.of(f.Verdict, severityOf(f))
-	}
-	title, _ := titleOf(f.Check)
-	element := f.Element
-	if element == "" {
-		element = "circuit"
-	}
-	l.line("")
-	l.hangPainted(paint, label, strings.Repeat(" ", max(1, labelWidth-len(label))), element+"  "+title)
-	l.say("was", outcomeWords(d.Old))
-	l.say("is", outcomeWords(d.New))
-	if f.At != nil {
-		l.say("at", fmt.Sprintf("%s:%d", f.At.File, f.At.Line))
-	}
-}
-
-// outcomeWords tells a finding of a JSON report in a line.
-func outcomeWords(f *jsonFinding) string {
-	if f == nil {
-		return "absent"
-	}
-	text := string(f.Verdict)
-	if f.Severity != nil && f.Verdict == checks.Violated {
-		text = *f.Severity
-	}
-	if f.Stress != nil && !math.IsNaN(float64(f.Stress.Value)) {
-		text += fmt.Sprintf(", %s %.4g %s", f.Stress.Quantity, float64(f.Stress.Value), f.Stress.Unit)
-		if f.Limit != nil && !math.IsNaN(float64(f.Limit.Value)) {
-			text += fmt.Sprintf(" (limit %.4g %s, margin %s)", float64(f.Limit.Value), f.Stress.Unit, marginWords(float64(f.Margin)))
-		}
-	}
-	return text
-}
-
 type jsonComparison struct {
 	Schema    string           `json:"schema"`
 	Old       string           `json:"old"`
 	New       string           `json:"new"`
 	Changes   []jsonDifference `json:"changes"`
+	Judges    []jsonJudges     `json:"tables_changed"`
 	Unchanged int              `json:"unchanged"`
 	Gate      jsonGate         `json:"gate"`
 	Exit      Exit             `json:"exit"`
@@ -276,14 +216,23 @@ type jsonDifference struct {
 	New    *jsonFinding `json:"new"`
 }
 
+type jsonJudges struct {
+	File string     `json:"file"`
+	Old  jsonTables `json:"old"`
+	New  jsonTables `json:"new"`
+}
+
 // WriteJSON writes the comparison as one JSON document of ComparisonSchema.
 func (c *Comparison) WriteJSON(w io.Writer) error {
 	d := jsonComparison{
-		Schema: ComparisonSchema, Old: slashed(c.Old), New: slashed(c.New), Changes: []jsonDifference{}, Unchanged: c.Unchanged,
+		Schema: ComparisonSchema, Old: slashed(c.Old), New: slashed(c.New), Changes: []jsonDifference{}, Judges: []jsonJudges{}, Unchanged: c.Unchanged,
 		Gate: jsonGate{append([]checks.Severity{}, c.Gate.At...), c.Gate.Passed}, Exit: c.Exit,
 	}
 	for _, x := range c.Changes {
 		d.Changes = append(d.Changes, jsonDifference(x))
+	}
+	for _, x := range c.Judges {
+		d.Judges = append(d.Judges, jsonJudges{x.File, jsonTables(x.Old), jsonTables(x.New)})
 	}
 	return encode(w, d)
 }

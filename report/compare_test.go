@@ -90,6 +90,40 @@ func TestCompareWithItself(t *testing.T) {
 	}
 }
 
+// Changes that read the same on the diodes of a bridge are one entry, and a report judged by another policy says so.
+func TestCompareOfPolicies(t *testing.T) {
+	milder := benchResult(t)
+	milder.PolicyVersion = "rating 1111"
+	for k := range milder.Findings {
+		if f := &milder.Findings[k]; f.Check == "diode-reverse-voltage" {
+			f.Verdict, f.Severity, f.Margin = checks.Proven, "", 0.1
+		}
+	}
+	report := New([]Input{{File: milder.File, Result: milder}}, Options{Now: day})
+	c, err := CompareReports("old.json", written(t, report, "json", Style{}), "new.json", written(t, benchReport(t), "json", Style{}), Gate{}, false)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if len(c.Judges) != 1 || c.Judges[0].Old.Policy != "rating 1111" || c.Judges[0].New.Policy != "common 0000" {
+		t.Errorf("judged by %+v", c.Judges)
+	}
+	var text, document bytes.Buffer
+	if err := c.WriteText(&text, false); err != nil {
+		t.Fatal(err)
+	}
+	if err := c.WriteJSON(&document); err != nil {
+		t.Fatal(err)
+	}
+	for _, want := range []string{"policy rating 1111, now\n  common 0000", "NEW       D1..D4  peak reverse voltage", "bench/supply.cir:3, 4, 5, 6", "new: 4 "} {
+		if !strings.Contains(text.String(), want) {
+			t.Errorf("%q is missing:\n%s", want, text.String())
+		}
+	}
+	if err := validate(schemaOf(t, "comparison-1"), document.Bytes()); err != nil {
+		t.Error(err)
+	}
+}
+
 // rubbed is the bench supply after its diode rating was taken away: D1 is no longer judged.
 func rubbed(t testing.TB) *checks.Result {
 	r := benchResult(t)

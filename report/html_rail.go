@@ -36,6 +36,7 @@ const (
 	stagesInRow = 6
 	rowGap      = 22
 	lineLetters = 20 // letters that fit into a box
+	roleLetters = 24 // of the small ones that name its role
 )
 
 // glyphs are the symbols of the stages after IEC 60617, drawn around (0,0) in 40 x 24.
@@ -101,7 +102,11 @@ func drawStage(s netlist.RailStage, x, y int, worst map[string]*Finding) stageDr
 		d.Glyph = ""
 	}
 	line := func(row int, class, text string) {
-		d.Lines = append(d.Lines, drawnText{x + 8, y + row, class, clip(text)})
+		letters := lineLetters
+		if class == "role" {
+			letters = roleLetters
+		}
+		d.Lines = append(d.Lines, drawnText{x + 8, y + row, class, clip(text, letters)})
 	}
 	title := string(s.Role)
 	if s.Arrangement != "" && s.Role != netlist.StageSource {
@@ -137,11 +142,11 @@ func worstAmong(names []string, worst map[string]*Finding) *Finding {
 
 func rankOf(f *Finding) int { return 10*verdictRank(f.Verdict) + severityRank(f.Severity) }
 
-// clip shortens a text to what fits into a box.
-func clip(text string) string {
+// clip shortens a text to a number of letters.
+func clip(text string, letters int) string {
 	runes := []rune(printable(text))
-	if len(runes) <= lineLetters {
+	if len(runes) <= letters {
 		return string(runes)
 	}
-	return string(runes[:lineLetters-1]) + "…"
+	return string(runes[:letters-1]) + "…"
 }

@@ -57,7 +57,7 @@ func chromium(t *testing.T, page []byte, width string) (document, console string
 	if err := os.WriteFile(file, page, 0o666); err != nil {
 		t.Fatal(err)
 	}
-	command := exec.Command(program, "--headless", "--no-sandbox", "--disable-gpu", "--disable-background-networking", "--enable-logging=stderr",
+	command := exec.Command(program, "--headless", "--no-sandbox", "--disable-gpu", "--disable-quic", "--no-first-run", "--disable-background-networking", "--enable-logging=stderr",
 		"--user-data-dir="+filepath.Join(folder, "profile"), "--window-size="+width+",1600", "--timeout=20000", "--dump-dom", "file://"+file)
 	var out, log bytes.Buffer
 	command.Stdout, command.Stderr = &out, &log

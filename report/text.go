@@ -233,14 +233,14 @@ func (l *ledger) fill(words []string, gap string) []string {
 	return lines
 }
 
-// wrap breaks text at blanks into lines of at most limit columns; a longer word stands alone. Wide gaps
-// inside a line are kept.
+// wrap breaks text at blanks into lines of at most limit columns; a longer word stands alone, and a per cent
+// sign stays with its number. Wide gaps inside a line are kept.
 func wrap(text string, limit int) []string {
 	var lines []string
 	for {
 		at, column := -1, 0
 		for k, r := range text {
-			if r == ' ' && k > 0 {
+			if r == ' ' && k > 0 && !strings.HasPrefix(text[k+1:], "%") {
 				if column > limit && at > 0 {
 					break
 				}

@@ -80,6 +80,9 @@ func TestWrap(t *testing.T) {
 	if strings.Join(got, "|") != "one two|three four" {
 		t.Errorf("%q", got)
 	}
+	if got := wrap("C1 at +20 %, R1", 9); strings.Join(got, "|") != "C1 at|+20 %, R1" {
+		t.Errorf("a per cent sign is torn from its number: %q", got)
+	}
 	if got := wrap("unbreakablelongword next", 8); strings.Join(got, "|") != "unbreakablelongword|next" {
 		t.Errorf("%q", got)
 	}
