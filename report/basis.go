@@ -12,13 +12,13 @@ import (
 // WriteCatalogue lists every check with its title, headline checks marked.
 func WriteCatalogue(w io.Writer, colour bool) error {
 	l := &ledger{palette: newPalette(colour)}
-	rows := [][]string{{"check", "", "judges"}}
+	rows := [][]string{{"check", "judges"}}
 	for _, c := range Catalogue() {
-		mark := ""
+		title := c.Title
 		if c.Headline {
-			mark = "headline"
+			title += " (headline)"
 		}
-		rows = append(rows, []string{c.Name, mark, c.Title})
+		rows = append(rows, []string{c.Name, title})
 	}
 	l.columns(rows)
 	_, err := io.WriteString(w, l.out.String())

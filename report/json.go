@@ -288,8 +288,12 @@ func toJSONNeeds(f *Finding) *jsonNeeds {
 }
 
 func toJSONStress(s *study.Stress) jsonStress {
+	inexact := number(s.Error)
+	if math.IsNaN(s.Value) || math.IsInf(s.Value, 0) {
+		inexact = number(math.NaN()) // no value, no error
+	}
 	return jsonStress{
-		Quantity: s.Quantity, Value: number(s.Value), Unit: s.Unit.String(), Error: number(s.Error), Phase: number(s.Phase), Unproven: s.Unproven,
+		Quantity: s.Quantity, Value: number(s.Value), Unit: s.Unit.String(), Error: inexact, Phase: number(s.Phase), Unproven: s.Unproven,
 		Condition: jsonCondition{s.Condition.Name, s.Condition.Line, s.Condition.Load, s.Condition.Start, s.Condition.Also},
 	}
 }

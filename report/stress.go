@@ -8,7 +8,6 @@ import (
 
 	"railproof/checks"
 	"railproof/checks/study"
-	"railproof/netlist/quantity"
 )
 
 // StressSchema names the layout of the JSON stress table.
@@ -59,60 +58,6 @@ func (t *StressTable) WriteJSON(w io.Writer) error {
 		d.Stresses = append(d.Stresses, jsonStressRow{s.Element, s.Quantity, j.Value, j.Unit, j.Condition, j.Error, j.Phase, s.Unproven})
 	}
 	return encode(w, d)
-}
-
-// WriteText writes the table for people.
-func (t *StressTable) WriteText(w io.Writer, colour bool) error {
-	l := &ledger{palette: newPalette(colour)}
-	f := &File{Name: t.File, Title: t.Title, Circumstances: t.Circumstances, RailMap: t.RailMap, Assumptions: t.Assumptions}
-	if t.Nominal {
-		f.Circumstances = checks.Circumstances{Line: "as written", Load: "as written", Ambient: "as written", Policy: "none"}
-		f.Assumptions = nil
-	}
-	l.head(f)
-	l.line("")
-	rows := [][]string{{"part", "quantity", "worst", "+-", "when"}}
-	if t.Nominal {
-		rows[0][2] = "value"
-	}
-	last := ""
-	unproven := false
-	for k := range t.Stresses {
-		s := &t.Stresses[k]
-		name := printable(s.Element)
-		if name == last {
-			name = ""
-		} else {
-			last = name
-		}
-		value := quantity.Format(s.Value, s.Unit, 4)
-		if s.Unproven != "" {
-			value, unproven = value+" ?", true
-		}
-		rows = append(rows, []string{name, string(s.Quantity), value, quantity.Format(s.Error, s.Unit, 1), t.when(s)})
-	}
-	l.table(rows)
-	if unproven {
-		l.section("Values marked ? prove nothing")
-		said := map[string]bool{}
-		for k := range t.Stresses {
-			if why := t.Stresses[k].Unproven; why != "" && !said[why] {
-				said[why] = true
-				l.hang("  ", "    ", why)
-			}
-		}
-	}
-	l.listAssumptions(f)
-	_, err := io.WriteString(w, l.out.String())
-	return err
-}
-
-// when is the condition of a stress in words; as written there is but one, and only the moment is told.
-func (t *StressTable) when(s *study.Stress) string {
-	if t.Nominal && s.Condition.Start != "cold" {
-		return momentWords(s)
-	}
-	return whenWords(s)
 }
 
 // WriteCSV writes one line a stress, SI units.

@@ -62,13 +62,16 @@ func (l *ledger) listProven(f *File, all bool) {
 	}
 }
 
+// widestCell is how many columns a cell takes before it wraps; the longest name of a quantity fits.
+const widestCell = 25
+
 // table writes rows under a heading; the last column takes what is left of the line and wraps.
 func (l *ledger) table(rows [][]string) {
 	last := len(rows[0]) - 1
 	wide := make([]int, last)
 	for _, row := range rows {
 		for k := range wide {
-			wide[k] = min(max(wide[k], columns(row[k])), 24)
+			wide[k] = min(max(wide[k], columns(row[k])), widestCell)
 		}
 	}
 	indent := 2
