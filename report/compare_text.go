@@ -60,6 +60,7 @@ type foldedDifference struct {
 	elements []string
 	was, is  string
 	lines    []string
+	place    string // the file that the last of the lines names
 }
 
 // foldDifferences gathers differences that read the same, as those on the diodes of one bridge do.
@@ -79,10 +80,10 @@ func foldDifferences(list []Difference) []foldedDifference {
 		out[k].elements = append(out[k].elements, f.Element)
 		if f.At != nil && f.At.Line > 0 {
 			line := fmt.Sprintf("%s:%d", f.At.File, f.At.Line)
-			if len(out[k].lines) > 0 && f.At.File == out[k].finding().At.File {
+			if len(out[k].lines) > 0 && f.At.File == out[k].place {
 				line = fmt.Sprint(f.At.Line)
 			}
-			out[k].lines = append(out[k].lines, line)
+			out[k].lines, out[k].place = append(out[k].lines, line), f.At.File
 		}
 	}
 	return out
