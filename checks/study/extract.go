@@ -191,8 +191,8 @@ func (c *collector) elementStresses(id netlist.ElementID, e *netlist.Element, de
 		c.put(MeanCurrent, quantity.Ampere, i, mean)
 		c.put(RMSCurrent, quantity.Ampere, i, rms)
 		c.put(PeakCurrent, quantity.Ampere, i, magnitude)
-		if !c.out.set.Nominal {
-			c.put(MinCurrent, quantity.Ampere, scaled(-1, i), smallest) // of a zener: its working current
+		if !c.out.set.Nominal && c.plan.supply.IsZener(id) {
+			c.put(MinCurrent, quantity.Ampere, scaled(-1, i), smallest) // its working current
 		}
 		c.put(MeanPower, quantity.Watt, power, mean)
 	case netlist.Capacitor:
