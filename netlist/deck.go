@@ -73,6 +73,7 @@ type collector struct {
 	titleLine   *syntax.Line
 	depth       int
 	ended       bool
+	unread      bool // something that may define names was not read
 }
 
 func (c *collector) fault(at Position, what, expected string) {
@@ -82,12 +83,16 @@ func (c *collector) fault(at Position, what, expected string) {
 }
 
 func (c *collector) remark(kind RemarkKind, at Position, element, text string) {
+	c.unread = c.unread || kind == RemarkLibraryNotRead
 	c.remarks = append(c.remarks, Remark{Kind: kind, At: at, Element: element, Text: text})
 }
 
 // analysis cards and output cards are skipped without complaint.
 var silent = words(`tran ac dc op tf sens noise disto pz print plot probe probe64 meas measure save four fourier
 	ic nodeset width option options backanno end ends title step wave savebias loadbias net mc wcase`)
+
+// sameCard are other spellings of dot cards.
+var sameCard = map[string]string{"macro": "subckt", "eom": "ends", "params": "param", "parameter": "param"}
 
 func words(text string) map[string]bool {
 	set := map[string]bool{}
@@ -127,6 +132,9 @@ func (c *collector) block(lines []syntax.Line, section string) {
 			continue
 		}
 		key := strings.ToLower(word[1:])
+		if same, ok := sameCard[key]; ok {
+			key = same
+		}
 		if key == "lib" {
 			name, end := sectionHead(l.Text), -1
 			if name != "" {
@@ -234,11 +242,14 @@ func (c *collector) directive(key string, l *syntax.Line) {
 		c.current.models[name] = l
 		return
 	}
+	if key == "step" || key == "data" {
+		c.unread = true // it may give values to names that no card defines
+	}
 	if silent[key] && key != "title" && key != "ends" && key != "options" && key != "option" {
 		return
 	}
 	switch key {
-	case "subckt", "ends", "param", "params", "parameter", "func", "global", "temp", "temperature", "title", "options", "option":
+	case "subckt", "ends", "param", "func", "global", "temp", "temperature", "title", "options", "option":
 	default:
 		if !c.skipped[key] {
 			c.skipped[key] = true
@@ -293,6 +304,10 @@ func (c *collector) directive(key string, l *syntax.Line) {
 			}
 		}
 	default:
+		if !plainAssignments(card.Items) {
+			c.current.params = append(c.current.params, c.looseParameters(l)...)
+			return
+		}
 		c.current.params = append(c.current.params, c.assignments(card.Items, l)...)
 	}
 }
@@ -334,7 +349,9 @@ func (c *collector) subckt(card *syntax.DirectiveCard, l *syntax.Line) {
 			if strings.HasSuffix(i.Assign.Key.Text(), ":") {
 				continue
 			}
-			positional = append(positional, i.Assign.Key)
+			if i.Assign.Key.Word != "/" { // a stroke between the pins and the parameters
+				positional = append(positional, i.Assign.Key)
+			}
 		} else if i.Group != nil {
 			positional = append(positional, atoms(i.Group.Items)...)
 		} else {

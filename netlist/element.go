@@ -200,7 +200,7 @@ func (x *expander) passive(lv *level, c *elementCard) {
 		if !found && w.IsExpression() {
 			v, err := lv.env.atom(w)
 			if err != nil {
-				x.fault(c.line.Position(w.Pos.Offset), err.Error(), "a value")
+				x.noValue(lv, c, nodes, w, err, "a value")
 				return
 			}
 			value, found = v, true
@@ -223,7 +223,7 @@ func (x *expander) passive(lv *level, c *elementCard) {
 		if v, ok := c.assigned(k); ok && !found {
 			n, err := lv.env.evaluate(v, 0)
 			if err != nil {
-				x.fault(c.line.Start(), err.Error(), "a value")
+				x.noValue(lv, c, nodes, v.Atom, err, "a value")
 				return
 			}
 			value, found = n, true
@@ -246,6 +246,12 @@ func (x *expander) passive(lv *level, c *elementCard) {
 		return
 	}
 	x.doubtfulValue(c, name, value, number)
+	switch copies := x.copies(lv, c); c.letter {
+	case 'C':
+		value *= copies
+	default:
+		value /= copies
+	}
 	var initial *float64
 	if v, ok := c.assigned("ic"); ok {
 		if n, err := lv.env.evaluate(v, 0); err == nil {
@@ -260,6 +266,37 @@ func (x *expander) passive(lv *level, c *elementCard) {
 	case 'L':
 		x.add(lv, c, nodes, Inductor{Henries: value, Initial: initial}, typeName)
 	}
+}
+
+// noValue is an element whose value cannot be computed: an error, unless the name may be defined in what was
+// not read.
+func (x *expander) noValue(lv *level, c *elementCard, nodes []NodeID, w *syntax.Atom, err error, expected string) {
+	if x.unread {
+		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "its value is not known: " + err.Error()}, "")
+		return
+	}
+	at := c.line.Start()
+	if w != nil {
+		at = c.line.Position(w.Pos.Offset)
+	}
+	x.fault(at, err.Error(), expected)
+}
+
+// copies is m= of a card: how many equal parts in parallel one symbol stands for.
+func (x *expander) copies(lv *level, c *elementCard) float64 {
+	v, ok := c.assigned("m")
+	if !ok {
+		return 1
+	}
+	m, err := lv.env.evaluate(v, 0)
+	if err != nil || m <= 0 {
+		return 1
+	}
+	if m != 1 {
+		x.remark(RemarkModel, c.line.Start(), lv.prefix+c.shown,
+			fmt.Sprintf("m=%g makes one symbol stand for %g in parallel: ratings hold for one part, stresses for all of them", m, m))
+	}
+	return m
 }
 
 // unitAlone reports whether the word after a number is its unit: `10 uF`.

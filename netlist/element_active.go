@@ -33,6 +33,7 @@ func (x *expander) diode(lv *level, c *elementCard) {
 			d.Area = a
 		}
 	}
+	d.Area *= x.copies(lv, c)
 	x.add(lv, c, nodes, d, x.typeOf(typeName, c))
 }
 
@@ -96,6 +97,7 @@ func (x *expander) transistor(lv *level, c *elementCard) {
 			t.Area = v
 		}
 	}
+	t.Area *= x.copies(lv, c)
 	x.add(lv, c, nodes, t, typeName)
 }
 
@@ -128,6 +130,12 @@ func (x *expander) fet(lv *level, c *elementCard) {
 				}
 			}
 		}
+	}
+	if copies := x.copies(lv, c); copies != 1 && f.Width > 0 {
+		f.Width *= copies
+	} else if copies != 1 {
+		x.add(lv, c, nodes, Unknown{Letter: 'M', Why: "m= needs a stated width"}, typeName)
+		return
 	}
 	x.add(lv, c, nodes, f, typeName)
 }
@@ -169,6 +177,10 @@ func (x *expander) finish() {
 			e.Device = x.coupling(l.level, c, find)
 			continue
 		}
+		if m := x.copies(l.level, c); m != 1 {
+			e.Device = Unknown{Letter: c.letter, Why: "copies in parallel (m=) are not modelled here"}
+			continue
+		}
 		if len(c.words) < 4 {
 			e.Device = Unknown{Letter: c.letter, Why: "its controlling source or its gain is missing"}
 			continue
@@ -178,6 +190,10 @@ func (x *expander) finish() {
 			continue
 		}
 		control, ok := find(c.words[2])
+		if !ok && x.unread {
+			e.Device = Unknown{Letter: c.letter, Why: "it is controlled by " + c.words[2].Text() + ", which is not in what was read"}
+			continue
+		}
 		if !ok {
 			x.fault(c.line.Position(c.words[2].Pos.Offset), fmt.Sprintf("%s is controlled by %s, which is not there", c.shown, c.words[2].Text()), "the name of a voltage source")
 			continue
@@ -189,6 +205,10 @@ func (x *expander) finish() {
 			continue
 		}
 		gain, err := l.level.env.atom(c.words[3])
+		if err != nil && x.unread {
+			e.Device = Unknown{Letter: c.letter, Why: "its gain is not known: " + err.Error()}
+			continue
+		}
 		if err != nil {
 			x.fault(c.line.Position(c.words[3].Pos.Offset), err.Error(), "a gain")
 			continue
@@ -208,8 +228,31 @@ func (x *expander) coupling(lv *level, c *elementCard, find func(*syntax.Atom) (
 	k := Coupling{Factor: 1}
 	words := c.words
 	last := words[len(words)-1]
-	if _, named := find(last); !named {
+	stated, ok := c.assigned("k")
+	if !ok {
+		stated, ok = c.assigned("coupling")
+	}
+	_, named := find(last)
+	if !named && len(words) > 3 && !ok {
+		if _, err := lv.env.atom(last); err != nil {
+			if _, err := lv.env.atom(words[len(words)-2]); err == nil {
+				return Unknown{Letter: 'K', Why: "its core model " + last.Text() + " is not modelled"}
+			}
+		}
+	}
+	switch {
+	case ok:
+		v, err := lv.env.evaluate(stated, 0)
+		if err != nil {
+			x.fault(c.line.Start(), err.Error(), "a coupling factor")
+			return Unknown{Letter: 'K', Why: "its factor is missing"}
+		}
+		k.Factor = v
+	case !named:
 		v, err := lv.env.atom(last)
+		if err != nil && x.unread {
+			return Unknown{Letter: 'K', Why: "its factor is not known: " + err.Error()}
+		}
 		if err != nil {
 			x.fault(c.line.Position(last.Pos.Offset), err.Error(), "a coupling factor")
 			return Unknown{Letter: 'K', Why: "its factor is missing"}
@@ -223,6 +266,9 @@ func (x *expander) coupling(lv *level, c *elementCard, find func(*syntax.Atom) (
 	}
 	for _, w := range words {
 		id, ok := find(w)
+		if !ok && x.unread {
+			return Unknown{Letter: 'K', Why: "it couples " + w.Text() + ", which is not in what was read"}
+		}
 		if !ok {
 			x.fault(c.line.Position(w.Pos.Offset), fmt.Sprintf("%s couples %s, which is not there", c.shown, w.Text()), "the name of an inductor")
 			return Unknown{Letter: 'K', Why: "an inductor is missing"}

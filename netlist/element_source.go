@@ -16,7 +16,14 @@ func (x *expander) source(lv *level, c *elementCard) {
 	var wave Waveform
 	dc, stated := 0.0, false
 	fail := func(w *syntax.Atom, err error) {
-		x.fault(c.line.Position(w.Pos.Offset), err.Error(), "a number, DC, AC or a waveform")
+		x.noValue(lv, c, nodes, w, err, "a number, DC, AC or a waveform")
+	}
+	if why := unreadWave(c, rest); why != "" {
+		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: why}, "")
+		return
+	}
+	if n := len(rest); c.letter == 'I' && n > 1 && (strings.EqualFold(rest[n-1].Text(), "load") || strings.EqualFold(rest[n-1].Text(), "step")) {
+		rest = rest[:n-1]
 	}
 	numbers := func(k int) ([]float64, int, bool) {
 		var list []float64
@@ -98,8 +105,13 @@ func (x *expander) source(lv *level, c *elementCard) {
 			k++
 		}
 	}
-	if v, ok := c.assigned("dc"); ok {
-		if n, err := lv.env.evaluate(v, 0); err == nil {
+	for _, key := range []string{"dc", "value"} {
+		if v, ok := c.assigned(key); ok && !stated {
+			n, err := lv.env.evaluate(v, 0)
+			if err != nil {
+				x.noValue(lv, c, nodes, v.Atom, err, "a number")
+				return
+			}
 			dc, stated = n, true
 		}
 	}
@@ -123,6 +135,34 @@ func (x *expander) source(lv *level, c *elementCard) {
 		}
 	}
 	x.add(lv, c, nodes, s, "")
+}
+
+// unreadWave says why the waveform of a source cannot be modelled, empty if it can.
+func unreadWave(c *elementCard, rest []*syntax.Atom) string {
+	for _, key := range []string{"tbl", "table", "wavefile"} {
+		if hasKey(c, key) {
+			return "a waveform given by " + key + "= is not modelled"
+		}
+	}
+	line := false
+	for _, w := range rest {
+		switch text := strings.ToLower(w.Text()); {
+		case w.IsExpression():
+		case text == "trnoise" || text == "trrandom" || text == "noise" || text == "random" || text == "external" || text == "port" || text == "pat":
+			return "a waveform of kind " + text + " is not modelled"
+		case text == "pwl":
+			line = true
+		case line && (text == "repeat" || text == "r" || strings.HasPrefix(text, "+")):
+			return "a piecewise line with repeats or relative times is not modelled"
+		}
+	}
+	if m, ok := c.assigned("m"); ok && (m.Atom == nil || m.Atom.Text() != "1") {
+		return "copies in parallel (m=) are not modelled here"
+	}
+	if line && (hasKey(c, "r") || hasKey(c, "repeat") || hasKey(c, "td")) {
+		return "a piecewise line with repeats or delay is not modelled"
+	}
+	return ""
 }
 
 func hasKey(c *elementCard, key string) bool { _, ok := c.assigned(key); return ok }
@@ -241,14 +281,22 @@ func (x *expander) voltageControlled(lv *level, c *elementCard) {
 			return
 		}
 	}
+	if len(rest) < 3 && len(c.assigns) > 0 {
+		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "what it gives by " + c.assigns[0].name + "= is not modelled"}, "")
+		return
+	}
 	if len(rest) < 3 {
 		x.fault(c.line.Start(), fmt.Sprintf("%s has %d words behind its name", c.shown, len(c.words)), expectedCard[c.letter])
 		return
 	}
 	nodes = append(nodes, x.node(lv, rest[0].Text()), x.node(lv, rest[1].Text()))
+	if x.copies(lv, c) != 1 {
+		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "copies in parallel (m=) are not modelled here"}, "")
+		return
+	}
 	gain, err := lv.env.atom(rest[2])
 	if err != nil {
-		x.fault(c.line.Position(rest[2].Pos.Offset), err.Error(), "a gain")
+		x.noValue(lv, c, nodes, rest[2], err, "a gain")
 		return
 	}
 	x.add(lv, c, nodes, VoltageControlled{Output: out, Gain: gain}, "")

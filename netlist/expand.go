@@ -182,6 +182,10 @@ func (x *expander) call(lv *level, c *elementCard) {
 			break
 		}
 	}
+	c.words = c.words[:max(1, min(len(c.words), wordsAhead(c.tail)))]
+	if n := len(c.words); n > 2 && c.words[n-2].Word == "/" { // a stroke between the nodes and the name
+		c.words = append(c.words[:n-2:n-2], c.words[n-1])
+	}
 	at := len(c.words) - 1
 	name := c.words[at].Text()
 	var nodes []NodeID
@@ -210,6 +214,10 @@ func (x *expander) call(lv *level, c *elementCard) {
 		x.overflow = true
 		return
 	}
+	if x.multiplied(lv, c, definition) {
+		x.add(lv, c, nodes, Unknown{Letter: 'X', Why: "copies in parallel (m=) are not modelled here"}, name)
+		return
+	}
 	given := map[string]float64{}
 	for _, a := range c.assigns {
 		v, err := lv.env.evaluate(a.value, 0)
@@ -231,6 +239,37 @@ func (x *expander) call(lv *level, c *elementCard) {
 		inner.ports[strings.ToLower(pin)] = nodes[k]
 	}
 	x.expand(inner)
+}
+
+// wordsAhead counts the words of a call before its first KEY=value: what follows it is no node and no name.
+func wordsAhead(items []*syntax.Item) int {
+	n := 0
+	for _, i := range items {
+		switch {
+		case i.Group != nil:
+			n += len(atoms(i.Group.Items))
+		case i.Assign != nil && i.Assign.Value == nil:
+			n++
+		case i.Assign != nil && n > 0:
+			return n
+		}
+	}
+	return n
+}
+
+// multiplied reports a call with m= that the definition does not take for a parameter of its own.
+func (x *expander) multiplied(lv *level, c *elementCard, definition *scope) bool {
+	for _, a := range definition.defaults {
+		if a.name == "m" {
+			return false
+		}
+	}
+	for _, a := range definition.params {
+		if a.name == "m" {
+			return false
+		}
+	}
+	return x.copies(lv, c) != 1
 }
 
 func (x *expander) unknownWords(lv *level, c *elementCard, words []*syntax.Atom, why string) {

@@ -193,6 +193,10 @@ func (x *expander) checkParameters() {
 			continue
 		}
 		if _, err := env.value(a.name); err != nil {
+			if x.unread {
+				x.remark(RemarkNotRead, a.line.Start(), "", "parameter "+a.name+": "+err.Error())
+				continue
+			}
 			x.fault(a.line.Start(), "parameter "+a.name+": "+err.Error(), "a number or a formula of parameters")
 		}
 	}

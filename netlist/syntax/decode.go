@@ -9,7 +9,8 @@ import (
 
 // Decode turns the bytes of a netlist into text: UTF-8 with or without byte order mark, UTF-16 with one or
 // recognised by its pattern of NUL bytes, else Latin-1 with the printable additions of code page 1252 left
-// as they are. LF, CRLF and CR all end a line and become LF.
+// as they are. LF, CRLF and CR all end a line and become LF; a
+// non-breaking blank becomes a blank.
 func Decode(raw []byte) string {
 	var text string
 	switch {
@@ -33,6 +34,10 @@ func Decode(raw []byte) string {
 		}
 		text = b.String()
 	}
+	if body := strings.TrimRight(text, " \t\r\n\x1a"); strings.ContainsRune(text[len(body):], '\x1a') {
+		text = body // without the end-of-file mark of old systems
+	}
+	text = strings.ReplaceAll(text, "\u00a0", " ")
 	if strings.ContainsRune(text, '\r') {
 		text = strings.ReplaceAll(text, "\r\n", "\n")
 		text = strings.ReplaceAll(text, "\r", "\n")

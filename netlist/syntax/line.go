@@ -50,7 +50,7 @@ type Inline struct {
 }
 
 // Lines cuts text into logical lines. Comments are left out: lines that begin with * or ; or # or //, and
-// what follows ; or a $ between blanks. A + at the start of a line continues the last card. Lines that begin
+// what follows ; or a $ between blanks, or on an element // behind a blank. A + at the start of a line continues the last card. Lines that begin
 // `*:` are returned apart. The first line is returned like any other; whether it is a title is for the
 // reader to say.
 func Lines(file, text string) (lines []Line, inline []Inline, faults []Diagnostic) {
@@ -128,6 +128,8 @@ func cutComment(body string) string {
 			if strings.IndexByte(body[k+1:], '"') >= 0 {
 				quote = c
 			}
+		case c == '/' && k > 0 && blank(body[k-1]) && strings.HasPrefix(body[k:], "//") && body[0] != '.':
+			return strings.TrimRight(body[:k], " \t\x00")
 		case c == ';':
 			return strings.TrimRight(body[:k], " \t\x00")
 		case c == '$' && k > 0 && blank(body[k-1]) && (k+1 == len(body) || blank(body[k+1])):
