@@ -104,22 +104,26 @@ func words(text string) map[string]bool {
 
 // block sorts the logical lines of one file. section limits it to a `.lib NAME` section, lower case.
 func (c *collector) block(lines []syntax.Line, section string) {
-	control, inside, opened := false, section == "", c.current
+	skipTo, inside, opened := "", section == "", c.current // skipTo ends a block that is no circuit
 	for k := range lines {
 		l := &lines[k]
 		if len(c.faults) >= maxFaults {
 			return
 		}
 		word := firstWord(l.Text)
-		if control {
-			control = !strings.EqualFold(word, ".endc")
+		if skipTo != "" {
+			if strings.EqualFold(word, skipTo) {
+				skipTo = ""
+			}
 			continue
 		}
 		if c.ended {
 			if word != "" && word[0] != '.' && looksLikeElement(l.Text) && c.depth == 0 {
 				c.remark(RemarkAfterEnd, l.Start(), word, "stands behind .end and is not part of the circuit")
 			}
-			control = strings.EqualFold(word, ".control")
+			if strings.EqualFold(word, ".control") {
+				skipTo = ".endc"
+			}
 			continue
 		}
 		if word == "" || word[0] == '*' {
@@ -158,7 +162,10 @@ func (c *collector) block(lines []syntax.Line, section string) {
 		}
 		switch key {
 		case "control":
-			control = true
+			skipTo = ".endc"
+		case "data":
+			c.directive(key, l)
+			skipTo = ".enddata"
 		case "end":
 			if c.depth == 0 {
 				c.ended = true

@@ -1,6 +1,7 @@
 package netlist
 
 import (
+	"errors"
 	"fmt"
 	"strings"
 
@@ -104,6 +105,10 @@ func (x *expander) parsed(lv *level, line *syntax.Line, card *syntax.ElementCard
 	c := sortCard(line, card)
 	if need := nodesNeeded[c.letter]; len(c.words) < need {
 		x.fault(line.Start(), fmt.Sprintf("%s has %d words behind its name", c.shown, len(c.words)), expectedCard[c.letter])
+		return
+	}
+	if at := c.decimalComma(); at >= 0 {
+		x.fault(line.Position(at), "a comma inside a number", "a decimal point, as in 4.7k")
 		return
 	}
 	switch c.letter {
@@ -221,6 +226,13 @@ func (x *expander) passive(lv *level, c *elementCard) {
 	key := map[byte]string{'R': "r", 'C': "c", 'L': "l"}[c.letter]
 	for _, k := range []string{key, "value", "val"} {
 		if v, ok := c.assigned(k); ok && !found {
+			if v.Atom != nil && v.Atom.Word != "" { // a formula without marks goes on behind the first word
+				more := strings.TrimLeft(c.line.Text[v.Atom.Pos.Offset+len(v.Atom.Word):], " \t")
+				if more != "" && strings.ContainsRune("(*/+-^?", rune(more[0])) {
+					x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "its value is a formula without braces"}, "")
+					return
+				}
+			}
 			n, err := lv.env.evaluate(v, 0)
 			if err != nil {
 				x.noValue(lv, c, nodes, v.Atom, err, "a value")
@@ -268,10 +280,38 @@ func (x *expander) passive(lv *level, c *elementCard) {
 	}
 }
 
+// decimalComma finds a value of the form 4,7 on a card that takes one value, -1 if there is none.
+func (c *elementCard) decimalComma() int {
+	if !strings.ContainsRune("RCLVI", rune(c.letter)) || len(c.words) < 4 {
+		return -1
+	}
+	for _, w := range c.words[2:4] { // the value may stand behind DC or a model
+		at := w.Pos.Offset + len(w.Word)
+		text := c.line.Text
+		if _, number := spice(w.Word); number && at+1 < len(text) && text[at] == ',' && text[at+1] >= '0' && text[at+1] <= '9' {
+			if before := strings.ToLower(c.words[2].Text()); w == c.words[2] || before == "dc" || c.letter != 'V' && c.letter != 'I' {
+				return at
+			}
+		}
+	}
+	return -1
+}
+
+// areaOf reads an area factor behind a model: a bare number. Another word is named as not read.
+func (x *expander) areaOf(lv *level, c *elementCard, w *syntax.Atom) (float64, bool) {
+	n, number := quantity.ParseSpice(w.Text())
+	plain := !w.IsExpression() && number && n.Unit == "" && n.Rest == "" && !n.Coded
+	if v, err := lv.env.atom(w); err == nil && v > 0 && (plain || !number) {
+		return v, true
+	}
+	x.remark(RemarkModel, c.line.Start(), lv.prefix+c.shown, "`"+shorten(w.Text())+"` behind the model is not read")
+	return 0, false
+}
+
 // noValue is an element whose value cannot be computed: an error, unless the name may be defined in what was
 // not read.
 func (x *expander) noValue(lv *level, c *elementCard, nodes []NodeID, w *syntax.Atom, err error, expected string) {
-	if x.unread {
+	if x.unread || errors.Is(err, errNoProbe) {
 		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "its value is not known: " + err.Error()}, "")
 		return
 	}

@@ -24,7 +24,7 @@ func (x *expander) diode(lv *level, c *elementCard) {
 	for _, w := range c.words[3:] {
 		if strings.EqualFold(w.Text(), "off") {
 			d.Off = true
-		} else if v, err := lv.env.atom(w); err == nil && v > 0 {
+		} else if v, ok := x.areaOf(lv, c, w); ok {
 			d.Area = v
 		}
 	}
@@ -93,7 +93,10 @@ func (x *expander) transistor(lv *level, c *elementCard) {
 		t.Model = m.transistor()
 	}
 	for _, w := range c.words[at+1:] {
-		if v, err := lv.env.atom(w); err == nil && v > 0 {
+		if strings.EqualFold(w.Text(), "off") {
+			continue
+		}
+		if v, ok := x.areaOf(lv, c, w); ok {
 			t.Area = v
 		}
 	}
@@ -260,7 +263,13 @@ func (x *expander) coupling(lv *level, c *elementCard, find func(*syntax.Atom) (
 		k.Factor = v
 		words = words[:len(words)-1]
 	}
-	if k.Factor < -1 || k.Factor > 1 || k.Factor == 0 {
+	if named && !ok {
+		x.remark(RemarkAssumption, c.line.Start(), lv.prefix+c.shown, "states no coupling factor and is taken as 1")
+	}
+	if k.Factor == 0 {
+		return Unknown{Letter: 'K', Why: "its factor is 0"}
+	}
+	if k.Factor < -1 || k.Factor > 1 {
 		x.fault(c.line.Start(), fmt.Sprintf("a coupling factor of %g", k.Factor), "a number above 0 and up to 1")
 		return Unknown{Letter: 'K', Why: "its factor is impossible"}
 	}

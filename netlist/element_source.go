@@ -2,7 +2,6 @@ package netlist
 
 import (
 	"fmt"
-	"math"
 	"strconv"
 	"strings"
 
@@ -90,6 +89,9 @@ func (x *expander) source(lv *level, c *elementCard) {
 				x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "a waveform of kind " + text + " is not modelled"}, "")
 				return
 			}
+			if s := strings.TrimSuffix(text, "e"); s == "sin" && len(list) > 6 || text == "pulse" && len(list) > 7 {
+				x.remark(RemarkAssumption, c.line.Start(), lv.prefix+c.shown, "its waveform goes on without end; the number of cycles on the card is not read")
+			}
 			wave, k = w, next
 		default:
 			v, err := lv.env.atom(rest[k])
@@ -100,6 +102,13 @@ func (x *expander) source(lv *level, c *elementCard) {
 				}
 				fail(rest[k], err)
 				return
+			}
+			if stated {
+				x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "it has two values"}, "")
+				return
+			}
+			if strings.Contains(text, "rms") {
+				x.remark(RemarkValueSuffix, c.line.Start(), lv.prefix+c.shown, "`"+text+"` is a constant level in a netlist, not an alternating voltage")
 			}
 			dc, stated = v, true
 			k++
@@ -114,6 +123,9 @@ func (x *expander) source(lv *level, c *elementCard) {
 			}
 			dc, stated = n, true
 		}
+	}
+	if wave == nil && !stated && len(rest) > 0 {
+		x.remark(RemarkAssumption, c.line.Start(), lv.prefix+c.shown, "states no level over time (an AC magnitude concerns small signals only) and gives 0")
 	}
 	if wave == nil {
 		wave = Constant{Level: dc}
@@ -135,114 +147,6 @@ func (x *expander) source(lv *level, c *elementCard) {
 		}
 	}
 	x.add(lv, c, nodes, s, "")
-}
-
-// unreadWave says why the waveform of a source cannot be modelled, empty if it can.
-func unreadWave(c *elementCard, rest []*syntax.Atom) string {
-	for _, key := range []string{"tbl", "table", "wavefile"} {
-		if hasKey(c, key) {
-			return "a waveform given by " + key + "= is not modelled"
-		}
-	}
-	line := false
-	for _, w := range rest {
-		switch text := strings.ToLower(w.Text()); {
-		case w.IsExpression():
-		case text == "trnoise" || text == "trrandom" || text == "noise" || text == "random" || text == "external" || text == "port" || text == "pat":
-			return "a waveform of kind " + text + " is not modelled"
-		case text == "pwl":
-			line = true
-		case line && (text == "repeat" || text == "r" || strings.HasPrefix(text, "+")):
-			return "a piecewise line with repeats or relative times is not modelled"
-		}
-	}
-	if m, ok := c.assigned("m"); ok && (m.Atom == nil || m.Atom.Text() != "1") {
-		return "copies in parallel (m=) are not modelled here"
-	}
-	if line && (hasKey(c, "r") || hasKey(c, "repeat") || hasKey(c, "td")) {
-		return "a piecewise line with repeats or delay is not modelled"
-	}
-	return ""
-}
-
-func hasKey(c *elementCard, key string) bool { _, ok := c.assigned(key); return ok }
-
-func isFileWord(text string) bool {
-	return strings.HasPrefix(strings.ToLower(text), "file") || strings.ContainsAny(text, `/\`)
-}
-
-// keyword reports a word that begins a clause of a source.
-func keyword(text string) bool {
-	switch strings.ToLower(text) {
-	case "dc", "ac", "sin", "sine", "pulse", "exp", "pwl", "sffm", "am", "distof1", "distof2":
-		return true
-	}
-	return false
-}
-
-// waveForms says what each waveform takes.
-var waveForms = map[string]string{
-	"sin": "SIN(offset amplitude frequency delay damping phase)", "sine": "SINE(offset amplitude frequency delay damping phase)",
-	"pulse": "PULSE(low high delay rise fall width period)", "exp": "EXP(low high delay tau delay tau)",
-	"pwl": "PWL(time value time value ...)",
-}
-
-// waveform makes a waveform of its numbers, or says what is wrong with them.
-func waveform(kind string, n []float64) (Waveform, string) {
-	at := func(k int) float64 {
-		if k < len(n) {
-			return n[k]
-		}
-		return 0
-	}
-	switch kind {
-	case "sin", "sine":
-		if len(n) < 2 {
-			return nil, "a sine without amplitude"
-		}
-		s := Sine{Offset: at(0), Amplitude: at(1), Frequency: at(2), Delay: at(3), Damping: at(4), PhaseDegrees: at(5)}
-		if s.Frequency <= 0 {
-			return nil, "" // its period would be that of an analysis that is not read
-		}
-		return s, ""
-	case "pulse":
-		if len(n) < 2 {
-			return nil, "a pulse without its two levels"
-		}
-		p := Pulse{Low: at(0), High: at(1), Delay: at(2), Rise: at(3), Fall: at(4), Width: at(5), Period: at(6)}
-		if p.Rise < 0 || p.Fall < 0 || p.Width < 0 || p.Period < 0 {
-			return nil, "a pulse with a negative time"
-		}
-		if p.Period > 0 {
-			shortest := p.Period * 1e-6
-			p.Rise, p.Fall = math.Max(p.Rise, shortest), math.Max(p.Fall, shortest)
-			if len(n) < 6 {
-				p.Width = p.Period
-			}
-		}
-		return p, ""
-	case "exp":
-		if len(n) < 2 {
-			return nil, "an exponential without its two levels"
-		}
-		return Exponential{
-			Low: at(0), High: at(1), RiseDelay: at(2), RiseTau: math.Max(at(3), 1e-12),
-			FallDelay: math.Max(at(4), at(2)), FallTau: math.Max(at(5), 1e-12),
-		}, ""
-	case "pwl":
-		if len(n) < 2 {
-			return nil, "a piecewise line without points"
-		}
-		var p Piecewise
-		for k := 0; k+1 < len(n); k += 2 {
-			if k > 0 && n[k] < p.Times[len(p.Times)-1] {
-				return nil, "a piecewise line whose times run backwards"
-			}
-			p.Times, p.Levels = append(p.Times, n[k]), append(p.Levels, n[k+1])
-		}
-		return p, ""
-	}
-	return nil, ""
 }
 
 // voltageControlled reads E and G: linear, polynomial of one voltage, or a formula.
@@ -290,6 +194,12 @@ func (x *expander) voltageControlled(lv *level, c *elementCard) {
 		return
 	}
 	nodes = append(nodes, x.node(lv, rest[0].Text()), x.node(lv, rest[1].Text()))
+	for _, key := range []string{"max", "min", "table", "scale", "abs", "delta"} {
+		if hasKey(c, key) {
+			x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "what it gives by " + key + "= is not modelled"}, "")
+			return
+		}
+	}
 	if x.copies(lv, c) != 1 {
 		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "copies in parallel (m=) are not modelled here"}, "")
 		return
