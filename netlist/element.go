@@ -177,6 +177,10 @@ func (x *expander) other(lv *level, c *elementCard) {
 // passive reads R, C and L.
 func (x *expander) passive(lv *level, c *elementCard) {
 	nodes := []NodeID{x.node(lv, c.words[0].Text()), x.node(lv, c.words[1].Text())}
+	if c.looseFormula() {
+		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "its value is a formula without braces"}, "")
+		return
+	}
 	rest := c.words[2:]
 	typeName := ""
 	value, found := 0.0, false
@@ -226,13 +230,6 @@ func (x *expander) passive(lv *level, c *elementCard) {
 	key := map[byte]string{'R': "r", 'C': "c", 'L': "l"}[c.letter]
 	for _, k := range []string{key, "value", "val"} {
 		if v, ok := c.assigned(k); ok && !found {
-			if v.Atom != nil && v.Atom.Word != "" { // a formula without marks goes on behind the first word
-				more := strings.TrimLeft(c.line.Text[v.Atom.Pos.Offset+len(v.Atom.Word):], " \t")
-				if more != "" && strings.ContainsRune("(*/+-^?", rune(more[0])) {
-					x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "its value is a formula without braces"}, "")
-					return
-				}
-			}
 			n, err := lv.env.evaluate(v, 0)
 			if err != nil {
 				x.noValue(lv, c, nodes, v.Atom, err, "a value")
@@ -306,6 +303,16 @@ func (x *expander) areaOf(lv *level, c *elementCard, w *syntax.Atom) (float64, b
 	}
 	x.remark(RemarkModel, c.line.Start(), lv.prefix+c.shown, "`"+shorten(w.Text())+"` behind the model is not read")
 	return 0, false
+}
+
+// looseFormula reports R=, C= or L= with a formula that stands without marks: it goes on behind its first word.
+func (c *elementCard) looseFormula() bool {
+	v, ok := c.assigned(strings.ToLower(string(c.letter)))
+	if !ok || v.Atom == nil || v.Atom.Word == "" {
+		return false
+	}
+	more := strings.TrimLeft(c.line.Text[v.Atom.Pos.Offset+len(v.Atom.Word):], " \t")
+	return more != "" && strings.ContainsRune("(*/+-^?", rune(more[0]))
 }
 
 // noValue is an element whose value cannot be computed: an error, unless the name may be defined in what was
