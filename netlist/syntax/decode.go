@@ -83,7 +83,8 @@ func Foreign(text string) string {
 	first, _, _ := strings.Cut(head, "\n")
 	lower := strings.ToLower(strings.TrimSpace(first))
 	switch {
-	case strings.HasPrefix(head, "(") && strings.Contains(head, "(") && !strings.HasPrefix(head, "(*"):
+	case strings.HasPrefix(head, "(") && !strings.HasPrefix(head, "(*") &&
+		(strings.Count(first, "(") > strings.Count(first, ")") || strings.HasSuffix(strings.TrimSpace(text), ")")):
 		return "a board netlist in S-expressions"
 	case strings.HasPrefix(lower, "<?xml"), strings.HasPrefix(lower, "<!doctype"), strings.HasPrefix(lower, "<html"):
 		return "an XML or HTML file"
