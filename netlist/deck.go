@@ -311,6 +311,12 @@ func (c *collector) directive(key string, l *syntax.Line) {
 			}
 		}
 	default:
+		if rest := strings.TrimSpace(l.Text[len(firstWord(l.Text)):]); functionLike(rest) {
+			f := *l
+			f.Text = ".func " + rest
+			c.defineFunction(&f)
+			return
+		}
 		if !plainAssignments(card.Items) {
 			c.current.params = append(c.current.params, c.looseParameters(l)...)
 			return

@@ -158,7 +158,7 @@ var (
 func (x *expander) other(lv *level, c *elementCard) {
 	pins := map[byte]int{'J': 3, 'Z': 3, 'T': 4, 'O': 4, 'W': 2, 'U': 3}
 	words := c.words
-	if n, ok := pins[c.letter]; ok && n < len(words) {
+	if n, ok := pins[c.letter]; ok && n <= len(words) {
 		words = words[:n]
 	} else if len(words) > 0 {
 		words = words[:len(words)-1]

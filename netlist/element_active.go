@@ -100,6 +100,11 @@ func (x *expander) transistor(lv *level, c *elementCard) {
 			t.Area = v
 		}
 	}
+	if v, ok := c.assigned("area"); ok {
+		if a, err := lv.env.evaluate(v, 0); err == nil && a > 0 {
+			t.Area = a
+		}
+	}
 	t.Area *= x.copies(lv, c)
 	x.add(lv, c, nodes, t, typeName)
 }

@@ -176,7 +176,7 @@ func (x *expander) voltageControlled(lv *level, c *elementCard) {
 		case "table":
 			x.table(lv, c, nodes, out, rest[1:])
 			return
-		case "laplace", "freq", "chebyshev":
+		case "laplace", "freq", "chebyshev", "opamp", "delay", "transformer":
 			x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "a source of kind " + strings.ToLower(rest[0].Text()) + " is not modelled"}, "")
 			return
 		}

@@ -103,6 +103,9 @@ func waveform(kind string, n []float64) (Waveform, string) {
 		if len(n) < 2 {
 			return nil, "a piecewise line without points"
 		}
+		if len(n)%2 != 0 {
+			return nil, "" // a time without its level: which one is missing is not known
+		}
 		var p Piecewise
 		for k := 0; k+1 < len(n); k += 2 {
 			if k > 0 && n[k] < p.Times[len(p.Times)-1] {

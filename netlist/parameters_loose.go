@@ -109,3 +109,12 @@ func nameBefore(text string, sign int) int {
 	}
 	return k
 }
+
+// functionLike reports `NAME(arguments) = formula`, which some decks write on a .param card.
+func functionLike(rest string) bool {
+	open, end := strings.IndexByte(rest, '('), strings.IndexByte(rest, ')')
+	if open <= 0 || end < open || strings.ContainsAny(rest[:open], " \t=,{'\"") {
+		return false
+	}
+	return strings.HasPrefix(strings.TrimLeft(rest[end+1:], " \t"), "=")
+}

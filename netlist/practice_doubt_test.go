@@ -59,6 +59,8 @@ func TestWhatIsNotModelledIsKeptAsUnknown(t *testing.T) {
 		"R1 a 0 {rl}\n.include gone.lib":      "rl is neither",
 		"F1 a 0 V9 1\n.include gone.lib":      "V9",
 		"X1 a 0 S9 m=2":                       "no definition",
+		"V1 a 0 PWL(0 0 1m 5 2m)":             "pwl",
+		"E1 a 0 OPAMP b 0":                    "opamp",
 		"U2 __U2":                             "not modelled",
 		"J1 a b 0 JX":                         "junction FET",
 		"E1 a 0 LAPLACE {V(b)} = {1/(1+s)}":   "laplace",
@@ -115,6 +117,13 @@ func TestDoubtfulCardsAreRemarked(t *testing.T) {
 	}
 }
 
+// A line keeps all four of its nodes.
+func TestLineKeepsItsNodes(t *testing.T) {
+	if c := accepted(t, "t\nV1 a 0 5\nT1 a 0 b c Z0=50 TD=1n\n"); shape(c) != "V1(a 0) T1(a 0 b c)" {
+		t.Errorf("read %s", shape(c))
+	}
+}
+
 // The values read from spellings that differ.
 func TestValuesOfOddSpellings(t *testing.T) {
 	for card, want := range map[string]Device{
@@ -128,6 +137,8 @@ func TestValuesOfOddSpellings(t *testing.T) {
 		"X1 a 0 S r=7\n.macro S p q r=1\nR1 p q {r}\n.eom":                 Resistor{7},
 		"X1 a 0 / S\n.subckt S p q / r=3\nR1 p q {r}\n.ends S":             Resistor{3},
 		"X1 a 0 S r=2 x=y z\n.subckt S p q params: r=1\nR1 p q {r}\n.ends": Resistor{2},
+		"R1 a 0 {f(2)}\n.param f(x)={x*2}":                                 Resistor{4},
+		"Q1 a b 0 QX area=2":                                               Transistor{Area: 2},
 		"V1 a 0 value=5":                                                   VoltageSource{Wave: Constant{5}},
 		"V1 a 0 DC = 5V":                                                   VoltageSource{Wave: Constant{5}},
 		"V1 a 0 SIN 0 1 1k":                                                VoltageSource{Wave: Sine{Amplitude: 1, Frequency: 1000}},
