@@ -167,11 +167,50 @@ func (c *collector) include(key string, l *syntax.Line) {
 		c.remark(RemarkLibraryNotRead, l.Start(), "", base+" has no section "+section)
 		return
 	}
+	if len(lines) > 0 && !plausible(lines) {
+		c.remark(RemarkLibraryNotRead, l.Start(), "", base+" holds nothing that reads like a SPICE-style card")
+		return
+	}
 	c.files.open[id] = true
 	c.depth++
 	c.block(lines, strings.ToLower(section))
 	c.depth--
 	delete(c.files.open, id)
+}
+
+// plausible reports whether a file that is included holds at least one line that is plainly a SPICE-style card: a
+// dot card that defines something, a passive part or source with a number, or a call. Files of other programs under
+// the same ending (assembler, symbol libraries) hold none, and are named once instead of refused line by line.
+func plausible(lines []syntax.Line) bool {
+	parts := false // cards of parts without a number, weaker evidence: no card is a single word
+	for k := range lines {
+		words := strings.Fields(lines[k].Text)
+		if len(words) == 0 {
+			continue
+		}
+		first := strings.ToLower(words[0])
+		switch first {
+		case ".model", ".subckt", ".macro", ".param", ".params", ".func", ".lib", ".include", ".inc", ".incl", ".global", ".end", ".ends", ".title":
+			return true
+		}
+		if len(words) == 1 && first[0] != '.' && first[0] != '*' {
+			return false
+		}
+		if len(words) < 4 {
+			continue
+		}
+		switch first[0] {
+		case 'r', 'c', 'l', 'v', 'i', 'e', 'g':
+			for _, w := range words[3:] {
+				if _, number := spice(w); number || strings.ContainsAny(w, "{='") || keyword(strings.SplitN(w, "(", 2)[0]) {
+					return true
+				}
+			}
+		case 'x', 'd', 'q', 'm':
+			parts = parts || !strings.Contains(lines[k].Text, ",")
+		}
+	}
+	return parts
 }
 
 func hasSection(lines []syntax.Line, section string) bool {
