@@ -1,7 +1,6 @@
 package netlist
 
 import (
-	"fmt"
 	"strings"
 
 	"railproof/netlist/syntax"
@@ -18,6 +17,7 @@ type scope struct {
 	models   map[string]*syntax.Line
 	subckts  map[string]*scope
 	params   []assignment
+	named    map[string]bool // names of params
 	funcs    map[string]*function
 }
 
@@ -31,7 +31,7 @@ type assignment struct {
 func newScope(name string, parent *scope) *scope {
 	return &scope{
 		name: name, parent: parent, models: map[string]*syntax.Line{}, subckts: map[string]*scope{},
-		funcs: map[string]*function{},
+		funcs: map[string]*function{}, named: map[string]bool{},
 	}
 }
 
@@ -73,7 +73,9 @@ type collector struct {
 	titleLine   *syntax.Line
 	depth       int
 	ended       bool
-	unread      bool // something that may define names was not read
+	branches    []branch              // open .if cards
+	doubtful    map[*syntax.Line]bool // elements that an .if may leave out
+	unread      bool                  // something that may define names was not read
 }
 
 func (c *collector) fault(at Position, what, expected string) {
@@ -105,6 +107,8 @@ func words(text string) map[string]bool {
 // block sorts the logical lines of one file. section limits it to a `.lib NAME` section, lower case.
 func (c *collector) block(lines []syntax.Line, section string) {
 	skipTo, inside, opened := "", section == "", c.current // skipTo ends a block that is no circuit
+	var skipFrom Position
+	ifs := len(c.branches)
 	for k := range lines {
 		l := &lines[k]
 		if len(c.faults) >= maxFaults {
@@ -115,7 +119,10 @@ func (c *collector) block(lines []syntax.Line, section string) {
 			if strings.EqualFold(word, skipTo) {
 				skipTo = ""
 			}
-			continue
+			if !strings.EqualFold(word, ".end") {
+				continue
+			}
+			// An .end ends the circuit also where the block before it was never closed.
 		}
 		if c.ended {
 			if word != "" && word[0] != '.' && looksLikeElement(l.Text) && c.depth == 0 {
@@ -130,8 +137,11 @@ func (c *collector) block(lines []syntax.Line, section string) {
 			continue
 		}
 		if word[0] != '.' {
-			if inside {
+			if out, doubt := c.branched(); inside && !out {
 				c.current.elements = append(c.current.elements, l)
+				if doubt {
+					c.doubtful[l] = true
+				}
 			}
 			continue
 		}
@@ -157,15 +167,18 @@ func (c *collector) block(lines []syntax.Line, section string) {
 			inside = section == ""
 			continue
 		}
-		if !inside {
+		if !inside || c.conditional(strings.SplitN(key, "(", 2)[0], l) {
+			continue
+		}
+		if out, _ := c.branched(); out {
 			continue
 		}
 		switch key {
 		case "control":
-			skipTo = ".endc"
+			skipTo, skipFrom = ".endc", l.Start()
 		case "data":
 			c.directive(key, l)
-			skipTo = ".enddata"
+			skipTo, skipFrom = ".enddata", l.Start()
 		case "end":
 			if c.depth == 0 {
 				c.ended = true
@@ -174,8 +187,19 @@ func (c *collector) block(lines []syntax.Line, section string) {
 			c.directive(key, l)
 		}
 	}
+	if skipTo != "" && skipFrom.Line > 0 {
+		c.remark(RemarkNotRead, skipFrom, "", "what stands behind this card: its block has no "+skipTo)
+	}
+	if len(c.branches) > ifs {
+		c.fault(c.branches[len(c.branches)-1].at, ".if without .endif", ".endif before the end of the file")
+		c.branches = c.branches[:ifs]
+	}
 	if c.current != opened && len(c.faults) < maxFaults {
-		c.fault(c.current.at, "subcircuit "+c.current.name+" has no .ends", ".ends before the end of the file")
+		if c.current.name != "" {
+			c.fault(c.current.at, "subcircuit "+c.current.name+" has no .ends", ".ends before the end of the file")
+		} else {
+			c.fault(lines[len(lines)-1].Start(), "the file has more .ends than .subckt", "one .ends for each .subckt")
+		}
 		c.current = opened
 	}
 }
@@ -318,128 +342,9 @@ func (c *collector) directive(key string, l *syntax.Line) {
 			return
 		}
 		if !plainAssignments(card.Items) {
-			c.current.params = append(c.current.params, c.looseParameters(l)...)
+			c.define(c.looseParameters(l))
 			return
 		}
-		c.current.params = append(c.current.params, c.assignments(card.Items, l)...)
+		c.define(c.assignments(card.Items, l))
 	}
-}
-
-// assignments reads NAME=value pairs; words without a value are an error unless they are keywords.
-func (c *collector) assignments(items []*syntax.Item, l *syntax.Line) []assignment {
-	var list []assignment
-	for _, i := range items {
-		switch {
-		case i.Comma:
-		case i.Group != nil:
-			list = append(list, c.assignments(i.Group.Items, l)...)
-		case i.Assign != nil && i.Assign.Value != nil:
-			list = append(list, assignment{strings.ToLower(i.Assign.Key.Text()), i.Assign.Value, l})
-		case i.Assign != nil:
-			text := i.Assign.Key.Text()
-			if !strings.HasSuffix(text, ":") {
-				c.fault(l.Position(i.Assign.Key.Pos.Offset), fmt.Sprintf("parameter %q has no value", text), "NAME=value")
-			}
-		case i.Equals:
-			c.fault(l.Start(), "an = without a name before it", "NAME=value")
-		}
-	}
-	return list
-}
-
-func (c *collector) open(name string, l *syntax.Line) *scope {
-	s := newScope(name, c.current)
-	s.at = l.Start()
-	c.current = s
-	return s
-}
-
-func (c *collector) subckt(card *syntax.DirectiveCard, l *syntax.Line) {
-	var positional []*syntax.Atom
-	var assigned []*syntax.Item
-	for _, i := range card.Items {
-		if i.Assign != nil && i.Assign.Value == nil {
-			if strings.HasSuffix(i.Assign.Key.Text(), ":") {
-				continue
-			}
-			if i.Assign.Key.Word != "/" { // a stroke between the pins and the parameters
-				positional = append(positional, i.Assign.Key)
-			}
-		} else if i.Group != nil {
-			positional = append(positional, atoms(i.Group.Items)...)
-		} else {
-			assigned = append(assigned, i)
-		}
-	}
-	if len(positional) == 0 {
-		c.fault(l.Start(), ".subckt without a name", ".subckt NAME node ...")
-		c.open("?", l)
-		return
-	}
-	name := positional[0].Text()
-	parent := c.current
-	s := c.open(name, l)
-	for _, p := range positional[1:] {
-		s.pins = append(s.pins, p.Text())
-	}
-	s.defaults = c.assignments(assigned, l)
-	if depthOf(s) > maxSubcktDepth {
-		c.fault(l.Start(), fmt.Sprintf("subcircuit definitions nest more than %d deep", maxSubcktDepth), "a flatter netlist")
-		return
-	}
-	key := strings.ToLower(name)
-	if _, double := parent.subckts[key]; double {
-		c.remark(RemarkModel, l.Start(), "", "subcircuit "+name+" is defined again; the first definition holds")
-		return
-	}
-	parent.subckts[key] = s
-}
-
-func depthOf(s *scope) int {
-	n := 0
-	for ; s != nil; s = s.parent {
-		n++
-	}
-	return n
-}
-
-// defineFunction reads `.func name(a,b) {body}`.
-func (c *collector) defineFunction(l *syntax.Line) {
-	text := strings.TrimSpace(l.Text[len(".func"):])
-	open, end := strings.IndexByte(text, '('), strings.IndexByte(text, ')')
-	if open <= 0 || end < open {
-		c.fault(l.Start(), ".func without arguments in brackets", ".func NAME(a,b) {formula}")
-		return
-	}
-	f := &function{}
-	for _, a := range strings.Split(text[open+1:end], ",") {
-		if a = strings.ToLower(strings.TrimSpace(a)); a != "" {
-			f.args = append(f.args, a)
-		}
-	}
-	body := strings.TrimSpace(strings.TrimPrefix(strings.TrimSpace(text[end+1:]), "="))
-	if len(body) >= 2 && (body[0] == '{' || body[0] == '\'') {
-		body = body[1 : len(body)-1]
-	}
-	parsed, err := syntax.ParseFormula(body)
-	if err != nil {
-		c.fault(l.Start(), err.Error(), "a formula")
-		return
-	}
-	f.body = parsed
-	c.current.funcs[strings.ToLower(strings.TrimSpace(text[:open]))] = f
-}
-
-// atoms flattens items to their words and expressions, keys of assignments included.
-func atoms(items []*syntax.Item) []*syntax.Atom {
-	var list []*syntax.Atom
-	for _, i := range items {
-		switch {
-		case i.Group != nil:
-			list = append(list, atoms(i.Group.Items)...)
-		case i.Assign != nil:
-			list = append(list, i.Assign.Key)
-		}
-	}
-	return list
 }

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"strings"
 
+	"railproof/netlist/quantity"
 	"railproof/netlist/syntax"
 )
 
@@ -15,6 +16,14 @@ func (x *expander) diode(lv *level, c *elementCard) {
 	typeName := c.words[2].Text()
 	d := Diode{Area: 1}
 	if m := x.modelCardNamed(lv.scope, typeName); m != nil {
+		if m.kind != "d" {
+			x.add(lv, c, nodes, wrongKind(c, m), typeName)
+			return
+		}
+		if why := m.impossible(); why != "" {
+			x.add(lv, c, nodes, Unknown{Letter: 'D', Why: why}, typeName)
+			return
+		}
 		d.Model = m.diode()
 		if d.Model.N >= stackFactor {
 			x.remark(RemarkModel, c.line.Start(), lv.prefix+c.shown,
@@ -74,7 +83,8 @@ func (x *expander) modelAt(lv *level, c *elementCard, first, last int) int {
 	// A substrate node stands between: the model is the last word that is neither a number nor a keyword.
 	for k := min(last, len(c.words)-1); k >= first; k-- {
 		text := c.words[k].Text()
-		if _, number := spice(text); !number && !isGroundName(text) && !strings.EqualFold(text, "off") {
+		n, number := quantity.ParseSpice(text)
+		if number = number && !n.Coded; !number && !isGroundName(text) && !strings.EqualFold(text, "off") {
 			return k
 		}
 	}
@@ -90,6 +100,14 @@ func (x *expander) transistor(lv *level, c *elementCard) {
 	typeName := c.words[at].Text()
 	t := Transistor{Area: 1}
 	if m := x.modelCardNamed(lv.scope, typeName); m != nil {
+		if m.kind != "npn" && m.kind != "pnp" && m.kind != "lpnp" {
+			x.add(lv, c, nodes, wrongKind(c, m), typeName)
+			return
+		}
+		if why := m.impossible(); why != "" {
+			x.add(lv, c, nodes, Unknown{Letter: 'Q', Why: why}, typeName)
+			return
+		}
 		t.Model = m.transistor()
 	}
 	for _, w := range c.words[at+1:] {
@@ -156,7 +174,15 @@ func (x *expander) switchCard(lv *level, c *elementCard) {
 	typeName := c.words[4].Text()
 	s := Switch{}
 	if m := x.modelCardNamed(lv.scope, typeName); m != nil {
+		if !strings.HasSuffix(m.kind, "sw") && m.kind != "vswitch" {
+			x.add(lv, c, nodes, wrongKind(c, m), typeName)
+			return
+		}
 		s.Model = m.switchModel()
+		if s.Model.RON <= 0 || s.Model.ROFF <= 0 {
+			x.add(lv, c, nodes, Unknown{Letter: 'S', Why: "model " + m.name + " has a resistance that is not above 0"}, typeName)
+			return
+		}
 	}
 	for _, w := range c.words[5:] {
 		s.On = s.On || strings.EqualFold(w.Text(), "on")
@@ -208,12 +234,15 @@ func (x *expander) finish() {
 		}
 		switch x.circuit.Elements[control].Device.(type) {
 		case VoltageSource, VoltageControlled, CurrentControlled, Inductor, Behavioural, Unknown:
+		case CurrentSource:
+			e.Device = Unknown{Letter: c.letter, Why: "it is controlled by a current source, whose current is not looked at here"}
+			continue
 		default:
 			x.fault(c.line.Position(c.words[2].Pos.Offset), fmt.Sprintf("%s is controlled by %s, which is no source", c.shown, c.words[2].Text()), "the name of a voltage source")
 			continue
 		}
 		gain, err := l.level.env.atom(c.words[3])
-		if err != nil && x.unread {
+		if err != nil && x.unknowable(err) {
 			e.Device = Unknown{Letter: c.letter, Why: "its gain is not known: " + err.Error()}
 			continue
 		}
@@ -251,6 +280,9 @@ func (x *expander) coupling(lv *level, c *elementCard, find func(*syntax.Atom) (
 	switch {
 	case ok:
 		v, err := lv.env.evaluate(stated, 0)
+		if err != nil && x.unknowable(err) {
+			return Unknown{Letter: 'K', Why: "its factor is not known: " + err.Error()}
+		}
 		if err != nil {
 			x.fault(c.line.Start(), err.Error(), "a coupling factor")
 			return Unknown{Letter: 'K', Why: "its factor is missing"}
@@ -258,7 +290,7 @@ func (x *expander) coupling(lv *level, c *elementCard, find func(*syntax.Atom) (
 		k.Factor = v
 	case !named:
 		v, err := lv.env.atom(last)
-		if err != nil && x.unread {
+		if err != nil && x.unknowable(err) {
 			return Unknown{Letter: 'K', Why: "its factor is not known: " + err.Error()}
 		}
 		if err != nil {
@@ -297,4 +329,15 @@ func (x *expander) coupling(lv *level, c *elementCard, find func(*syntax.Atom) (
 		return Unknown{Letter: 'K', Why: "an inductor is missing"}
 	}
 	return k
+}
+
+// areaOf reads an area factor behind a model: a bare number. Another word is named as not read.
+func (x *expander) areaOf(lv *level, c *elementCard, w *syntax.Atom) (float64, bool) {
+	n, number := quantity.ParseSpice(w.Text())
+	plain := !w.IsExpression() && number && n.Unit == "" && n.Rest == "" && !n.Coded
+	if v, err := lv.env.atom(w); err == nil && v > 0 && (plain || !number) {
+		return v, true
+	}
+	x.remark(RemarkModel, c.line.Start(), lv.prefix+c.shown, "`"+shorten(w.Text())+"` behind the model is not read")
+	return 0, false
 }

@@ -67,29 +67,36 @@ func isGroundName(name string) bool {
 	return false
 }
 
-// node finds or makes the node of a name at a level.
-func (x *expander) node(lv *level, name string) NodeID {
+// nodeKey is the key of a node at a level and its full name; found says that it is there already.
+func (x *expander) nodeKey(lv *level, name string) (id NodeID, key, full string, found bool) {
+	key = strings.ToLower(name)
+	if id, ok := lv.ports[key]; ok { // also a pin that is called gnd
+		return id, key, name, true
+	}
 	if isGroundName(name) {
-		x.circuit.HasGround = true
-		return Ground
+		return Ground, key, name, true
 	}
-	key := strings.ToLower(name)
-	if id, ok := lv.ports[key]; ok {
-		return id
-	}
-	full := name
+	full = name
 	if lv.prefix != "" && !x.globals[key] {
 		key, full = strings.ToLower(lv.prefix)+key, lv.prefix+name
 	}
+	id, found = x.nodes[key]
+	return id, key, full, found
+}
+
+// node finds or makes the node of a name at a level. Each `?` is a node of its own.
+func (x *expander) node(lv *level, name string) NodeID {
+	id, key, full, found := x.nodeKey(lv, name)
 	if name == "?" {
 		x.open++
 		key = fmt.Sprintf("?%d", x.open)
-		full = key
+		full, found = key, false
 	}
-	if id, ok := x.nodes[key]; ok {
+	if found {
+		x.circuit.HasGround = x.circuit.HasGround || id == Ground
 		return id
 	}
-	id := NodeID(len(x.circuit.Nodes))
+	id = NodeID(len(x.circuit.Nodes))
 	x.nodes[key] = id
 	x.circuit.Nodes = append(x.circuit.Nodes, Node{Name: full})
 	return id
@@ -97,8 +104,12 @@ func (x *expander) node(lv *level, name string) NodeID {
 
 // expand adds the elements of a level.
 func (x *expander) expand(lv *level) {
-	cards := parseAhead(lv.scope.elements)
-	for k, line := range lv.scope.elements {
+	lines := lv.scope.elements
+	var cards []aheadCard
+	for k, line := range lines {
+		if k%aheadWindow == 0 {
+			cards = parseAhead(lines[k:min(k+aheadWindow, len(lines))])
+		}
 		if len(x.faults) >= maxFaults || x.overflow {
 			return
 		}
@@ -110,13 +121,17 @@ func (x *expander) expand(lv *level) {
 		if cards == nil {
 			x.element(lv, line)
 		} else {
-			x.parsed(lv, line, cards[k].card, cards[k].fault)
+			x.parsed(lv, line, cards[k%aheadWindow].card, cards[k%aheadWindow].fault)
 		}
 	}
 }
 
-// aheadFrom is how many cards a level must have to be parsed on all cores before it is expanded.
-const aheadFrom = 2000
+// Cards of a level are parsed on all cores, a window at a time so that a huge file needs no huge memory; fewer than
+// aheadFrom are not worth it.
+const (
+	aheadFrom   = 2000
+	aheadWindow = 16 << 10
+)
 
 type aheadCard struct {
 	card  *syntax.ElementCard
@@ -188,6 +203,10 @@ func (x *expander) call(lv *level, c *elementCard) {
 	}
 	at := len(c.words) - 1
 	name := c.words[at].Text()
+	if k := c.bracketNode(at); k >= 0 {
+		x.fault(c.line.Position(k), "a bracket touches the name of a node", "a blank between them, or a node without brackets")
+		return
+	}
 	var nodes []NodeID
 	for _, w := range c.words[:at] {
 		nodes = append(nodes, x.node(lv, w.Text()))
@@ -221,22 +240,34 @@ func (x *expander) call(lv *level, c *elementCard) {
 	given := map[string]float64{}
 	for _, a := range c.assigns {
 		v, err := lv.env.evaluate(a.value, 0)
-		if err != nil {
-			// Parameters that are no numbers (part numbers, packages) do not concern the circuit.
-			if a.value.Atom != nil && !a.value.Atom.IsExpression() {
-				continue
-			}
+		switch {
+		case err == nil:
+			given[a.name] = v
+		case a.value.Atom != nil && !a.value.Atom.IsExpression() && !definition.takes(a.name):
+			// What is no number and no parameter of the definition (part numbers, packages) does not concern the circuit.
+		case x.unknowable(err):
+			x.add(lv, c, nodes, Unknown{Letter: 'X', Why: a.name + " is not known: " + err.Error()}, name)
+			return
+		default:
 			x.fault(c.line.Start(), a.name+": "+err.Error(), "a number")
-			continue
 		}
-		given[a.name] = v
 	}
 	inner := &level{
 		scope: definition, prefix: lv.prefix + c.shown + ".", ports: map[string]NodeID{}, depth: lv.depth + 1,
 		env: newEnvironment(x.environmentOf(definition.parent), definition, given),
 	}
 	for k, pin := range definition.pins {
-		inner.ports[strings.ToLower(pin)] = nodes[k]
+		key := strings.ToLower(pin)
+		if other, double := inner.ports[key]; double && other != nodes[k] {
+			x.fault(c.line.Start(), fmt.Sprintf("%s joins %s and %s", c.shown, x.circuit.Nodes[other].Name, x.circuit.Nodes[nodes[k]].Name),
+				fmt.Sprintf("two pins of subcircuit %s, whose pin %s stands twice", definition.name, pin))
+			return
+		}
+		if key == "0" && nodes[k] != Ground {
+			x.fault(c.line.Start(), "a pin of subcircuit "+definition.name+" is called 0, which is ground everywhere", "another name, or ground at this place of the call")
+			return
+		}
+		inner.ports[key] = nodes[k]
 	}
 	x.expand(inner)
 }
@@ -259,17 +290,19 @@ func wordsAhead(items []*syntax.Item) int {
 
 // multiplied reports a call with m= that the definition does not take for a parameter of its own.
 func (x *expander) multiplied(lv *level, c *elementCard, definition *scope) bool {
-	for _, a := range definition.defaults {
-		if a.name == "m" {
-			return false
+	return !definition.takes("m") && x.copies(lv, c) != 1
+}
+
+// takes reports whether a subcircuit has a parameter of a name, lower case.
+func (s *scope) takes(name string) bool {
+	for _, list := range [][]assignment{s.defaults, s.params} {
+		for _, a := range list {
+			if a.name == name {
+				return true
+			}
 		}
 	}
-	for _, a := range definition.params {
-		if a.name == "m" {
-			return false
-		}
-	}
-	return x.copies(lv, c) != 1
+	return false
 }
 
 func (x *expander) unknownWords(lv *level, c *elementCard, words []*syntax.Atom, why string) {

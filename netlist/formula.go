@@ -18,9 +18,15 @@ type resolver struct {
 	value    func(name string) (float64, error)  // a parameter
 	function func(name string) (*function, bool) // a .func of the netlist
 	probe    func(text string) (int, error)      // the number of a probe; nil where none may stand
-	local    map[string]compiled                 // arguments of a .func under expansion
+	local    map[string]argument                 // arguments of a .func under expansion
 	depth    int
 	budget   *int // operands compiled so far
+}
+
+// argument is what a .func was called with, and of how many operands it is: each use costs as many again.
+type argument struct {
+	compiled
+	operands int
 }
 
 // function is a .func of the netlist.
@@ -251,7 +257,7 @@ func (r *resolver) operand(o *syntax.Operand) (compiled, error) {
 		r.budget = new(int)
 	}
 	if *r.budget++; *r.budget > maxOperands {
-		return nil, fmt.Errorf("a formula with its functions has more than %d operands", maxOperands)
+		return nil, errTooManyOperands
 	}
 	switch {
 	case o.Number != "":
@@ -276,8 +282,11 @@ func (r *resolver) operand(o *syntax.Operand) (compiled, error) {
 	if o.Call.Open {
 		return r.call(name, o.Call.Args)
 	}
-	if c, ok := r.local[name]; ok {
-		return c, nil
+	if a, ok := r.local[name]; ok {
+		if *r.budget += a.operands; *r.budget > maxOperands {
+			return nil, errTooManyOperands
+		}
+		return a.compiled, nil
 	}
 	if name == "time" {
 		if r.probe == nil {
@@ -298,21 +307,27 @@ func (r *resolver) operand(o *syntax.Operand) (compiled, error) {
 // maxOperands bounds a formula after its .func calls are expanded.
 const maxOperands = 20000
 
+var errTooManyOperands = fmt.Errorf("a formula with its functions has more than %d operands", maxOperands)
+
 // maxCalls is how deep .func definitions may call one another.
 const maxCalls = 50
 
 func (r *resolver) call(name string, list []*syntax.Formula) (compiled, error) {
-	args := make([]compiled, len(list))
+	if r.budget == nil {
+		r.budget = new(int)
+	}
+	args, operands := make([]compiled, len(list)), make([]int, len(list))
 	outer := *r
 	for k, a := range list {
 		if name == "table" && k == 1 {
 			outer.probe = nil // the pairs of a table are constants
 		}
+		before := *r.budget
 		c, err := outer.formula(a)
 		if err != nil {
 			return nil, err
 		}
-		args[k] = c
+		args[k], operands[k] = c, *r.budget-before
 	}
 	if r.function != nil {
 		if f, ok := r.function(name); ok {
@@ -324,9 +339,9 @@ func (r *resolver) call(name string, list []*syntax.Formula) (compiled, error) {
 			}
 			inner := *r
 			inner.depth++
-			inner.local = map[string]compiled{}
+			inner.local = map[string]argument{}
 			for k, a := range f.args {
-				inner.local[a] = args[k]
+				inner.local[a] = argument{args[k], operands[k]}
 			}
 			return inner.formula(f.body)
 		}

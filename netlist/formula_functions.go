@@ -37,6 +37,11 @@ var unaryFunctions = map[string]func(x float64) (value, slope float64){
 	"buf":    func(x float64) (float64, float64) { return truth(x > 0.5), 0 },
 }
 
+// unknownFunction is a call of a function that neither the netlist nor this list has.
+type unknownFunction struct{ name string }
+
+func (e unknownFunction) Error() string { return "no function is named " + e.name }
+
 func sign(x float64) float64 {
 	switch {
 	case x > 0:
@@ -120,7 +125,7 @@ func builtin(name string, args []compiled) (compiled, error) {
 		}
 		return lookupTable(args), nil
 	}
-	return nil, fmt.Errorf("no function is named %s", name)
+	return nil, unknownFunction{name}
 }
 
 func extreme(args []compiled, largest bool) compiled {

@@ -15,6 +15,7 @@ import (
 
 const (
 	maxIncludeDepth = 20
+	maxIncludes     = 1000 // files read, a file that is included twice counting twice
 	maxSubcktDepth  = 50
 	maxIncludedSize = 256 << 20 // bytes of all included files together
 )
@@ -25,12 +26,12 @@ type files struct {
 	names []string        // of the roots, for messages
 	open  map[string]bool // files being read, against loops
 	read  int64
-	cache map[string][]syntax.Line
+	count int
 }
 
 // newFiles opens the netlist's folder and the --include folders.
 func newFiles(folders []string) (*files, error) {
-	f := &files{open: map[string]bool{}, cache: map[string][]syntax.Line{}}
+	f := &files{open: map[string]bool{}}
 	for _, dir := range folders {
 		root, err := os.OpenRoot(dir)
 		if err != nil {
@@ -85,7 +86,27 @@ func (f *files) find(name, from string, in int) (root int, local string, ok bool
 			return c.root, c.name, true
 		}
 	}
+	for _, c := range candidates { // decks of systems whose file names have no case
+		if name, ok := f.anyCase(c.root, c.name); ok {
+			return c.root, name, true
+		}
+	}
 	return 0, "", false
+}
+
+// anyCase finds a file whose base name differs in case only; the first in order of names.
+func (f *files) anyCase(root int, name string) (string, bool) {
+	folder, base := path.Split(name)
+	entries, err := fs.ReadDir(f.roots[root].FS(), path.Clean("./"+folder))
+	if err != nil {
+		return "", false
+	}
+	for _, e := range entries {
+		if e.Type().IsRegular() && strings.EqualFold(e.Name(), base) {
+			return path.Join(folder, e.Name()), true
+		}
+	}
+	return "", false
 }
 
 // lines reads a file of a root as logical lines.
@@ -107,18 +128,23 @@ func (f *files) lines(root int, name string) ([]syntax.Line, []syntax.Inline, []
 	if kind := syntax.Foreign(decoded); kind != "" {
 		return nil, nil, nil, fmt.Errorf("%s is %s, not a SPICE-style library", shown, kind)
 	}
-	lines, inline, faults := syntax.Lines(shown, decoded)
+	lines, inline, faults := syntax.IncludedLines(shown, decoded)
 	return lines, inline, faults, nil
 }
 
 // readLimited reads a file up to the limit of its size.
-func readLimited(r io.Reader) ([]byte, error) {
+func readLimited(r *os.File) ([]byte, error) {
+	if info, err := r.Stat(); err == nil && info.Size() > syntax.MaxFile {
+		return nil, errTooLarge
+	}
 	text, err := io.ReadAll(io.LimitReader(r, syntax.MaxFile+1))
 	if err == nil && len(text) > syntax.MaxFile {
-		return nil, errors.New("the file is larger than 64 MiB")
+		return nil, errTooLarge
 	}
 	return text, err
 }
+
+var errTooLarge = errors.New("the file is larger than 64 MiB")
 
 // include follows `.include FILE`, `.lib FILE` and `.lib FILE SECTION`.
 func (c *collector) include(key string, l *syntax.Line) {
@@ -130,6 +156,10 @@ func (c *collector) include(key string, l *syntax.Line) {
 	}
 	if c.depth >= maxIncludeDepth {
 		c.fault(l.Start(), fmt.Sprintf("files include one another more than %d deep", maxIncludeDepth), "fewer levels of inclusion")
+		return
+	}
+	if c.files != nil && c.files.count >= maxIncludes {
+		c.fault(l.Start(), fmt.Sprintf("more than %d files are included", maxIncludes), "fewer inclusions")
 		return
 	}
 	base := path.Base(strings.ReplaceAll(name, `\`, "/"))
@@ -147,6 +177,7 @@ func (c *collector) include(key string, l *syntax.Line) {
 		c.fault(l.Start(), base+" includes itself", "no loop of inclusions")
 		return
 	}
+	c.files.count++
 	lines, inline, faults, err := c.files.lines(root, local)
 	if err != nil {
 		if errors.Is(err, fs.ErrNotExist) || errors.Is(err, fs.ErrPermission) {
@@ -159,9 +190,6 @@ func (c *collector) include(key string, l *syntax.Line) {
 	c.faults = append(c.faults, faults...)
 	for _, i := range inline {
 		c.inline = append(c.inline, DutyLine{Text: i.Text, At: i.At})
-	}
-	if len(lines) > 0 && strings.HasPrefix(lines[0].Text, "*") {
-		lines = lines[1:] // a comment; the title rule is for the top file only
 	}
 	if section != "" && !hasSection(lines, section) {
 		c.remark(RemarkLibraryNotRead, l.Start(), "", base+" has no section "+section)

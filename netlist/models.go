@@ -14,6 +14,42 @@ type modelCard struct {
 	values map[string]float64
 	fields []Field // parameters that are no numbers of the model: Vpk=, Iave=, mfg=
 	at     Position
+	// unknown says why a parameter of the law has no value.
+	unknown string
+}
+
+// lawParameters are those that the laws of diodes and transistors take: one without a number is an error.
+var lawParameters = words("is n rs bv vb ibv nbv bf br nf nr vaf va rb rc re vto kp gamma phi lambda rd level ron roff vt vh von voff")
+
+// impossible says which parameter of a junction's law cannot be, empty if none.
+func (m *modelCard) impossible() string {
+	if m.unknown != "" {
+		return m.unknown
+	}
+	for _, key := range []string{"is", "n", "nf", "nr", "bf", "nbv", "ibv"} {
+		if v, ok := m.values[key]; ok && v <= 0 {
+			return fmt.Sprintf("%s=%g of model %s is not above 0", strings.ToUpper(key), v, m.name)
+		}
+	}
+	for _, key := range []string{"rs", "rb", "rc", "re", "br"} {
+		if v, ok := m.values[key]; ok && v < 0 {
+			return fmt.Sprintf("%s=%g of model %s is below 0", strings.ToUpper(key), v, m.name)
+		}
+	}
+	for _, key := range []string{"vfwd", "ron", "roff", "vrev"} {
+		if _, ok := m.values[key]; ok {
+			return fmt.Sprintf("model %s is made of straight lines (%s=), which is not modelled", m.name, key)
+		}
+	}
+	return ""
+}
+
+// wrongKind is an element whose model is of another kind.
+func wrongKind(c *elementCard, m *modelCard) Unknown {
+	if m.kind == "" {
+		return Unknown{Letter: c.letter, Why: "model " + m.name + " names no kind"}
+	}
+	return Unknown{Letter: c.letter, Why: "model " + m.name + " is of kind " + strings.ToUpper(m.kind)}
 }
 
 // ratingLike are parameters of a model card that state a rating and not a law.
@@ -32,6 +68,13 @@ func (x *expander) modelCardAt(s *scope, name string, depth int) *modelCard {
 	}
 	x.models[line] = nil
 	card, fault := syntax.ParseDirective(line)
+	if fault != nil { // public libraries close some brackets twice
+		once := *line
+		for fault != nil && strings.HasSuffix(once.Text, ")") && strings.Count(once.Text, ")") > strings.Count(once.Text, "(") {
+			once.Text = strings.TrimRight(once.Text[:len(once.Text)-1], " \t")
+			card, fault = syntax.ParseDirective(&once)
+		}
+	}
 	if fault != nil {
 		x.faults = append(x.faults, *fault)
 		return nil
@@ -40,6 +83,7 @@ func (x *expander) modelCardAt(s *scope, name string, depth int) *modelCard {
 	env := x.environmentOf(home)
 	words := 0
 	var base string
+	based := false // the next word is the base
 	var read func(items []*syntax.Item)
 	read = func(items []*syntax.Item) {
 		for _, i := range items {
@@ -49,10 +93,12 @@ func (x *expander) modelCardAt(s *scope, name string, depth int) *modelCard {
 			case i.Assign != nil && i.Assign.Value == nil:
 				text := i.Assign.Key.Text()
 				switch words++; {
+				case based:
+					base, based = text, false
 				case words == 1:
 					m.name = text
 				case strings.HasPrefix(strings.ToLower(text), "ako:"):
-					base = text[4:]
+					base, based = text[4:], len(text) == 4
 				case m.kind == "":
 					m.kind = strings.ToLower(text)
 				}
@@ -63,15 +109,16 @@ func (x *expander) modelCardAt(s *scope, name string, depth int) *modelCard {
 					continue
 				}
 				v, err := env.evaluate(i.Assign.Value, 0)
-				if err != nil {
-					if i.Assign.Value.Atom != nil && !i.Assign.Value.Atom.IsExpression() {
-						m.fields = append(m.fields, Field{Key: i.Assign.Key.Text(), Value: i.Assign.Value.Atom.Text(), At: line.Start()})
-						continue
-					}
+				switch plain := i.Assign.Value.Atom != nil && !i.Assign.Value.Atom.IsExpression(); {
+				case err == nil:
+					m.values[key] = v
+				case plain && !lawParameters[key]:
+					m.fields = append(m.fields, Field{Key: i.Assign.Key.Text(), Value: i.Assign.Value.Atom.Text(), At: line.Start()})
+				case x.unknowable(err):
+					m.unknown = fmt.Sprintf("%s of model %s is not known: %v", key, m.name, err)
+				default:
 					x.fault(line.Position(i.Assign.Key.Pos.Offset), fmt.Sprintf("model %s: %s: %v", m.name, key, err), "a number")
-					continue
 				}
-				m.values[key] = v
 			}
 		}
 	}
@@ -85,6 +132,9 @@ func (x *expander) modelCardAt(s *scope, name string, depth int) *modelCard {
 			}
 			if m.kind == "" {
 				m.kind = b.kind
+			}
+			if m.unknown == "" {
+				m.unknown = b.unknown
 			}
 		} else {
 			x.remark(RemarkModel, line.Start(), "", "model "+m.name+" is based on "+base+", which is not defined")

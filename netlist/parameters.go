@@ -18,12 +18,17 @@ type environment struct {
 	texts   map[string]assignment
 	known   map[string]float64
 	working map[string]bool
+
+	formulas map[string]*syntax.Formula // parsed so far; shared by all environments of a netlist
 }
 
 func newEnvironment(parent *environment, s *scope, given map[string]float64) *environment {
 	e := &environment{
 		parent: parent, scope: s, given: given,
 		texts: map[string]assignment{}, known: map[string]float64{}, working: map[string]bool{},
+	}
+	if e.formulas = map[string]*syntax.Formula{}; parent != nil {
+		e.formulas = parent.formulas
 	}
 	for _, a := range s.defaults {
 		e.texts[a.name] = a
@@ -100,7 +105,7 @@ func (e *environment) atomAt(a *syntax.Atom, depth int) (float64, error) {
 			return v, nil
 		}
 	}
-	f, err := syntax.ParseFormula(a.Text())
+	f, err := e.parse(a.Text())
 	if err != nil {
 		return 0, err
 	}
@@ -114,6 +119,18 @@ func (e *environment) atomAt(a *syntax.Atom, depth int) (float64, error) {
 		return 0, fmt.Errorf("`%s` has no finite value", shorten(a.Text()))
 	}
 	return v, nil
+}
+
+// parse is ParseFormula, once for each text: the cards of a subcircuit are evaluated at each call.
+func (e *environment) parse(text string) (*syntax.Formula, error) {
+	if f, ok := e.formulas[text]; ok {
+		return f, nil
+	}
+	f, err := syntax.ParseFormula(text)
+	if err == nil && e.formulas != nil {
+		e.formulas[text] = f
+	}
+	return f, err
 }
 
 // spice reads a number of the netlist.

@@ -106,7 +106,7 @@ func TestDoubtfulCardsAreRemarked(t *testing.T) {
 		"Q1 a b 0 2N3055 12V":                 {RemarkModel, "12V"},
 		"K1 L1 L2\nL1 a 0 1\nL2 b 0 1":        {RemarkAssumption, "taken as 1"},
 		"R1 a 0 1\n.endA":                     {RemarkNotRead, ".enda"},
-		"R1 a 0 1\n.if (x)\n.endif":           {RemarkNotRead, ".if"},
+		"R1 a 0 1\n.if (x)\n.endif":           {RemarkNotRead, "condition of .if"},
 		"C1 a 0 10MF":                         {RemarkValueSuffix, "milli"},
 		"D1 a 0 DX\n.model DX AKO:DY (IS=1n)": {RemarkModel, "DY"},
 		".subckt S a\nR1 a 0 1\n.ends\n.subckt S a\nR1 a 0 2\n.ends\nX1 a S": {RemarkModel, "first definition holds"},

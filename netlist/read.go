@@ -90,7 +90,7 @@ func parse(name string, text []byte, sheet []DutyLine, library Library, opened *
 	lines, inline, faults := syntax.Lines(name, decoded)
 	x := &expander{
 		collector: collector{
-			files: opened, globals: map[string]bool{}, skipped: map[string]bool{}, temperature: 27, faults: faults,
+			files: opened, globals: map[string]bool{}, skipped: map[string]bool{}, doubtful: map[*syntax.Line]bool{}, temperature: 27, faults: faults,
 		},
 		library: library, nodes: map[string]NodeID{}, models: map[*syntax.Line]*modelCard{},
 		environments: map[*scope]*environment{}, names: map[string]bool{}, cards: map[*syntax.Line]aheadCard{}, byName: map[string]ElementID{},
@@ -151,37 +151,68 @@ func (x *expander) takeTitle(lines []syntax.Line) []syntax.Line {
 	return lines[1:]
 }
 
-// titleElement takes the title for an element if it is plainly one: well formed, with a numeric value, and
-// every node of it is a node of the circuit.
+// titleElement takes the title for an element if it is plainly one: well formed, every node of it is a node of
+// the circuit, and what stands behind them is a value, a model or a subcircuit. It is then said so.
 func (x *expander) titleElement() {
-	l := x.titleLine
-	if l == nil || !looksLikeElement(l.Text) || !strings.ContainsRune("RCLVIrclvi", rune(l.Text[0])) {
+	if x.titleLine == nil {
+		return
+	}
+	l := x.titleLine.WithoutComment()
+	if !looksLikeElement(l.Text) {
 		return
 	}
 	words := strings.Fields(l.Text)
-	if len(words) < 4 {
+	letter := upper(words[0][0])
+	pins := nodesOnly[letter]
+	if letter == 'X' {
+		pins = len(words) - 2
+	}
+	if pins < 2 || len(words) < pins+2 {
 		return
 	}
-	if _, number := spice(words[3]); !number && !keyword(strings.SplitN(words[3], "(", 2)[0]) {
-		return
-	}
-	met := func(name string) bool {
-		if isGroundName(name) {
-			return x.circuit.HasGround
+	switch after := words[pins+1]; letter {
+	case 'R', 'C', 'L', 'V', 'I':
+		if _, number := spice(after); !number && !keyword(strings.SplitN(after, "(", 2)[0]) {
+			return
 		}
-		_, ok := x.nodes[strings.ToLower(name)]
-		return ok
+	case 'X':
+		if _, defined := x.top.subckt(strings.ToLower(after)); !defined && !x.recognised(after) {
+			return
+		}
+	case 'D', 'Q', 'M', 'S':
+		if _, _, defined := x.top.model(strings.ToLower(after)); !defined && !x.recognised(after) {
+			return
+		}
+	default:
+		return
 	}
-	if !met(words[1]) || !met(words[2]) || words[1] == words[2] {
+	first := true
+	for _, name := range words[1 : pins+1] {
+		if isGroundName(name) {
+			first = first && x.circuit.HasGround
+		} else if _, met := x.nodes[strings.ToLower(name)]; !met {
+			first = false
+		}
+	}
+	if !first || words[1] == words[2] {
 		x.remark(RemarkAssumption, l.Start(), "", "the first line reads like an element but is the title")
 		return
 	}
-	before := len(x.circuit.Elements)
-	x.element(&level{scope: x.top, env: x.environmentOf(x.top)}, l)
-	if len(x.circuit.Elements) > before {
+	before, faults := len(x.circuit.Elements), len(x.faults)
+	x.element(&level{scope: x.top, env: x.environmentOf(x.top)}, &l)
+	if len(x.faults) == faults && len(x.circuit.Elements) > before {
 		x.remark(RemarkAssumption, l.Start(), x.circuit.Elements[before].Name, "the first line is taken as an element, not as the title: its nodes are those of the circuit")
 		x.title = ""
 	}
+}
+
+// recognised reports a type name that the library knows.
+func (x *expander) recognised(name string) bool {
+	if x.library == nil {
+		return false
+	}
+	_, ok := x.library.Recognise(name)
+	return ok
 }
 
 // checkParameters evaluates the parameters of the netlist that nothing asked for, so that a mistake in one
@@ -193,7 +224,7 @@ func (x *expander) checkParameters() {
 			continue
 		}
 		if _, err := env.value(a.name); err != nil {
-			if x.unread {
+			if x.unknowable(err) {
 				x.remark(RemarkNotRead, a.line.Start(), "", "parameter "+a.name+": "+err.Error())
 				continue
 			}

@@ -52,8 +52,11 @@ func (x *expander) known(lv *level, c *elementCard, name string, nodes []NodeID,
 		anode, cathode := nodes[0], nodes[1]
 		if a, k, ok := diodePins(definition); ok {
 			anode, cathode = nodes[a], nodes[k]
-		} else if !macromodel {
+		} else {
 			assume("its first node is taken as the anode")
+		}
+		if macromodel {
+			assume("the law of a " + part.Type + " stands in for the subcircuit that the netlist carries for it")
 		}
 		x.add(lv, c, []NodeID{anode, cathode}, Diode{Area: 1}, name)
 		return true
@@ -138,12 +141,24 @@ func orderWords(pins []Pin) string {
 	return strings.Join(list, ", ")
 }
 
+// diodePins finds the anode of a two-pin subcircuit: by the diodes that lie straight across its pins, which
+// conduct forward, else by the names of the pins.
 func diodePins(definition *scope) (anode, cathode int, ok bool) {
 	if definition == nil || len(definition.pins) != 2 {
 		return 0, 0, false
 	}
 	first := strings.ToLower(definition.pins[0])
 	second := strings.ToLower(definition.pins[1])
+	forward, reverse := false, false
+	for _, l := range definition.elements {
+		if w := strings.Fields(strings.ToLower(l.Text)); len(w) >= 4 && w[0][0] == 'd' {
+			forward = forward || w[1] == first && w[2] == second
+			reverse = reverse || w[1] == second && w[2] == first
+		}
+	}
+	if forward != reverse {
+		return truthIndex(reverse), truthIndex(forward), true
+	}
 	is := func(name string, names ...string) bool {
 		for _, n := range names {
 			if name == n {
@@ -153,12 +168,19 @@ func diodePins(definition *scope) (anode, cathode int, ok bool) {
 		return false
 	}
 	switch {
-	case is(first, "a", "an", "anode", "1") && is(second, "k", "c", "ca", "cathode", "2"):
+	case is(first, "a", "an", "anode", "p") && is(second, "k", "c", "ca", "cathode", "n"):
 		return 0, 1, true
 	case is(first, "k", "c", "ca", "cathode") && is(second, "a", "an", "anode"):
 		return 1, 0, true
 	}
 	return 0, 0, false
+}
+
+func truthIndex(b bool) int {
+	if b {
+		return 1
+	}
+	return 0
 }
 
 // bridgePins returns the positions of AC, AC, + and - among a subcircuit's pins, nil if their names do not tell.

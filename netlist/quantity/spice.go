@@ -18,14 +18,15 @@ type Spice struct {
 // mil marks the one scale factor that is no power of ten: 25.4e-6.
 const mil = 1000
 
-// spiceFactors are the scale factors of SPICE as powers of ten, longest first. Case does not matter.
+// spiceFactors are the scale factors of SPICE as powers of ten, longest first. Case does not matter. `âµ` is the
+// lower case of a micro sign that was encoded twice.
 var spiceFactors = []struct {
 	letters  string
 	exponent int
 }{
 	{"meg", 6}, {"mil", mil},
 	{"t", 12}, {"g", 9}, {"k", 3}, {"m", -3},
-	{"u", -6}, {"µ", -6}, {"μ", -6}, {"n", -9}, {"p", -12}, {"f", -15},
+	{"u", -6}, {"µ", -6}, {"μ", -6}, {"âµ", -6}, {"n", -9}, {"p", -12}, {"f", -15},
 }
 
 // coded are the letters of IEC 60062 that may stand for the decimal point, as powers of ten, in their own case: unlike in
@@ -128,6 +129,10 @@ func spiceMantissa(text string) int {
 	return k
 }
 
+// codedDecimals is how many digits may stand behind the letter: IEC 60062 has values of two to four figures, and
+// type numbers such as 2N3055 and 1N4007 are no values.
+const codedDecimals = 3
+
 // parseCoded reads the letter-for-point code: whole digits, one letter, decimals, unit letters.
 func parseCoded(whole, rest string) (Spice, bool) {
 	if strings.ContainsAny(whole, ".eE") {
@@ -142,7 +147,7 @@ func parseCoded(whole, rest string) (Spice, bool) {
 		for k < len(decimals) && decimals[k] >= '0' && decimals[k] <= '9' {
 			k++
 		}
-		if k == 0 || !unitLetters(decimals[k:]) {
+		if k == 0 || k > codedDecimals || !unitLetters(decimals[k:]) {
 			return Spice{}, false
 		}
 		value, err := strconv.ParseFloat(whole+"."+decimals[:k], 64)
@@ -154,11 +159,13 @@ func parseCoded(whole, rest string) (Spice, bool) {
 	return Spice{}, false
 }
 
-// unitLetters reports whether a text may be a unit behind a number: letters, the ohm sign, a few marks.
+// unitLetters reports whether a text may be a unit behind a number: letters, the ohm sign, a degree. Other letters
+// are refused: they may be a micro sign that lost its encoding.
 func unitLetters(text string) bool {
 	for _, r := range text {
 		switch {
-		case r >= 'a' && r <= 'z', r >= 'A' && r <= 'Z', r >= 0x80, r == '_', r == '%':
+		case r >= 'a' && r <= 'z', r >= 'A' && r <= 'Z', r == '_', r == '%':
+		case r == 'Ω', r == '\u2126', r == '°', r == 'µ', r == 'μ':
 		default:
 			return false
 		}

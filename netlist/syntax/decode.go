@@ -8,9 +8,9 @@ import (
 )
 
 // Decode turns the bytes of a netlist into text: UTF-8 with or without byte order mark, UTF-16 with one or
-// recognised by its pattern of NUL bytes, else Latin-1 with the printable additions of code page 1252 left
-// as they are. LF, CRLF and CR all end a line and become LF; a
-// non-breaking blank becomes a blank.
+// recognised by its pattern of NUL bytes. A byte that is no UTF-8 is the Latin-1 character of that number, so
+// that a deck of one encoding with a comment in another keeps its micro signs. LF, CRLF and CR all end a line
+// and become LF; a non-breaking blank becomes a blank.
 func Decode(raw []byte) string {
 	var text string
 	switch {
@@ -27,12 +27,7 @@ func Decode(raw []byte) string {
 	case utf8.Valid(raw):
 		text = string(raw)
 	default:
-		var b strings.Builder
-		b.Grow(len(raw) + len(raw)/8)
-		for _, c := range raw {
-			b.WriteRune(rune(c))
-		}
-		text = b.String()
+		text = mixed(raw)
 	}
 	if body := strings.TrimRight(text, " \t\r\n\x1a"); strings.ContainsRune(text[len(body):], '\x1a') {
 		text = body // without the end-of-file mark of old systems
@@ -43,6 +38,21 @@ func Decode(raw []byte) string {
 		text = strings.ReplaceAll(text, "\r", "\n")
 	}
 	return text
+}
+
+// mixed decodes byte sequences that are UTF-8 as such and every other byte as Latin-1.
+func mixed(raw []byte) string {
+	var b strings.Builder
+	b.Grow(len(raw) + len(raw)/8)
+	for len(raw) > 0 {
+		r, size := utf8.DecodeRune(raw)
+		if r == utf8.RuneError && size == 1 {
+			r = rune(raw[0])
+		}
+		b.WriteRune(r)
+		raw = raw[size:]
+	}
+	return b.String()
 }
 
 // nulPattern reports whether most bytes at the offsets of a parity are NUL and few at the others, as in

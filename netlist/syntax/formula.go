@@ -76,7 +76,7 @@ type Operand struct {
 	Number string   `parser:"  @Number"`
 	Probe  string   `parser:"| @Probe"`
 	Call   *Call    `parser:"| @@"`
-	Sub    *Formula `parser:"| '(' @@ ')'"`
+	Sub    *Formula `parser:"| '(' @@ ')' | '{' @@ '}'"`
 }
 
 // Call is a name, with arguments if it is a function.

@@ -62,8 +62,8 @@ func classifyFormula(text string) (lexer.TokenType, int) {
 			size++
 		}
 		if word := strings.ToLower(text[:size]); (word == "v" || word == "i") && size < len(text) && text[size] == '(' {
-			if end := strings.IndexByte(text[size:], ')'); end >= 0 {
-				return formulaProbe, size + end + 1
+			if end := probeEnd(text[size:]); end > 0 {
+				return formulaProbe, size + end
 			}
 			return formulaInvalid, len(text)
 		}
@@ -75,10 +75,26 @@ func classifyFormula(text string) (lexer.TokenType, int) {
 			return formulaOp, 2
 		}
 	}
-	if strings.IndexByte("+-*/^()<>,?:!&|%", c) >= 0 {
+	if strings.IndexByte("+-*/^(){}<>,?:!&|%", c) >= 0 {
 		return formulaOp, 1
 	}
 	return formulaInvalid, 1
+}
+
+// probeEnd measures the brackets of a probe; names of nodes may carry brackets of their own: V(Net-(D1-K)).
+func probeEnd(text string) int {
+	depth := 0
+	for k := 0; k < len(text); k++ {
+		switch text[k] {
+		case '(':
+			depth++
+		case ')':
+			if depth--; depth == 0 {
+				return k + 1
+			}
+		}
+	}
+	return 0
 }
 
 func nameStart(c byte) bool {
