@@ -125,7 +125,7 @@ func (c *collector) block(lines []syntax.Line, section string) {
 			// An .end ends the circuit also where the block before it was never closed.
 		}
 		if c.ended {
-			if word != "" && word[0] != '.' && looksLikeElement(l.Text) && c.depth == 0 {
+			if word != "" && word[0] != '.' && elementBehindEnd(l.Text) && c.depth == 0 {
 				c.remark(RemarkAfterEnd, l.Start(), word, "stands behind .end and is not part of the circuit")
 			}
 			if strings.EqualFold(word, ".control") {
@@ -250,6 +250,19 @@ func sectionEnd(lines []syntax.Line, k int) int {
 func looksLikeElement(text string) bool {
 	f := strings.Fields(text)
 	return len(f) >= 3 && isLetter(f[0][0])
+}
+
+// elementBehindEnd reports a line with as many words as an element of its letter has.
+func elementBehindEnd(text string) bool {
+	if !looksLikeElement(text) {
+		return false
+	}
+	letter, words := upper(text[0]), len(strings.Fields(text))
+	need := nodesNeeded[letter]
+	if letter == 'R' || letter == 'C' || letter == 'L' {
+		need = 3
+	}
+	return need > 0 && words > need
 }
 
 func isLetter(b byte) bool { return b >= 'a' && b <= 'z' || b >= 'A' && b <= 'Z' }

@@ -122,7 +122,7 @@ func (x *expander) parsed(lv *level, line *syntax.Line, card *syntax.ElementCard
 	}
 	c := sortCard(line, card)
 	if need := nodesNeeded[c.letter]; len(c.words) < need {
-		x.fault(line.Start(), fmt.Sprintf("%s has %d words behind its name", c.shown, len(c.words)), expectedCard[c.letter])
+		x.fault(line.Start(), fmt.Sprintf("%s has %s behind its name", c.shown, counted(len(c.words), "word")), expectedCard[c.letter])
 		return
 	}
 	if c.early != nil {
@@ -165,6 +165,14 @@ func (x *expander) parsed(lv *level, line *syntax.Line, card *syntax.ElementCard
 	default:
 		x.other(lv, c)
 	}
+}
+
+// counted is a number with its noun: 1 word, 2 words.
+func counted(n int, noun string) string {
+	if n == 1 {
+		return "1 " + noun
+	}
+	return fmt.Sprintf("%d %ss", n, noun)
 }
 
 // nodesOnly is how many words behind the name can be nothing but nodes.

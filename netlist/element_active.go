@@ -179,6 +179,10 @@ func (x *expander) switchCard(lv *level, c *elementCard) {
 			return
 		}
 		s.Model = m.switchModel()
+		if s.Model.VH < 0 {
+			x.add(lv, c, nodes, Unknown{Letter: 'S', Why: "model " + m.name + " has a hysteresis below 0, which programs read differently"}, typeName)
+			return
+		}
 		if s.Model.RON <= 0 || s.Model.ROFF <= 0 {
 			x.add(lv, c, nodes, Unknown{Letter: 'S', Why: "model " + m.name + " has a resistance that is not above 0"}, typeName)
 			return

@@ -190,7 +190,7 @@ func (x *expander) voltageControlled(lv *level, c *elementCard) {
 		return
 	}
 	if len(rest) < 3 {
-		x.fault(c.line.Start(), fmt.Sprintf("%s has %d words behind its name", c.shown, len(c.words)), expectedCard[c.letter])
+		x.fault(c.line.Start(), fmt.Sprintf("%s has %s behind its name", c.shown, counted(len(c.words), "word")), expectedCard[c.letter])
 		return
 	}
 	nodes = append(nodes, x.node(lv, rest[0].Text()), x.node(lv, rest[1].Text()))

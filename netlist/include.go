@@ -126,11 +126,16 @@ func (f *files) lines(root int, name string) ([]syntax.Line, []syntax.Inline, []
 	shown := filepath.Join(f.names[root], filepath.FromSlash(name))
 	decoded := syntax.Decode(text)
 	if kind := syntax.Foreign(decoded); kind != "" {
-		return nil, nil, nil, fmt.Errorf("%s is %s, not a SPICE-style library", shown, kind)
+		return nil, nil, nil, foreignFile{kind}
 	}
 	lines, inline, faults := syntax.IncludedLines(shown, decoded)
 	return lines, inline, faults, nil
 }
+
+// foreignFile is an included file of another kind.
+type foreignFile struct{ kind string }
+
+func (f foreignFile) Error() string { return "the file is " + f.kind }
 
 // readLimited reads a file up to the limit of its size.
 func readLimited(r *os.File) ([]byte, error) {
@@ -179,6 +184,10 @@ func (c *collector) include(key string, l *syntax.Line) {
 	}
 	c.files.count++
 	lines, inline, faults, err := c.files.lines(root, local)
+	if foreign := (foreignFile{}); errors.As(err, &foreign) {
+		c.remark(RemarkLibraryNotRead, l.Start(), "", base+" is "+foreign.kind+", not a SPICE-style library")
+		return
+	}
 	if err != nil {
 		if errors.Is(err, fs.ErrNotExist) || errors.Is(err, fs.ErrPermission) {
 			c.remark(RemarkLibraryNotRead, l.Start(), "", base+" cannot be opened")

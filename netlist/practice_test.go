@@ -1,11 +1,74 @@
 package netlist
 
 import (
+	"fmt"
 	"strings"
 	"testing"
 )
 
-// read parses a netlist that must be accepted.
+// The tests of the files practice_*_test.go go through what public netlists contain, habit by habit. Each example is
+// made up for its row; what was read is compared whole: names, nodes, values, models and remarks.
+
+// practice is one habit of public netlists.
+type practice struct {
+	habit string
+	text  string
+	want  string // the circuit as told writes it
+	says  string // kind of remark and a part of its text, `kind: text`, several divided by |; empty: no remark at all
+}
+
+// remarkNames are the kinds of remark in the says column.
+var remarkNames = map[string]RemarkKind{
+	"assumed": RemarkAssumption, "not read": RemarkNotRead, "library": RemarkLibraryNotRead, "after end": RemarkAfterEnd,
+	"duplicate": RemarkDuplicateName, "suffix": RemarkValueSuffix, "model": RemarkModel,
+}
+
+// hold reads the examples and compares.
+func hold(t *testing.T, rows []practice) {
+	t.Helper()
+	for _, p := range rows {
+		t.Run(p.habit, func(t *testing.T) {
+			c := accepted(t, p.text)
+			if got := told(c); got != p.want {
+				t.Errorf("%q:\nread %s\nwant %s", p.text, got, p.want)
+			}
+			checkRemarks(t, c, p.says)
+		})
+	}
+}
+
+// checkRemarks holds the remarks of a circuit against a says column: each is there, and none beside them.
+func checkRemarks(t *testing.T, c *Circuit, says string) {
+	t.Helper()
+	wanted := 0
+	for _, part := range strings.Split(says, "|") {
+		kind, text, ok := strings.Cut(part, ": ")
+		if !ok {
+			continue
+		}
+		wanted++
+		k, known := remarkNames[kind]
+		if !known || !remarked(c, k, text) {
+			t.Errorf("no remark %q among %+v", part, c.Remarks)
+		}
+	}
+	if len(c.Remarks) != wanted {
+		t.Errorf("%d remarks, want %d: %+v", len(c.Remarks), wanted, c.Remarks)
+	}
+}
+
+// refuse holds texts against a part of the first message with its place.
+func refuse(t *testing.T, rows map[string]string) {
+	t.Helper()
+	for text, want := range rows {
+		_, _, faults := Parse("t.cir", []byte(text), nil, regulators{})
+		if len(faults) == 0 || !strings.Contains(faults[0].Error(), want) {
+			t.Errorf("%q: %v, want %s", text, faults, want)
+		}
+	}
+}
+
+// accepted parses a netlist that must be accepted.
 func accepted(t *testing.T, text string) *Circuit {
 	t.Helper()
 	c, _, faults := Parse("t.cir", []byte(text), nil, regulators{})
@@ -15,17 +78,105 @@ func accepted(t *testing.T, text string) *Circuit {
 	return c
 }
 
-// shape is the circuit in one line an element: NAME KIND nodes.
-func shape(c *Circuit) string {
-	var lines []string
-	for _, e := range c.Elements {
-		var nodes []string
-		for _, n := range e.Nodes {
-			nodes = append(nodes, c.Nodes[n].Name)
-		}
-		lines = append(lines, e.Name+"("+strings.Join(nodes, " ")+")")
+// told is the circuit in one line: NAME(nodes)=device, elements divided by blanks.
+func told(c *Circuit) string {
+	var list []string
+	for k := range c.Elements {
+		list = append(list, tellShape(c, k)+"="+tellDevice(c, k))
 	}
-	return strings.Join(lines, " ")
+	return strings.Join(list, " ")
+}
+
+func tellShape(c *Circuit, k int) string {
+	var nodes []string
+	for _, n := range c.Elements[k].Nodes {
+		nodes = append(nodes, c.Nodes[n].Name)
+	}
+	return c.Elements[k].Name + "(" + strings.Join(nodes, " ") + ")"
+}
+
+// shape is told without the devices.
+func shape(c *Circuit) string {
+	var list []string
+	for k := range c.Elements {
+		list = append(list, tellShape(c, k))
+	}
+	return strings.Join(list, " ")
+}
+
+// number is a value to four figures.
+func figure(v float64) string { return fmt.Sprintf("%.4g", v) }
+
+func tellDevice(c *Circuit, k int) string {
+	e := c.Elements[k]
+	switch d := e.Device.(type) {
+	case Resistor:
+		return figure(d.Ohms)
+	case Capacitor:
+		return figure(d.Farads)
+	case Inductor:
+		return figure(d.Henries)
+	case Coupling:
+		var names []string
+		for _, id := range d.Inductors {
+			names = append(names, c.Elements[id].Name)
+		}
+		return strings.Join(names, "-") + "*" + figure(d.Factor)
+	case VoltageSource:
+		if d.SeriesOhms != 0 {
+			return tellWave(d.Wave) + "+" + figure(d.SeriesOhms) + "ohm"
+		}
+		return tellWave(d.Wave)
+	case CurrentSource:
+		return tellWave(d.Wave)
+	case Diode:
+		if d.Model == nil {
+			return e.TypeName + "?"
+		}
+		return fmt.Sprintf("%s[IS=%s,N=%s,BV=%s]", d.Model.Name, figure(d.Model.IS), figure(d.Model.N), figure(d.Model.BV))
+	case Transistor:
+		if d.Model == nil {
+			return e.TypeName + "?"
+		}
+		return fmt.Sprintf("%s[%+d,BF=%s]", d.Model.Name, d.Model.Polarity, figure(d.Model.BF))
+	case Fet:
+		if d.Model == nil {
+			return e.TypeName + "?"
+		}
+		return fmt.Sprintf("%s[%+d]", d.Model.Name, d.Model.Polarity)
+	case Switch:
+		if d.Model == nil {
+			return e.TypeName + "?"
+		}
+		return fmt.Sprintf("%s[VT=%s,on=%v]", d.Model.Name, figure(d.Model.VT), d.On)
+	case VoltageControlled:
+		return "*" + figure(d.Gain)
+	case CurrentControlled:
+		return c.Elements[d.Control].Name + "*" + figure(d.Gain)
+	case Behavioural:
+		return "{" + strings.ReplaceAll(d.Expression.String(), " ", "") + "}"
+	case Regulator:
+		return e.TypeName
+	case Unknown:
+		return "unknown"
+	}
+	return "?"
+}
+
+func tellWave(w Waveform) string {
+	switch w := w.(type) {
+	case Constant:
+		return figure(w.Level)
+	case Sine:
+		return fmt.Sprintf("sin:%s:%s:%s", figure(w.Offset), figure(w.Amplitude), figure(w.Frequency))
+	case Pulse:
+		return fmt.Sprintf("pulse:%s:%s", figure(w.Low), figure(w.High))
+	case Exponential:
+		return fmt.Sprintf("exp:%s:%s", figure(w.Low), figure(w.High))
+	case Piecewise:
+		return fmt.Sprintf("pwl:%d", len(w.Times))
+	}
+	return "?"
 }
 
 // remarked reports whether a remark of a kind contains a text.
@@ -36,156 +187,4 @@ func remarked(c *Circuit, kind RemarkKind, text string) bool {
 		}
 	}
 	return false
-}
-
-// What public netlists contain, row by row: the file itself, lines and comments, names.
-func TestHabitsOfFilesAndNames(t *testing.T) {
-	const two = "V1(a 0) R1(a 0)"
-	for name, c := range map[string]struct{ text, want string }{
-		"CRLF":                       {"t\r\nV1 a 0 5\r\nR1 a 0 1k\r\n", two},
-		"CR alone and mixed":         {"t\rV1 a 0 5\r\nR1 a 0 1k\n", two},
-		"Latin-1 micro":              {"t\nV1 a 0 5\nR1 a 0 1k\nC1 a 0 10\xb5\n", two + " C1(a 0)"},
-		"Latin-1 path":               {"* D:\\Ol\xe1\\a\nV1 a 0 5\nR1 a 0 1k\n", two},
-		"UTF-8 micro":                {"t\nV1 a 0 5\nR1 a 0 1k\nC1 a 0 10µ\n", two + " C1(a 0)"},
-		"UTF-16LE without mark":      {"t\x00\n\x00V\x001\x00 \x00a\x00 \x000\x00 \x005\x00\n\x00R\x001\x00 \x00a\x00 \x000\x00 \x001\x00\n\x00", two},
-		"UTF-16LE with mark":         {"\xff\xfet\x00\n\x00V\x001\x00 \x00a\x00 \x000\x00 \x005\x00\n\x00R\x001\x00 \x00a\x00 \x000\x00 \x001\x00\n\x00", two},
-		"tabs":                       {"t\nV1\ta\t0\t5\nR1\ta\t0\t1k\n", two},
-		"blank first line":           {"\nV1 a 0 5\nR1 a 0 1k\n", two},
-		"comment title":              {"* supply\nV1 a 0 5\nR1 a 0 1k\n", two},
-		"free title":                 {"Bridge with 470u\nV1 a 0 5\nR1 a 0 1k\n", two},
-		"title like an element":      {"Lab 4, Task 2, EE 101\nV1 a 0 5\nR1 a 0 1k\n", two},
-		"directive first":            {".options x\nV1 a 0 5\nR1 a 0 1k\n", two},
-		".title":                     {".title x\nV1 a 0 5\nR1 a 0 1k\n", two},
-		"control after end":          {"t\nV1 a 0 5\nR1 a 0 1k\n.end\n.control\nR9 a 0 1\n.endc\n", two},
-		".end twice":                 {"t\nV1 a 0 5\nR1 a 0 1k\n.end\n.end\n", two},
-		"typos of directives":        {"t\nV1 a 0 5\nR1 a 0 1k\n.endA\n.trans 1\n", two},
-		"continuation":               {"t\nV1 a 0\n+ 5\nR1 a\n+0 1k\n", two},
-		"continuation after comment": {"t\nV1 a 0\n* note\n\n+ 5\nR1 a 0 1k\n", two},
-		"; inline and whole":         {"t\nV1 a 0 5 ; five\n;tran 10m\nR1 a 0 1k\n", two},
-		"$ inline":                   {"t\nV1 a 0 5 $ five\nR1 a 0 1k\n", two},
-		"# and // lines":             {"t\n# x\n// y\n   * z\nV1 a 0 5\nR1 a 0 1k\n", two},
-		"indented":                   {"t\n    V1 a 0 5\n  R1 a 0 1k\n", two},
-		"control block":              {"t\nV1 a 0 5\n.control\necho \"unbalanced\n.tran 1\nrun > x\n.endc\nR1 a 0 1k\n", two},
-		"case of directives":         {"t\n.PARAM r=1k\nV1 a 0 5\nR1 a 0 {R}\n.END\n", two},
-		"ground alias":               {"t\nV1 a GND 5\nR1 a gnd 1k\n", two},
-		"case of nodes":              {"t\nV1 +5V 0 5\nR1 +5v 0 1k\n", "V1(+5V 0) R1(+5V 0)"},
-		"odd nodes":                  {"t\nV1 Net-(D1-K) V- 5\nR1 Net-_D1-Pad2_ /psu/VRAW 1k\nR2 12V 5V_raw 1\nR3 $N_0007 a# 1\nR4 N$12 Out+ 1\n", "V1(Net-(D1-K) V-) R1(Net-_D1-Pad2_ /psu/VRAW) R2(12V 5V_raw) R3($N_0007 a#) R4(N$12 Out+)"},
-		"unconnected":                {"t\nV1 a 0 5\nR1 a ? 1\nR2 a ? 1\n", "V1(a 0) R1(a ?1) R2(a ?2)"},
-		"spaces round commas":        {"t\nV1 a 0 5\nGx a 0 (a ,0) 7m\n", "V1(a 0) Gx(a 0 a 0)"},
-		"designators":                {"t\nV1 a 0 5\nX§U1 a 0 NOTHING\nR-load a 0 1\nR(PULL)3 a 0 1\nR6.1 a 0 1\nRR3 a 0 1\nC a 0 1u\n", "V1(a 0) U1(a 0) R-load(a 0) R(PULL)3(a 0) R6.1(a 0) RR3(a 0) C(a 0)"},
-		"part and model of one name": {"t\nV1 a 0 5\nD1 a 0 d1\n.model d1 D(N=2)\n", "V1(a 0) D1(a 0)"},
-	} {
-		t.Run(name, func(t *testing.T) {
-			if got := shape(accepted(t, c.text)); got != c.want {
-				t.Errorf("read %s, want %s", got, c.want)
-			}
-		})
-	}
-	c := accepted(t, "t\nV1 a 0 5\nR1 a 0 1k\n.end\nCx a 0 1u\n")
-	if shape(c) != two || !remarked(c, RemarkAfterEnd, "Cx") {
-		t.Error("an element behind .end must be named and left out")
-	}
-	if c = accepted(t, "R1 a 0 1.2k\nV1 a 0 5\nR2 a 0 1\n"); !remarked(c, RemarkAssumption, "first line is taken as an element") || len(c.Elements) != 3 {
-		t.Errorf("a first line that is plainly an element: %s", shape(c))
-	}
-	if c = accepted(t, "t\nV1 a b 5\nR1 a b 1\n"); c.HasGround || !remarked(c, RemarkAssumption, "node 0") {
-		t.Error("a circuit without ground must say so")
-	}
-	if c = accepted(t, "t\nV1 a 0 5\nR1 a 0 1\nR1 a 0 2\n"); !remarked(c, RemarkDuplicateName, "R1") || len(c.Elements) != 3 {
-		t.Errorf("duplicate names must be kept apart: %s", shape(c))
-	}
-	if c = accepted(t, "t\nV1 a 0 5\nR1 a 0 1\n.simulator x\n"); !remarked(c, RemarkNotRead, ".simulator") {
-		t.Error("other dot cards must be named once")
-	}
-}
-
-// Elements, numbers, models and includes.
-func TestHabitsOfElementsAndModels(t *testing.T) {
-	source := func(card string) Waveform {
-		c := accepted(t, "t\n"+card+"\nR1 a 0 1k\n")
-		return c.Elements[0].Device.(VoltageSource).Wave
-	}
-	sine := Sine{Amplitude: 15, Frequency: 50}
-	for _, card := range []string{
-		"V1 a 0 SIN(0 15 50)", "V1 a 0 SINE(0 15 50)", "V1 a 0 sin 0 15 50", "V1 a 0 SIN (0,15,50)", "V1 a 0 0 sin(0 15 50)",
-		"V1 a 0 dc 0 ac 1 sin(0 15 50)", "V1 a 0 sin(0 15 50) ac 1 0", "V1 a 0 ac 1 dc 0 sin(0 15 50)", "V1 a 0 SIN(0 'sqrt(9)*5' {100/2})",
-	} {
-		if w := source(card); w != sine {
-			t.Errorf("%s: %+v", card, w)
-		}
-	}
-	for card, level := range map[string]float64{
-		"V1 a 0 12V": 12, "V1 a 0 dc(48)": 48, "V1 a 0 DC=5": 5, "V1 a 0 0.0 ac 1.0": 0, "V1 a 0": 0, "V1 a 0 DC 9 Rser=0.1": 9,
-	} {
-		if w := source(card); w != (Constant{level}) {
-			t.Errorf("%s: %+v", card, w)
-		}
-	}
-	resistance := func(card string) (Device, *Circuit) {
-		c := accepted(t, "t\nV1 a 0 1\n.param rl=5\n"+card+"\n")
-		return c.Elements[1].Device, c
-	}
-	for card, ohms := range map[string]float64{
-		"R1 a 0 1k": 1e3, "R1 a 0 1Meg": 1e6, "R1 a 0 2kOhm": 2e3, "R1 a 0 .1": 0.1, "R1 a 0 0k": 0, "R1 a 0 {2*rl}": 10, "R1 a 0 '2*rl'": 10,
-		"R1 a 0 rl": 5, "R1 a 0 R=2k": 2e3, "R1 a 0 330 tol=1 pwr=0.5": 330, "R1 a 0 4k7": 4700, "R1 a 0 2000M": 2, "R1 a 0 1k TC=0.001,0.002": 1e3,
-	} {
-		if d, _ := resistance(card); d != (Resistor{ohms}) {
-			t.Errorf("%s: %+v", card, d)
-		}
-	}
-	if _, c := resistance("R1 a 0 2000M"); !remarked(c, RemarkValueSuffix, "milli") {
-		t.Error("2000M must be remarked as milli")
-	}
-	if d, _ := resistance("R1 a 0 R"); d != (Unknown{'R', "its value is missing"}) {
-		t.Errorf("a value that is a word: %+v", d)
-	}
-	c := accepted(t, "t\nV1 a 0 1\nC1 a 0 22u V=50 Irms=.13 mfg=\"A B\" type=\"Al el\"\nC2 a 0 1F\nC3 a 0 10 uF (0805)\n")
-	if e := c.Elements[1]; len(FieldRatings(e)) < 2 {
-		t.Errorf("ratings on the card: %+v", e.Fields)
-	}
-	if !remarked(c, RemarkValueSuffix, "femto") || c.Elements[3].Device.(Capacitor).Farads != 10e-6 || !remarked(c, RemarkAssumption, "10 uF") {
-		t.Error("1F and `10 uF` must be read and remarked")
-	}
-	for card, want := range map[string]string{
-		"Q1 c b e 0 TIP41":      "Q1(c b e 0)",
-		"Q1 c b e QN":           "Q1(c b e)",
-		"K1 L1 L2 0.998":        "K1()",
-		"F1 a 0 E1 16":          "F1(a 0)",
-		"S1 a 0 b 0 sw ON":      "S1(a 0 b 0)",
-		"M1 d g s b NM W=1u":    "M1(d g s b)",
-		"X1 a b op Avol=1Meg":   "X1(a b)",
-		"X1 a b op PARAMS: x=1": "X1(a b)",
-		"X1 a b c ABC/XYZ":      "X1(a b c)",
-		"X1 raw 0 out LM7812":   "X1(raw 0 out)",
-	} {
-		c := accepted(t, "t\n"+card+"\nE1 a 0 b 0 0.1\nL1 a 0 1\nL2 b 0 1H\n.model QN NPN\n.model sw SW\n.model NM NMOS\n")
-		if got := shape(c); !strings.HasPrefix(got, want+" ") {
-			t.Errorf("%s: %s", card, got)
-		}
-	}
-	// Models: after use, catch-all, without parameters, in every punctuation, based on another, defined twice.
-	for _, model := range []string{".model DX D(IS=1n N=1.5)", ".model DX D IS = 1n, N=1.5", ".model DX D ( IS=1n\n+ N=1.5 )", ".MODEL dx d is=1n n=1.5", ".model DB D(IS=1n N=9)\n.model DX AKO:DB (N=1.5)"} {
-		c := accepted(t, "t\nV1 a 0 1\nD1 a 0 DX\n"+model+"\n")
-		if m := c.Elements[1].Device.(Diode).Model; m == nil || m.IS != 1e-9 || m.N != 1.5 {
-			t.Errorf("%s: %+v", model, m)
-		}
-	}
-	c = accepted(t, "t\nV1 a 0 1\nD1 a 0 D\nD2 a 0 1N-odd\nD3 a 0 DZ\n.model D D\n.model 1N-odd D(BV=75)\n.model 1N-odd D(BV=5)\n.model DZ D(N=19)\n")
-	if m := c.Elements[1].Device.(Diode).Model; m == nil || !m.Bare {
-		t.Errorf("catch-all: %+v", m)
-	}
-	if m := c.Elements[2].Device.(Diode).Model; m == nil || m.BV != 75 || !remarked(c, RemarkModel, "defined again") || !remarked(c, RemarkModel, "string of diodes") {
-		t.Errorf("the first of two models holds, a stack by N is remarked: %+v", m)
-	}
-	// Subcircuits: nested, with parameters and models of their own; globals.
-	c = accepted(t, "t\n.global vdd\nV1 vdd 0 5\nX1 a outer r=2k\n.subckt outer p r=1k\nR1 p vdd {r}\nX2 p inner\n.subckt inner q\nD1 q 0 DI\n.model DI D(N=3)\n.ends inner\n.ends\n")
-	if got := shape(c); got != "V1(vdd 0) X1.R1(a vdd) X1.X2.D1(a 0)" || c.Elements[1].Device != (Resistor{2000}) {
-		t.Errorf("subcircuits: %s %+v", got, c.Elements[1].Device)
-	}
-	// Libraries of the author's machine are named and not opened.
-	for _, line := range []string{".lib C:\\My Docs\\standard.dio", ".include /opt/x/parts.lib", ".inc \"..\\m.lib\"", ".incl \\\\server\\share\\q.lib", ".lib tt.lib TT"} {
-		if c := accepted(t, "t\nV1 a 0 1\nR1 a 0 1\n"+line+"\n"); !remarked(c, RemarkLibraryNotRead, "") {
-			t.Errorf("%s must be remarked as not read", line)
-		}
-	}
 }

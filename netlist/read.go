@@ -114,6 +114,9 @@ func parse(name string, text []byte, sheet []DutyLine, library Library, opened *
 	} else if len(x.faults) == 0 && len(c.Elements) == 0 {
 		x.fault(Position{File: name, Line: 1, Column: 1}, "the file holds no element", "element cards such as `R1 in out 1k`")
 	}
+	if len(x.faults) >= foreignFaults && !plausible(lines) {
+		x.faults = []Diagnostic{{At: Position{File: name, Line: 1, Column: 1}, What: "no line of the file reads like a SPICE-style card", Expected: "element cards such as `R1 in out 1k`"}}
+	}
 	if len(x.faults) > 0 {
 		return c, nil, x.faults[:min(len(x.faults), maxFaults)]
 	}
@@ -232,3 +235,6 @@ func (x *expander) checkParameters() {
 		}
 	}
 }
+
+// foreignFaults is from how many faults on a file is looked at as a whole: is it one of another kind?
+const foreignFaults = 10
