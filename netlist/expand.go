@@ -220,7 +220,7 @@ func (x *expander) call(lv *level, c *elementCard) {
 		return
 	}
 	if len(nodes) != len(definition.pins) {
-		x.fault(c.line.Start(), fmt.Sprintf("%s has %d nodes", c.shown, len(nodes)), fmt.Sprintf("%d, as subcircuit %s has", len(definition.pins), name))
+		x.fault(c.line.Start(), c.shown+" has "+counted(len(nodes), "node"), fmt.Sprintf("%d, as subcircuit %s has", len(definition.pins), name))
 		return
 	}
 	if x.calls++; x.calls > maxElements {

@@ -61,8 +61,8 @@ func TestPracticeOfFiles(t *testing.T) {
 		t.Errorf("title %q", c.Title)
 	}
 	refuse(t, map[string]string{
-		"(export (version D)\n (components))\n":                          "t.cir:1:1: this is a board netlist in S-expressions",
-		"[Main]\nName=x\nKind=2\n":                                       "t.cir:1:1: this is a settings file in sections",
+		"(export (version D)\n (components))\n":                           "t.cir:1:1: this is a board netlist in S-expressions",
+		"[Main]\nName=x\nKind=2\n":                                        "t.cir:1:1: this is a settings file in sections",
 		"DEF X U 0 40 Y N 1 F N\n" + strings.Repeat("F0 \"U\"\n1 a\n", 9): "t.cir:1:1: no line of the file reads like a SPICE-style card",
 	})
 }

@@ -70,6 +70,9 @@ func (x *expander) known(lv *level, c *elementCard, name string, nodes []NodeID,
 		} else {
 			assume("its pins are taken as AC AC + -")
 		}
+		if macromodel {
+			assume("four diodes stand in for the subcircuit that the netlist carries for a " + part.Type)
+		}
 		for k, d := range [][2]NodeID{{ac1, plus}, {ac2, plus}, {minus, ac1}, {minus, ac2}} {
 			leg := *c
 			leg.shown = fmt.Sprintf("%s.D%d", c.shown, k+1)

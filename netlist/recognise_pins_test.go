@@ -5,7 +5,7 @@ import (
 	"testing"
 )
 
-// regulators is a library that knows two type names.
+// regulators is a library that knows a few type names.
 type regulators struct{}
 
 func (regulators) Recognise(name string) (KnownPart, bool) {
@@ -13,6 +13,10 @@ func (regulators) Recognise(name string) (KnownPart, bool) {
 	switch name {
 	case "LM7812":
 		return KnownPart{Type: "7812", Role: RoleRegulator, Polarity: Positive, Pins: pins}, true
+	case "ZENER_12":
+		return KnownPart{Type: "zener 12 V", Role: RoleZener}, true
+	case "DB107":
+		return KnownPart{Type: "DB107", Role: RoleBridge}, true
 	case "LM317":
 		return KnownPart{Type: "317", Role: RoleAdjustable, Polarity: Positive, Pins: pins}, true
 	}
