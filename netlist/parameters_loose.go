@@ -39,9 +39,9 @@ func (c *collector) looseParameters(l *syntax.Line) []assignment {
 	for k, sign := range equals {
 		end := len(text)
 		if k+1 < len(equals) {
-			end = nameBefore(text, equals[k+1])
+			end = nameBefore(text, at, equals[k+1])
 		}
-		from := nameBefore(text, sign)
+		from := nameBefore(text, at, sign)
 		name := strings.TrimSpace(text[from:sign])
 		value := strings.Trim(text[sign+1:end], " \t,")
 		if name == "" || value == "" || k == 0 && strings.Trim(text[at:from], " \t,") != "" {
@@ -98,13 +98,13 @@ func assignmentSigns(text string, from int) []int {
 	return list
 }
 
-// nameBefore is where the name before an equals sign begins.
-func nameBefore(text string, sign int) int {
+// nameBefore is where the name before an equals sign begins, from a place in the text on.
+func nameBefore(text string, from, sign int) int {
 	k := sign
-	for k > 0 && (text[k-1] == ' ' || text[k-1] == '\t') {
+	for k > from && (text[k-1] == ' ' || text[k-1] == '\t') {
 		k--
 	}
-	for k > 0 && !strings.ContainsRune(" \t,", rune(text[k-1])) {
+	for k > from && !strings.ContainsRune(" \t,", rune(text[k-1])) {
 		k--
 	}
 	return k

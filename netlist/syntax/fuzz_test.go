@@ -1,6 +1,15 @@
 package syntax
 
-import "testing"
+import (
+	"fmt"
+	"testing"
+	"time"
+)
+
+// watch ends the program when an input takes longer than it may: a worker that hangs would go unnoticed.
+func watch(text string) (stop func() bool) {
+	return time.AfterFunc(2*time.Second, func() { panic(fmt.Sprintf("no end in sight with %q", text)) }).Stop
+}
 
 // FuzzCard: a card that parses prints as one that parses to the same print; faults lie inside the line.
 func FuzzCard(f *testing.F) {
@@ -14,6 +23,7 @@ func FuzzCard(f *testing.F) {
 		if len(text) > 1000 {
 			return
 		}
+		defer watch(text)()
 		line := Line{Text: text, first: segment{0, 1, 1}}
 		card, fault := ParseElement(&line)
 		if fault != nil {
@@ -42,6 +52,7 @@ func FuzzFormula(f *testing.F) {
 		if len(text) > 1000 {
 			return
 		}
+		defer watch(text)()
 		formula, err := ParseFormula(text)
 		if err != nil {
 			if e, ok := err.(*FormulaError); ok && (e.Offset < 0 || e.Offset > len(text)) {
