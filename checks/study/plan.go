@@ -282,14 +282,15 @@ func (p *Plan) factor(set *Setting, id netlist.ElementID, symbol netlist.Symbol)
 
 // condition puts a setting into words.
 func (p *Plan) condition(set *Setting) Condition {
+	solved := *set
 	if set.Nominal {
 		start := "steady"
 		if set.Cold {
 			start = "cold"
 		}
-		return Condition{Name: "nominal", Line: "as-written", Load: "as-written", Start: start}
+		return Condition{Name: "nominal", Line: "as-written", Load: "as-written", Start: start, setting: &solved}
 	}
-	c := Condition{Line: set.Line.String(), Load: "as-written", Start: "steady"}
+	c := Condition{Line: set.Line.String(), Load: "as-written", Start: "steady", setting: &solved}
 	if set.Cold {
 		c.Start = "cold"
 	}

@@ -72,6 +72,8 @@ type Condition struct {
 	Start string // steady or cold
 	// Also lists further circumstances in words: "C1 at -20 %", "ambient 45 degC".
 	Also []string
+
+	setting *Setting // what was solved, so that it can be solved again; nil for a condition that is only words
 }
 
 // Stress is what one element is subjected to in its worst condition.
