@@ -41,13 +41,13 @@ const (
 	workingMaxSteps = 2048
 )
 
-// solve finds the steady state of every island of the supply in one setting.
-func (p *Plan) solve(ctx context.Context, set Setting, warm states) *outcome {
+// lay builds the network of the supply in one setting and takes it apart into islands, none of them solved.
+func (p *Plan) lay(set Setting) (*outcome, []solver.Island) {
 	out := &outcome{set: set}
 	low, err := p.supply.lower(&set, p)
 	if err != nil {
 		out.failed = err
-		return out
+		return out, nil
 	}
 	out.low = low
 	if p.Blocked != "" {
@@ -82,6 +82,12 @@ func (p *Plan) solve(ctx context.Context, set Setting, warm states) *outcome {
 		is.err = out.failed
 		out.islands = append(out.islands, is)
 	}
+	return out, parts
+}
+
+// solve finds the steady state of every island of the supply in one setting.
+func (p *Plan) solve(ctx context.Context, set Setting, warm states) *outcome {
+	out, parts := p.lay(set)
 	if out.failed != nil {
 		return out
 	}
