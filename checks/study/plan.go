@@ -264,6 +264,8 @@ func (p *Plan) lineFactor(id netlist.ElementID, set *Setting) float64 {
 		return ends[0]
 	case LineHigh:
 		return ends[1]
+	case LineBetween:
+		return ends[0] + (ends[1]-ends[0])*set.LineAt
 	}
 	return 1
 }
@@ -295,6 +297,9 @@ func (p *Plan) condition(set *Setting) Condition {
 		c.Start = "cold"
 	}
 	words := []string{set.Line.String() + " line"}
+	if set.Line == LineBetween {
+		words[0] = fmt.Sprintf("line at %.0f %% of its range", 100*set.LineAt)
+	}
 	if len(p.loads) > 0 {
 		c.Load = p.loadWords(set.Loads)
 		words = append(words, c.Load+" load")

@@ -11,16 +11,19 @@ const (
 	LineLow
 	LineNominal
 	LineHigh
+	LineBetween // at Setting.LineAt
 )
 
 // String is the word of the machine interface.
 func (l LineEnd) String() string {
-	return [...]string{"as-written", "low", "nominal", "high"}[l]
+	return [...]string{"as-written", "low", "nominal", "high", "between"}[l]
 }
 
 // Setting is everything that distinguishes one condition from another.
 type Setting struct {
 	Line LineEnd
+	// LineAt is, with LineBetween, the position of the line from 0 (low) to 1 (high).
+	LineAt float64
 	// Loads holds for each load of the supply a position from 0 (light) to 1 (full); nil: as written.
 	Loads []float64
 	// Ambient is the air temperature in degC.

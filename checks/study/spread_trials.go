@@ -1,0 +1,107 @@
+package study
+
+import (
+	"context"
+	"math"
+)
+
+// trials solves the conditions of a spread, each from the periodic state of the nominal one, so that a trial does
+// not depend on the others.
+type trials struct {
+	plan   *Plan
+	spread *Spread
+	column map[tableKey]int
+	passes []warmPass
+}
+
+// warmPass is one solution a trial needs: the real one, and with regulators that of their held outputs.
+type warmPass struct {
+	held bool
+	warm states
+}
+
+// newTrials solves the nominal condition and lists the stresses that are sampled, in the order of the table.
+func newTrials(ctx context.Context, t *Table, s *Spread) *trials {
+	p := t.Plan
+	n := &trials{plan: p, spread: s, column: map[tableKey]int{}, passes: []warmPass{{}}}
+	if p.held() {
+		n.passes = append(n.passes, warmPass{held: true})
+	}
+	loads := make([]float64, len(p.loads))
+	for k := range loads {
+		loads[k] = 1
+	}
+	nominal := map[tableKey]float64{}
+	for k := range n.passes {
+		pass := &n.passes[k]
+		out := p.solve(ctx, Setting{Line: LineNominal, Loads: loads, Ambient: p.Ambient[1], Held: pass.held}, nil)
+		pass.warm = states{}
+		for i := range out.islands {
+			if solution := out.islands[i].solution; solution != nil {
+				pass.warm[i] = solution.States
+			}
+		}
+		p.extract(out, func(st Stress) {
+			if p.counts(pass.held, st.Quantity) {
+				nominal[tableKey{st.Element, st.Quantity}] = found(&st)
+			}
+		})
+	}
+	for k := range t.Stresses {
+		bound := t.Stresses[k]
+		key := tableKey{bound.Element, bound.Quantity}
+		v, ok := nominal[key]
+		if !ok {
+			continue
+		}
+		bound.Value, bound.Error, bound.Phase = kept(bound.Value), kept(bound.Error), kept(bound.Phase)
+		n.column[key] = len(s.Stresses)
+		s.Stresses = append(s.Stresses, Sampled{Bound: bound, Nominal: v})
+	}
+	return n
+}
+
+// counts reports whether a quantity is read from a solution with held regulators, or from the real one.
+func (p *Plan) counts(held bool, q Quantity) bool {
+	return held == (q == MinHeadroom && p.held())
+}
+
+// found is the value of a stress that was solved, NaN otherwise.
+func found(s *Stress) float64 {
+	if s.Unproven != "" {
+		return math.NaN()
+	}
+	return kept(s.Value)
+}
+
+// solve finds the stresses of one trial; why says what was not found although it has a bound, empty if nothing.
+func (n *trials) solve(ctx context.Context, trial uint64) (row []float64, why string) {
+	stresses := n.spread.Stresses
+	row = make([]float64, len(stresses))
+	for k := range row {
+		row[k] = math.NaN()
+	}
+	reasons := make([]string, len(stresses))
+	positions := n.spread.Positions(trial)
+	for _, pass := range n.passes {
+		set := n.plan.trial(positions)
+		set.Held = pass.held
+		n.plan.extract(n.plan.solve(ctx, set, pass.warm), func(st Stress) {
+			k, ok := n.column[tableKey{st.Element, st.Quantity}]
+			if !ok || !n.plan.counts(pass.held, st.Quantity) {
+				return
+			}
+			row[k], reasons[k] = found(&st), st.Unproven
+		})
+	}
+	for k := range row {
+		if math.IsNaN(row[k]) && stresses[k].Bounded() {
+			if why = reasons[k]; why == "" {
+				why = "no value was found"
+			}
+			b := &stresses[k].Bound
+			return row, b.Element + " " + string(b.Quantity) + ": " + why
+		}
+	}
+	return row, ""
+}
