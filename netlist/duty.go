@@ -19,6 +19,10 @@ type Duty struct {
 	Profile     *Profile        // how fast stored charge must be gone; nil: not stated
 	Concessions []Concession
 	Remarks     []Remark // contradictions between sheet and inline, unused statements
+
+	SharedSheet string      // path of the shared sheet that was read; empty: none
+	Stated      []Statement // each thing stated that is in force, in the order of reading
+	Idle        []Statement // statements of the shared sheet without an effect on this netlist
 }
 
 // Line states the supply line. With Source < 0 it scales every sinusoidal source as drawn; otherwise
@@ -29,6 +33,8 @@ type Line struct {
 	Range     quantity.Interval // V rms, absolute
 	Frequency float64           // Hz; 0: not stated
 	At        Position
+
+	shared bool // stated in the shared sheet
 }
 
 // Winding says what a drawn source stands for.
@@ -72,6 +78,8 @@ type Rating struct {
 	At    Position
 	// Written is how it reads in the source, for the report: "rate C1 UR=25V" or "UR=25 on the card".
 	Written string
+	// Shared: stated in the shared sheet, and so less than what the element's own card says.
+	Shared bool
 }
 
 // Cooling is a thermal resistance from case or sink to ambient.

@@ -184,7 +184,7 @@ func (c *Circuit) draftPattern(elements []ElementID) string {
 	}
 	for _, items := range [][]string{foldNames(names), names} {
 		pattern := strings.Join(items, ",")
-		if m, fault := c.findElements(pattern, Position{}); fault == nil && slices.Equal(m.elements, elements) {
+		if m, fault := c.findElements(pattern, Position{}, false); fault == nil && slices.Equal(m.elements, elements) {
 			return syntax.DutyString(pattern)
 		}
 	}

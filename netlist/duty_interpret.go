@@ -23,23 +23,20 @@ func DutyLines(file, text string) []DutyLine {
 	return lines
 }
 
-// interpretDuty reads the statements that stand in the netlist and those of the sheet, and resolves them
-// against the circuit. Where both speak of the same thing the sheet wins and a remark shows both values;
-// within one of them a statement with plain names wins over one with a pattern, and otherwise the later
-// one. `part` and `rate` statements may change what an element is taken for: the circuit is updated.
-func interpretDuty(c *Circuit, inline []DutyLine, sheet []DutyLine) (*Duty, []Diagnostic) {
+// interpretDuty reads the statements of the shared sheet, of the netlist and of its own sheet, and resolves them
+// against the circuit. Where two of these speak of the same thing the later in this order wins and a remark shows
+// both values; within one of them a statement with plain names wins over one with a pattern, and otherwise the
+// later one. `part` and `rate` statements may change what an element is taken for: the circuit is updated.
+func interpretDuty(c *Circuit, all sheets) (*Duty, []Diagnostic) {
 	in := &interpreter{circuit: c, duty: &Duty{}, places: make(map[string]int)}
 	var statements []dutyStatement
-	for _, source := range []struct {
-		lines []DutyLine
-		sheet bool
-	}{{inline, false}, {sheet, true}} {
-		for _, line := range source.lines {
+	for origin, lines := range all {
+		for _, line := range lines {
 			statement, fault := syntax.ParseDuty(line.Text, line.At)
 			if fault != nil {
 				in.faults = append(in.faults, *fault)
 			} else if statement != nil {
-				statements = append(statements, dutyStatement{statement, source.sheet})
+				statements = append(statements, dutyStatement{statement, Origin(origin)})
 			}
 		}
 	}
@@ -47,8 +44,12 @@ func interpretDuty(c *Circuit, inline []DutyLine, sheet []DutyLine) (*Duty, []Di
 	c.findShunts()
 	for _, s := range statements {
 		in.current = s
-		in.kept, in.offered = 0, 0
+		before := len(in.entries)
+		in.why = "selects nothing for which it has a meaning"
 		in.read(s.statement)
+		if in.shared() && len(in.entries) == before {
+			in.idle(s.statement, in.why)
+		}
 	}
 	in.settle()
 	in.remarkFields()
@@ -59,7 +60,7 @@ func interpretDuty(c *Circuit, inline []DutyLine, sheet []DutyLine) (*Duty, []Di
 // dutyStatement is a statement with where it comes from.
 type dutyStatement struct {
 	statement syntax.Statement
-	sheet     bool
+	origin    Origin
 }
 
 // interpreter gathers entries; each entry claims a key such as "rate C1 UR".
@@ -70,8 +71,8 @@ type interpreter struct {
 	entries []dutyEntry
 	places  map[string]int // key -> index of the entry that holds it
 
-	current       dutyStatement
-	kept, offered int
+	current dutyStatement
+	why     string // the current statement has no effect
 }
 
 // dutyEntry is one thing stated about one subject.
@@ -79,7 +80,7 @@ type dutyEntry struct {
 	key       string // what is stated: "rate C1 UR", "ambient"
 	value     string // as written
 	exact     bool
-	sheet     bool
+	origin    Origin
 	statement syntax.Statement
 	apply     func(*Duty)
 	lost      bool
@@ -119,7 +120,7 @@ func (in *interpreter) read(statement syntax.Statement) {
 
 // state enters one thing stated, and settles who wins where the key is taken.
 func (in *interpreter) state(key, value string, exact bool, apply func(*Duty)) {
-	e := dutyEntry{key: key, value: value, exact: exact, sheet: in.current.sheet, statement: in.current.statement, apply: apply}
+	e := dutyEntry{key: key, value: value, exact: exact, origin: in.current.origin, statement: in.current.statement, apply: apply}
 	folded := strings.ToLower(key)
 	at, taken := in.places[folded]
 	if !taken {
@@ -128,17 +129,18 @@ func (in *interpreter) state(key, value string, exact bool, apply func(*Duty)) {
 		return
 	}
 	old := &in.entries[at]
-	wins := e.sheet != old.sheet || e.exact || !old.exact // the sheet is read after the netlist
+	wins := e.origin != old.origin || e.exact || !old.exact // they are read in the order in which they give way
 	if wins {
 		old.lost = true
 		in.places[folded] = len(in.entries)
 	} else {
 		e.lost = true
 	}
-	if e.sheet != old.sheet && e.value != old.value {
-		in.remark(e.statement.Place(), key+": the sheet says "+e.value+", the netlist says "+old.value+" ("+
-			old.statement.Place().String()+"); the sheet counts")
-	} else if e.sheet == old.sheet && e.exact == old.exact && e.value != old.value {
+	general := old.origin == FromSharedSheet && !old.exact // is there to be narrowed
+	if e.origin != old.origin && e.value != old.value && !general {
+		in.remark(e.statement.Place(), key+": "+e.origin.String()+" says "+e.value+", "+old.origin.String()+" says "+old.value+" ("+
+			old.statement.Place().String()+"); "+e.origin.String()+" counts")
+	} else if e.origin == old.origin && e.exact == old.exact && e.value != old.value {
 		in.remark(e.statement.Place(), key+": stated as "+old.value+" ("+old.statement.Place().String()+") and as "+e.value+"; the later one counts")
 	}
 	in.entries = append(in.entries, e)
@@ -147,19 +149,42 @@ func (in *interpreter) state(key, value string, exact bool, apply func(*Duty)) {
 // settle fills in the duty from the entries that hold their keys, and reports statements left without effect.
 func (in *interpreter) settle() {
 	effective := make(map[syntax.Statement]bool)
-	for _, e := range in.entries {
+	for i := range in.entries {
+		e := &in.entries[i]
+		if by := in.supersededBy(e); by != nil {
+			e.lost = true
+			in.remark(by.statement.Place(), e.key+" of the shared sheet ("+e.statement.Place().String()+") gives way to "+by.key)
+		}
 		if !e.lost {
 			e.apply(in.duty)
 			effective[e.statement] = true
+			in.duty.Stated = append(in.duty.Stated, Statement{Text: e.text(), Origin: e.origin, At: e.statement.Place()})
 		}
 	}
 	told := make(map[syntax.Statement]bool)
 	for _, e := range in.entries {
 		if !effective[e.statement] && !told[e.statement] {
 			told[e.statement] = true
+			if e.origin == FromSharedSheet {
+				in.idle(e.statement, "what the netlist itself states counts")
+				continue
+			}
 			in.remark(e.statement.Place(), "unused: `"+syntax.PrintDuty(e.statement)+"` is overridden by other statements")
 		}
 	}
+}
+
+// idle keeps a statement of the shared sheet that has no effect on this netlist.
+func (in *interpreter) idle(statement syntax.Statement, why string) {
+	in.duty.Idle = append(in.duty.Idle, Statement{Text: syntax.PrintDuty(statement), Origin: FromSharedSheet, At: statement.Place(), Why: why})
+}
+
+// text spells an entry as a statement of its own.
+func (e *dutyEntry) text() string {
+	if strings.HasPrefix(e.key, "rate ") {
+		return e.key + "=" + e.value
+	}
+	return e.key + " " + e.value
 }
 
 func (in *interpreter) remark(at Position, text string) {

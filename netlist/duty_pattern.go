@@ -15,8 +15,9 @@ type match struct {
 
 // findElements expands a pattern: a name, a range D1..D4, a wildcard D* or D?, or a list of these with
 // commas. A name that stands in the circuit as written is itself, whatever characters it holds. The
-// elements come in netlist order, each once. at is the place of the pattern.
-func (c *Circuit) findElements(pattern string, at Position) (match, *Diagnostic) {
+// elements come in netlist order, each once. at is the place of the pattern. With some, what is not there is left
+// out of the selection, which may then be empty; else it is a fault.
+func (c *Circuit) findElements(pattern string, at Position, some bool) (match, *Diagnostic) {
 	if id, ok := c.Find(pattern); ok {
 		return match{[]ElementID{id}, true}, nil
 	}
@@ -24,7 +25,7 @@ func (c *Circuit) findElements(pattern string, at Position) (match, *Diagnostic)
 	m := match{exact: true}
 	for _, item := range strings.Split(pattern, ",") {
 		item = strings.TrimSpace(item)
-		exact, what, expected := c.selectElements(item, selected)
+		exact, what, expected := c.selectElements(item, some, selected)
 		if what != "" {
 			return match{}, &Diagnostic{At: at, What: what, Expected: expected}
 		}
@@ -39,7 +40,7 @@ func (c *Circuit) findElements(pattern string, at Position) (match, *Diagnostic)
 }
 
 // selectElements marks what one item of a list selects; what is not empty when it selects nothing.
-func (c *Circuit) selectElements(item string, selected []bool) (exact bool, what, expected string) {
+func (c *Circuit) selectElements(item string, some bool, selected []bool) (exact bool, what, expected string) {
 	if id, ok := c.Find(item); ok {
 		selected[id] = true
 		return true, "", ""
@@ -51,20 +52,24 @@ func (c *Circuit) selectElements(item string, selected []bool) (exact bool, what
 				selected[i], any = true, true
 			}
 		}
-		if !any {
+		if !any && !some {
 			return false, strconv.Quote(item) + " matches no element", "a pattern such as D*"
 		}
 		return false, "", ""
 	}
 	if low, high, ok := strings.Cut(item, ".."); ok {
-		what, expected = c.selectRange(item, low, high, selected)
+		what, expected = c.selectRange(item, low, high, some, selected)
 		return false, what, expected
+	}
+	if some {
+		return true, "", ""
 	}
 	return true, "no element " + strconv.Quote(item), c.nearestElement(item)
 }
 
-// selectRange marks the elements of D1..D4: both ends must be there, numbers between them may be missing.
-func (c *Circuit) selectRange(item, low, high string, selected []bool) (what, expected string) {
+// selectRange marks the elements of D1..D4: both ends must be there unless some will do, numbers between them may
+// be missing.
+func (c *Circuit) selectRange(item, low, high string, some bool, selected []bool) (what, expected string) {
 	prefix, from, okLow := numbered(low)
 	if digits := strings.TrimRight(high, "0123456789"); digits == "" {
 		high = prefix + high
@@ -76,7 +81,7 @@ func (c *Circuit) selectRange(item, low, high string, selected []bool) (what, ex
 		return strconv.Quote(item) + " is no range of elements", "one such as D1..D4"
 	}
 	for _, end := range []string{low, high} {
-		if _, ok := c.Find(end); !ok {
+		if _, ok := c.Find(end); !ok && !some {
 			return "no element " + strconv.Quote(end), c.nearestElement(end)
 		}
 	}

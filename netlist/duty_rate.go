@@ -11,30 +11,59 @@ import (
 // declareKinds applies what statements say of the kind of an element, before any pattern is narrowed by it:
 // `part` names its type, and a zener's symbol on a diode stated by name makes it one.
 func (in *interpreter) declareKinds(statements []dutyStatement) {
+	own := in.ownParts(statements)
 	for _, s := range statements {
+		in.current = s
 		switch s := s.statement.(type) {
 		case *syntax.PartStatement:
-			m, fault := in.circuit.findElements(s.Elements.Text(), s.Elements.At())
+			m, fault := in.circuit.findElements(s.Elements.Text(), s.Elements.At(), in.shared())
 			pins, _, ok := readPins(s.Settings)
 			if fault != nil || !ok {
 				continue // reported when the statement is read
 			}
 			for _, id := range m.elements {
-				if pins != nil && len(pins) != len(in.circuit.Elements[id].Nodes) {
+				if pins != nil && len(pins) != len(in.circuit.Elements[id].Nodes) || in.shared() && (own[id] || in.leavesType(id, m)) {
 					continue
 				}
 				if why := in.circuit.adoptPart(id, s.Type.Text(), pins); why != "" {
-					in.fault(s.Type.At(), in.name(id)+" cannot be a "+s.Type.Text()+": "+why, "a type that fits its nodes")
+					in.unfit(s.Type.At(), in.name(id)+" cannot be a "+s.Type.Text()+": "+why, "a type that fits its nodes")
 				}
 			}
 		case *syntax.RateStatement:
-			if m, fault := in.circuit.findElements(s.Elements.Text(), s.Elements.At()); fault == nil && m.exact {
+			if m, fault := in.circuit.findElements(s.Elements.Text(), s.Elements.At(), in.shared()); fault == nil && m.exact {
 				for _, id := range m.elements {
 					in.declareKind(id, s.Settings)
 				}
 			}
 		}
 	}
+}
+
+// ownParts are the elements whose type is stated by the netlist or its own sheet.
+func (in *interpreter) ownParts(statements []dutyStatement) map[ElementID]bool {
+	own := map[ElementID]bool{}
+	for _, s := range statements {
+		part, ok := s.statement.(*syntax.PartStatement)
+		if !ok || s.origin == FromSharedSheet {
+			continue
+		}
+		if m, fault := in.circuit.findElements(part.Elements.Text(), part.Elements.At(), false); fault == nil {
+			for _, id := range m.elements {
+				own[id] = true
+			}
+		}
+	}
+	return own
+}
+
+// leavesType reports that a pattern of the shared sheet is not to take an element for another type than the one
+// its own card names.
+func (in *interpreter) leavesType(id ElementID, m match) bool {
+	if m.exact || in.circuit.Library == nil {
+		return false
+	}
+	_, known := in.circuit.Library.Recognise(in.circuit.Elements[id].TypeName)
+	return known
 }
 
 // declareKind takes a diode for a zener or a rectifier by the symbols stated for it, and a call of an
@@ -86,10 +115,6 @@ func readPins(settings []syntax.Setting) (pins []string, bad string, ok bool) {
 }
 
 func (in *interpreter) part(s *syntax.PartStatement) {
-	m, ok := in.elements(s.Elements)
-	if !ok {
-		return
-	}
 	settings, ok := in.onlySettings(s.Settings, "pins")
 	if !ok {
 		return
@@ -100,21 +125,28 @@ func (in *interpreter) part(s *syntax.PartStatement) {
 			suggest(bad, dutyPinWords(), "pins in the order of the netlist line, such as pins=in,gnd,out"))
 		return
 	}
+	m, ok := in.elements(s.Elements)
+	if !ok {
+		return
+	}
 	typeName := s.Type.Text()
 	value := typeName
 	if pins != nil {
 		value += " pins=" + strings.Join(pins, ",")
 	}
 	for _, id := range m.elements {
+		if in.shared() && in.leavesType(id, m) {
+			continue
+		}
 		if nodes := len(in.circuit.Elements[id].Nodes); pins != nil && nodes != len(pins) {
-			in.fault(settings["pins"].At(), strconv.Itoa(len(pins))+" pins for "+in.name(id), strconv.Itoa(nodes)+", as many as it has nodes")
+			in.unfit(settings["pins"].At(), strconv.Itoa(len(pins))+" pins for "+in.name(id), strconv.Itoa(nodes)+", as many as it has nodes")
 			return
 		}
 		in.state("part "+in.name(id), value, m.exact, func(d *Duty) {
 			d.Parts = append(d.Parts, PartName{Element: id, Type: typeName, Pins: pins, At: s.Place()})
 		})
 	}
-	if in.circuit.Library != nil {
+	if in.circuit.Library != nil && len(m.elements) > 0 {
 		if _, known := in.circuit.Library.Recognise(typeName); !known {
 			in.remark(s.Type.At(), "type "+typeName+" names no rectifier, zener or regulator of the parts table")
 		}
@@ -152,7 +184,7 @@ func (in *interpreter) rateOne(s *syntax.RateStatement, m match, symbol Symbol, 
 		meaning, ok := MeaningOf(symbol, kind)
 		if !ok {
 			if m.exact {
-				in.fault(setting.At(), string(symbol)+" has no meaning for "+in.name(id)+", a "+in.kindName(id), in.symbolHint(match{[]ElementID{id}, true}))
+				in.unfit(setting.At(), string(symbol)+" has no meaning for "+in.name(id)+", a "+in.kindName(id), in.symbolHint(match{[]ElementID{id}, true}))
 				return
 			}
 			continue
@@ -163,13 +195,18 @@ func (in *interpreter) rateOne(s *syntax.RateStatement, m match, symbol Symbol, 
 			return
 		}
 		some = true
-		rating := Rating{Element: id, Symbol: symbol, Value: value, Text: word, At: s.Place(),
+		rating := Rating{Element: id, Symbol: symbol, Value: value, Text: word, At: s.Place(), Shared: in.shared(),
 			Written: "rate " + s.Elements.Text() + " " + string(symbol) + "=" + setting.Value.Text()}
+		if rating.Shared {
+			rating.Written += " of the shared sheet"
+		}
 		in.state("rate "+in.name(id)+" "+string(symbol), setting.Value.Text(), m.exact, func(d *Duty) {
 			d.Ratings = append(d.Ratings, rating)
 		})
 	}
-	if !some {
+	if !some && in.shared() {
+		in.verifyRating(symbol, setting)
+	} else if !some {
 		in.remark(setting.At(), "unused: "+string(symbol)+" has no meaning for anything that "+s.Elements.Raw+" selects")
 	}
 }

@@ -54,9 +54,11 @@ func (in *interpreter) interval(raw string, at Position, unit quantity.Unit) (qu
 
 // elements expands the pattern of a statement.
 func (in *interpreter) elements(pattern syntax.Token) (match, bool) {
-	m, fault := in.circuit.findElements(pattern.Text(), pattern.At())
+	m, fault := in.circuit.findElements(pattern.Text(), pattern.At(), in.shared())
 	if fault != nil {
 		in.faults = append(in.faults, *fault)
+	} else if len(m.elements) == 0 {
+		in.absent(pattern.At(), "no element "+strconv.Quote(pattern.Text()), "")
 	}
 	return m, fault == nil
 }
@@ -131,11 +133,11 @@ func (in *interpreter) profile(s *syntax.ProfileStatement) {
 }
 
 func (in *interpreter) cooling(s *syntax.CoolingStatement) {
-	m, ok := in.elements(s.Elements)
+	k, ok := in.positive(s.Value.Raw, s.Value.At(), quantity.KelvinPerWatt)
 	if !ok {
 		return
 	}
-	k, ok := in.positive(s.Value.Raw, s.Value.At(), quantity.KelvinPerWatt)
+	m, ok := in.elements(s.Elements)
 	if !ok {
 		return
 	}
@@ -143,7 +145,7 @@ func (in *interpreter) cooling(s *syntax.CoolingStatement) {
 	for _, id := range m.elements {
 		if in.circuit.KindOf(id)&kindSemiconductor == 0 {
 			if m.exact {
-				in.fault(s.Elements.At(), "cooling has no meaning for "+in.name(id)+", a "+in.circuit.KindOf(id).String(), "a semiconductor")
+				in.unfit(s.Elements.At(), "cooling has no meaning for "+in.name(id)+", a "+in.circuit.KindOf(id).String(), "a semiconductor")
 				return
 			}
 			continue
@@ -153,7 +155,7 @@ func (in *interpreter) cooling(s *syntax.CoolingStatement) {
 			d.Coolings = append(d.Coolings, Cooling{id, k, s.Place()})
 		})
 	}
-	if !some {
+	if !some && !in.shared() {
 		in.remark(s.Place(), "unused: "+s.Elements.Raw+" selects no semiconductor that could have a heat sink")
 	}
 }
@@ -173,7 +175,7 @@ func (in *interpreter) load(s *syntax.LoadStatement) {
 			unit = quantity.Ampere
 		default:
 			if m.exact {
-				in.fault(s.Elements.At(), in.name(id)+" cannot be a load", "a resistor or a current source")
+				in.unfit(s.Elements.At(), in.name(id)+" cannot be a load", "a resistor or a current source")
 				return
 			}
 			continue
@@ -191,22 +193,14 @@ func (in *interpreter) load(s *syntax.LoadStatement) {
 			d.Loads = append(d.Loads, Load{id, r, s.Place()})
 		})
 	}
-	if !some {
+	if !some && in.shared() {
+		in.verifyLoad(s)
+	} else if !some {
 		in.fault(s.Elements.At(), s.Elements.Raw+" selects nothing that can be a load", "a resistor or a current source")
 	}
 }
 
 func (in *interpreter) rail(s *syntax.RailStatement) {
-	name := s.Node.Text()
-	node, ok := in.circuit.FindNode(name)
-	if !ok {
-		in.fault(s.Node.At(), "no node "+strconv.Quote(name), in.circuit.nearestNode(name))
-		return
-	}
-	if node == Ground {
-		in.fault(s.Node.At(), "the ground is no rail", "the node that the supply delivers at")
-		return
-	}
 	r, ok := in.interval(s.Range.Raw, s.Range.At(), quantity.Volt)
 	if !ok {
 		return
@@ -230,7 +224,7 @@ func (in *interpreter) rail(s *syntax.RailStatement) {
 	if !ok {
 		return
 	}
-	rail := Rail{Node: node, Range: r, At: s.Place()}
+	rail := Rail{Range: r, At: s.Place()}
 	value := r.Compact()
 	if ripple, stated := settings["ripple"]; stated {
 		v, ok := in.positive(ripple.Text(), ripple.At(), quantity.Volt)
@@ -240,6 +234,17 @@ func (in *interpreter) rail(s *syntax.RailStatement) {
 		rail.Ripple = &v
 		value += " ripple=" + ripple.Text()
 	}
+	name := s.Node.Text()
+	node, ok := in.circuit.FindNode(name)
+	if !ok {
+		in.absent(s.Node.At(), "no node "+strconv.Quote(name), in.circuit.nearestNode(name))
+		return
+	}
+	if node == Ground {
+		in.fault(s.Node.At(), "the ground is no rail", "the node that the supply delivers at")
+		return
+	}
+	rail.Node = node
 	in.state("rail "+in.circuit.Nodes[node].Name, value, true, func(d *Duty) { d.Rails = append(d.Rails, rail) })
 }
 
@@ -264,7 +269,7 @@ func (in *interpreter) concession(s *syntax.ConcessionStatement) {
 		return
 	}
 	base := Concession{Check: strings.ToLower(s.Check.Text()), Element: -1, Ceiling: ceiling, Until: s.Until.Raw, Reason: reason, At: s.Place()}
-	value := "up to " + ceiling.Compact() + " until " + s.Until.Raw
+	value := "up to " + ceiling.Compact() + " until " + s.Until.Raw + ` "` + reason + `"`
 	grant := func(target string, id ElementID, exact bool) {
 		one := base
 		one.Target, one.Element = target, id
@@ -273,7 +278,7 @@ func (in *interpreter) concession(s *syntax.ConcessionStatement) {
 	if name, isNode := strings.CutPrefix(s.Element.Text(), "node:"); isNode {
 		node, ok := in.circuit.FindNode(name)
 		if !ok {
-			in.fault(s.Element.At(), "no node "+strconv.Quote(name), in.circuit.nearestNode(name))
+			in.absent(s.Element.At(), "no node "+strconv.Quote(name), in.circuit.nearestNode(name))
 			return
 		}
 		grant("node:"+in.circuit.Nodes[node].Name, -1, true)

@@ -23,7 +23,7 @@ const (
 func (in *interpreter) sine(name syntax.Name) (id ElementID, wave Sine, ok bool) {
 	id, ok = in.circuit.Find(name.Text())
 	if !ok {
-		in.fault(name.At(), "no element "+strconv.Quote(name.Text()), in.circuit.nearestElement(name.Text()))
+		in.absent(name.At(), "no element "+strconv.Quote(name.Text()), in.circuit.nearestElement(name.Text()))
 		return -1, Sine{}, false
 	}
 	if source, isSource := in.circuit.Elements[id].Device.(VoltageSource); isSource {
@@ -31,21 +31,12 @@ func (in *interpreter) sine(name syntax.Name) (id ElementID, wave Sine, ok bool)
 			return id, wave, true
 		}
 	}
-	in.fault(name.At(), in.name(id)+" is no sinusoidal voltage source", "a source drawn with SIN(offset amplitude frequency)")
+	in.unfit(name.At(), in.name(id)+" is no sinusoidal voltage source", "a source drawn with SIN(offset amplitude frequency)")
 	return -1, Sine{}, false
 }
 
 func (in *interpreter) line(s *syntax.LineStatement) {
-	line := Line{Source: -1, At: s.Place()}
-	key := "line"
-	var wave Sine
-	if s.Source != nil {
-		var ok bool
-		if line.Source, wave, ok = in.sine(*s.Source); !ok {
-			return
-		}
-		key += " " + in.name(line.Source)
-	}
+	line := Line{Source: -1, At: s.Place(), shared: in.shared()}
 	nominal, ok := in.positive(s.Nominal.Raw, s.Nominal.At(), quantity.Volt)
 	if !ok {
 		return
@@ -59,8 +50,16 @@ func (in *interpreter) line(s *syntax.LineStatement) {
 			return
 		}
 	}
-	if line.Source >= 0 && !in.lineFits(s, line, wave) {
-		return
+	key := "line"
+	if s.Source != nil {
+		var wave Sine
+		if line.Source, wave, ok = in.sine(*s.Source); !ok || !in.lineFits(s, line, wave) {
+			return
+		}
+		key += " " + in.name(line.Source)
+	}
+	if s.Range == nil {
+		in.remark(s.Place(), "line range not stated: -10 %..+10 % (common practice, IEC 60038)")
 	}
 	value := quantity.Value{Number: nominal, Unit: quantity.Volt}.Compact() + " " + line.Range.Compact()
 	if s.Frequency != nil {
@@ -75,7 +74,6 @@ func (in *interpreter) lineRange(s *syntax.LineStatement, nominal float64) (quan
 		return quantity.Interval{Low: nominal * (1 + low), High: nominal * (1 + high), Unit: quantity.Volt}
 	}
 	if s.Range == nil {
-		in.remark(s.Place(), "line range not stated: -10 %..+10 % (common practice, IEC 60038)")
 		return about(defaultLineLow, defaultLineHigh), true
 	}
 	if p, err := quantity.ParseInterval(s.Range.Raw, quantity.One); err == nil {
@@ -100,30 +98,30 @@ func (in *interpreter) lineFits(s *syntax.LineStatement, line Line, wave Sine) b
 	name := in.name(line.Source)
 	volts := func(v float64) string { return quantity.Format(v, quantity.Volt, 4) }
 	if math.Abs(drawn-crest) > amplitudeTolerance*crest {
-		in.fault(s.Nominal.At(), name+" is drawn with an amplitude of "+volts(drawn)+", which is "+volts(drawn/math.Sqrt2)+" rms",
+		in.unfit(s.Nominal.At(), name+" is drawn with an amplitude of "+volts(drawn)+", which is "+volts(drawn/math.Sqrt2)+" rms",
 			"the amplitude "+volts(crest)+" for "+s.Nominal.Raw+" rms, within 1 %; or a `winding "+name+"` statement")
 		return false
 	}
 	if line.Frequency > 0 && wave.Frequency > 0 && math.Abs(line.Frequency-wave.Frequency) > amplitudeTolerance*wave.Frequency {
-		in.fault(s.Frequency.At(), name+" is drawn at "+quantity.Format(wave.Frequency, quantity.Hertz, 4), "the same frequency as drawn")
+		in.unfit(s.Frequency.At(), name+" is drawn at "+quantity.Format(wave.Frequency, quantity.Hertz, 4), "the same frequency as drawn")
 		return false
 	}
 	return true
 }
 
 func (in *interpreter) winding(s *syntax.WindingStatement) {
-	id, wave, ok := in.sine(s.Source)
-	if !ok {
-		return
-	}
-	key := "winding " + in.name(id)
 	if s.AsDrawn {
-		in.state(key, "as-drawn", true, func(d *Duty) {
+		id, _, ok := in.sine(s.Source)
+		if !ok {
+			return
+		}
+		in.state("winding "+in.name(id), "as-drawn", true, func(d *Duty) {
 			d.Windings = append(d.Windings, Winding{Source: id, AsDrawn: true, At: s.Place()})
 		})
 		return
 	}
-	w := Winding{Source: id, At: s.Place()}
+	w := Winding{At: s.Place()}
+	var ok bool
 	if w.Voltage, ok = in.positive(s.Voltage.Raw, s.Voltage.At(), quantity.Volt); !ok {
 		return
 	}
@@ -155,13 +153,18 @@ func (in *interpreter) winding(s *syntax.WindingStatement) {
 		return
 	}
 	w.Regulation = r
+	id, wave, ok := in.sine(s.Source)
+	if !ok {
+		return
+	}
+	w.Source = id
 	emf := w.Voltage * (1 + r) * math.Sqrt2
 	if drawn := math.Abs(wave.Amplitude); math.Abs(drawn-emf) > amplitudeTolerance*emf {
 		in.remark(s.Place(), in.name(id)+" is drawn with a crest of "+quantity.Format(drawn, quantity.Volt, 4)+"; its winding statement gives "+
 			quantity.Format(emf, quantity.Volt, 4)+" off load, which counts")
 	}
 	value := s.Voltage.Raw + " " + s.Current.Raw + " regulation=" + regulation.Text()
-	in.state(key, value, true, func(d *Duty) { d.Windings = append(d.Windings, w) })
+	in.state("winding "+in.name(id), value, true, func(d *Duty) { d.Windings = append(d.Windings, w) })
 }
 
 // crossCheck finds statements that cannot both hold, and statements about nothing.
@@ -193,6 +196,7 @@ func (in *interpreter) crossCheck() {
 	}
 	for _, l := range in.duty.Lines {
 		switch {
+		case sines == 0 && l.shared:
 		case sines == 0:
 			in.remark(l.At, "unused: the netlist has no sinusoidal source that the line could drive")
 		case fits == 0:

@@ -25,13 +25,14 @@ type files struct {
 	roots []*os.Root
 	names []string        // of the roots, for messages
 	open  map[string]bool // files being read, against loops
+	told  func(file string)
 	read  int64
 	count int
 }
 
 // newFiles opens the netlist's folder and the --include folders.
 func newFiles(folders []string) (*files, error) {
-	f := &files{open: map[string]bool{}}
+	f := &files{open: map[string]bool{}, told: func(string) {}}
 	for _, dir := range folders {
 		root, err := os.OpenRoot(dir)
 		if err != nil {
@@ -111,6 +112,8 @@ func (f *files) anyCase(root int, name string) (string, bool) {
 
 // lines reads a file of a root as logical lines.
 func (f *files) lines(root int, name string) ([]syntax.Line, []syntax.Inline, []Diagnostic, error) {
+	shown := filepath.Join(f.names[root], filepath.FromSlash(name))
+	f.told(shown)
 	file, err := f.roots[root].Open(name)
 	if err != nil {
 		return nil, nil, nil, err
@@ -123,7 +126,6 @@ func (f *files) lines(root int, name string) ([]syntax.Line, []syntax.Inline, []
 	if f.read += int64(len(text)); f.read > maxIncludedSize {
 		return nil, nil, nil, fmt.Errorf("the included files together are larger than 256 MiB")
 	}
-	shown := filepath.Join(f.names[root], filepath.FromSlash(name))
 	decoded := syntax.Decode(text)
 	if kind := syntax.Foreign(decoded); kind != "" {
 		return nil, nil, nil, foreignFile{kind}

@@ -15,12 +15,18 @@ type Source struct {
 	DutyFile    string   // --duty; empty: FILE with the ending .duty beside it, if there
 	IncludeDirs []string // --include folders
 	Library     Library  // known types; may be nil
+	NoShared    bool     // pass over the shared sheet
+
+	Opened func(file string) // told of each file before it is read; may be nil
 }
 
 // Read reads a netlist, what it includes, and its duty sheet. Diagnostics mean that the input is not to be
 // used; err means that a file could not be read at all.
 func Read(src Source) (*Circuit, *Duty, []Diagnostic, error) {
-	text, err := readFile(src.File)
+	if src.Opened == nil {
+		src.Opened = func(string) {}
+	}
+	text, err := src.read(src.File)
 	if err != nil {
 		return nil, nil, nil, err
 	}
@@ -30,21 +36,33 @@ func Read(src Source) (*Circuit, *Duty, []Diagnostic, error) {
 		return nil, nil, nil, err
 	}
 	defer opened.close()
-	sheet, err := readSheet(src)
-	if err != nil {
+	opened.told = src.Opened
+	own := src.ownSheet()
+	var stated sheets
+	if stated[FromSheet], err = src.readSheet(own); err != nil {
 		return nil, nil, nil, err
 	}
-	c, d, faults := parse(src.File, text, sheet, src.Library, opened)
+	shared := ""
+	if !src.NoShared {
+		shared = FindSharedSheet(src.File, own)
+	}
+	if stated[FromSharedSheet], err = src.readSheet(shared); err != nil {
+		return nil, nil, nil, err
+	}
+	c, d, faults := parse(src.File, text, stated, src.Library, opened)
+	if d != nil {
+		d.SharedSheet = shared
+	}
 	return c, d, faults, nil
 }
 
 // Parse reads a netlist and a duty sheet that are not on disk; includes are not followed.
 func Parse(name string, text, sheet []byte, library Library) (*Circuit, *Duty, []Diagnostic) {
-	var lines []DutyLine
+	var stated sheets
 	if sheet != nil {
-		lines = DutyLines(name+".duty", syntax.Decode(sheet))
+		stated[FromSheet] = DutyLines(name+".duty", syntax.Decode(sheet))
 	}
-	return parse(name, text, lines, library, nil)
+	return parse(name, text, stated, library, nil)
 }
 
 func readFile(name string) ([]byte, error) {
@@ -63,23 +81,37 @@ func readFile(name string) ([]byte, error) {
 	return text, nil
 }
 
-// readSheet reads the duty sheet: the one named, or the one beside the netlist if there is one.
-func readSheet(src Source) ([]DutyLine, error) {
-	name := src.DutyFile
-	if name == "" {
-		name = strings.TrimSuffix(src.File, filepath.Ext(src.File)) + ".duty"
-		if _, err := os.Stat(name); err != nil {
-			return nil, nil
-		}
+func (src *Source) read(name string) ([]byte, error) {
+	src.Opened(name)
+	return readFile(name)
+}
+
+// ownSheet is the path of the netlist's own duty sheet: the one named, or the one beside the netlist if there is
+// one; empty if not.
+func (src *Source) ownSheet() string {
+	if src.DutyFile != "" {
+		return src.DutyFile
 	}
-	text, err := readFile(name)
+	name := strings.TrimSuffix(src.File, filepath.Ext(src.File)) + ".duty"
+	if _, err := os.Stat(name); err != nil {
+		return ""
+	}
+	return name
+}
+
+// readSheet reads a duty sheet; no name gives no lines.
+func (src *Source) readSheet(name string) ([]DutyLine, error) {
+	if name == "" {
+		return nil, nil
+	}
+	text, err := src.read(name)
 	if err != nil {
 		return nil, err
 	}
 	return DutyLines(name, syntax.Decode(text)), nil
 }
 
-func parse(name string, text []byte, sheet []DutyLine, library Library, opened *files) (*Circuit, *Duty, []Diagnostic) {
+func parse(name string, text []byte, stated sheets, library Library, opened *files) (*Circuit, *Duty, []Diagnostic) {
 	decoded := syntax.Decode(text)
 	if kind := syntax.Foreign(decoded); kind != "" {
 		return nil, nil, []Diagnostic{{At: Position{File: name, Line: 1, Column: 1}, What: "this is " + kind + ", not a SPICE-style netlist", Expected: "element cards such as `R1 in out 1k`"}}
@@ -123,7 +155,8 @@ func parse(name string, text []byte, sheet []DutyLine, library Library, opened *
 	if !c.HasGround {
 		c.Remarks = append(c.Remarks, Remark{Kind: RemarkAssumption, At: Position{File: name, Line: 1, Column: 1}, Text: "no element touches node 0: voltages between nodes hold, voltages to ground are arbitrary"})
 	}
-	d, faults := interpretDuty(c, x.inline, sheet)
+	stated[FromNetlist] = x.inline
+	d, faults := interpretDuty(c, stated)
 	c.inferPins()
 	if len(faults) > 0 {
 		return c, d, faults[:min(len(faults), maxFaults)]

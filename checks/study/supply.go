@@ -64,11 +64,18 @@ func NewSupply(c *netlist.Circuit, d *netlist.Duty, t *parts.Table) *Supply {
 	}
 	// First stated wins within a key: the duty interpretation puts the winner first.
 	for _, r := range d.Ratings {
-		s.state(r.Element, r, "stated")
+		if !r.Shared {
+			s.state(r.Element, r, "stated")
+		}
 	}
 	for k := range c.Elements {
 		for _, r := range netlist.FieldRatings(c.Elements[k]) {
 			s.state(netlist.ElementID(k), r, "stated")
+		}
+	}
+	for _, r := range d.Ratings {
+		if r.Shared {
+			s.state(r.Element, r, "stated")
 		}
 	}
 	return s
