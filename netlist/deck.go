@@ -26,6 +26,7 @@ type assignment struct {
 	name  string // lower case
 	value *syntax.Value
 	line  *syntax.Line
+	doubt bool // an .if whose condition is not known may leave it out
 }
 
 func newScope(name string, parent *scope) *scope {
@@ -74,7 +75,9 @@ type collector struct {
 	depth       int
 	ended       bool
 	branches    []branch              // open .if cards
-	doubtful    map[*syntax.Line]bool // elements that an .if may leave out
+	doubtful    map[*syntax.Line]bool // elements and models that an .if may leave out
+	decisions   []decision            // conditions computed
+	ahead       []assignment          // parameters for the conditions of .if
 	unread      bool                  // something that may define names was not read
 }
 
@@ -91,7 +94,13 @@ func (c *collector) remark(kind RemarkKind, at Position, element, text string) {
 
 // analysis cards and output cards are skipped without complaint.
 var silent = words(`tran ac dc op tf sens noise disto pz print plot probe probe64 meas measure save four fourier
-	ic nodeset width option options backanno end ends title step wave savebias loadbias net mc wcase`)
+	nodeset width option options backanno end ends title wave savebias loadbias net mc wcase`)
+
+// unreadCards says what is missed by passing over a card that is none of these.
+var unreadCards = map[string]string{
+	"ic":   ": nodes begin at what the elements themselves state",
+	"step": ": the circuit is solved with the values of the other cards",
+}
 
 // sameCard are other spellings of dot cards.
 var sameCard = map[string]string{"macro": "subckt", "eom": "ends", "params": "param", "parameter": "param"}
@@ -109,6 +118,10 @@ func (c *collector) block(lines []syntax.Line, section string) {
 	skipTo, inside, opened := "", section == "", c.current // skipTo ends a block that is no circuit
 	var skipFrom Position
 	ifs := len(c.branches)
+	if c.depth == 0 {
+		c.lookAhead(lines)
+		defer c.checkDecisions()
+	}
 	for k := range lines {
 		l := &lines[k]
 		if len(c.faults) >= maxFaults {
@@ -284,6 +297,9 @@ func (c *collector) directive(key string, l *syntax.Line) {
 			return
 		}
 		c.current.models[name] = l
+		if _, doubt := c.branched(); doubt {
+			c.doubtful[l] = true
+		}
 		return
 	}
 	if key == "step" || key == "data" {
@@ -297,7 +313,7 @@ func (c *collector) directive(key string, l *syntax.Line) {
 	default:
 		if !c.skipped[key] {
 			c.skipped[key] = true
-			c.remark(RemarkNotRead, l.Start(), "", "."+key)
+			c.remark(RemarkNotRead, l.Start(), "", "."+key+unreadCards[key])
 		}
 		return
 	}

@@ -10,7 +10,9 @@ import (
 // define adds parameters to the current scope. Of two of one name the last holds, and it is said.
 func (c *collector) define(list []assignment) {
 	s := c.current
+	_, doubt := c.branched()
 	for _, a := range list {
+		a.doubt = doubt
 		if _, double := s.named[a.name]; double {
 			c.remark(RemarkModel, a.line.Start(), "", "parameter "+a.name+" is defined again; the last definition holds")
 		}
@@ -28,7 +30,7 @@ func (c *collector) assignments(items []*syntax.Item, l *syntax.Line) []assignme
 		case i.Group != nil:
 			list = append(list, c.assignments(i.Group.Items, l)...)
 		case i.Assign != nil && i.Assign.Value != nil:
-			list = append(list, assignment{strings.ToLower(i.Assign.Key.Text()), i.Assign.Value, l})
+			list = append(list, assignment{name: strings.ToLower(i.Assign.Key.Text()), value: i.Assign.Value, line: l})
 		case i.Assign != nil:
 			text := i.Assign.Key.Text()
 			if !strings.HasSuffix(text, ":") {
@@ -106,6 +108,7 @@ func (c *collector) defineFunction(l *syntax.Line) {
 		return
 	}
 	f := &function{}
+	_, f.doubt = c.branched()
 	for _, a := range strings.Split(text[open+1:end], ",") {
 		if a = strings.ToLower(strings.TrimSpace(a)); a != "" {
 			f.args = append(f.args, a)

@@ -58,7 +58,7 @@ func sortCard(line *syntax.Line, card *syntax.ElementCard) *elementCard {
 				if c.early == nil && len(c.words) < nodesOnly[c.letter] {
 					c.early = i.Assign.Key
 				}
-				c.assigns = append(c.assigns, assignment{strings.ToLower(i.Assign.Key.Text()), i.Assign.Value, line})
+				c.assigns = append(c.assigns, assignment{name: strings.ToLower(i.Assign.Key.Text()), value: i.Assign.Value, line: line})
 				if i.Assign.Value.Atom != nil {
 					c.fields = append(c.fields, Field{
 						Key: i.Assign.Key.Text(), Value: i.Assign.Value.Atom.Text(), At: line.Position(i.Assign.Key.Pos.Offset),

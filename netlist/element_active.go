@@ -139,6 +139,10 @@ func (x *expander) fet(lv *level, c *elementCard) {
 	typeName := c.words[at].Text()
 	f := Fet{}
 	if m := x.modelCardNamed(lv.scope, typeName); m != nil {
+		if m.unknown != "" {
+			x.add(lv, c, nodes, Unknown{Letter: 'M', Why: m.unknown}, typeName)
+			return
+		}
 		if level := m.or("level", 1); level != 1 || m.kind != "nmos" && m.kind != "pmos" {
 			x.add(lv, c, nodes, Unknown{Letter: 'M', Why: fmt.Sprintf("model %s of kind %s level %g is not modelled", typeName, m.kind, level)}, typeName)
 			return
@@ -176,6 +180,10 @@ func (x *expander) switchCard(lv *level, c *elementCard) {
 	if m := x.modelCardNamed(lv.scope, typeName); m != nil {
 		if !strings.HasSuffix(m.kind, "sw") && m.kind != "vswitch" {
 			x.add(lv, c, nodes, wrongKind(c, m), typeName)
+			return
+		}
+		if m.unknown != "" {
+			x.add(lv, c, nodes, Unknown{Letter: 'S', Why: m.unknown}, typeName)
 			return
 		}
 		s.Model = m.switchModel()

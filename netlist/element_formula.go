@@ -18,17 +18,50 @@ func (x *expander) behaviouralCard(lv *level, c *elementCard) {
 		if a.name == "i" {
 			out = OutCurrent
 		}
-		// The formula may stand without braces: it is everything behind the equals sign.
-		text := c.line.Text
 		if a.value.Atom != nil && a.value.Atom.IsExpression() {
-			text = a.value.Atom.Text()
-		} else if k := strings.IndexByte(text, '='); k >= 0 {
-			text = strings.TrimSpace(text[k+1:])
+			if why := x.besideFormula(lv, c, a.name, c.words[2:]); why != "" {
+				x.add(lv, c, nodes, Unknown{Letter: 'B', Why: why}, "")
+				return
+			}
+			x.formulaSource(lv, c, nodes, out, a.value.Atom.Text())
+			return
 		}
-		x.formulaSource(lv, c, nodes, out, text)
+		// The formula may stand without braces: it is everything behind the equals sign.
+		_, text, _ := strings.Cut(c.line.Text, "=")
+		x.formulaSource(lv, c, nodes, out, strings.TrimSpace(text))
 		return
 	}
 	x.add(lv, c, nodes, Unknown{Letter: 'B', Why: "it has no V= or I= formula"}, "")
+}
+
+// harmless are keys on a source by formula that do not change what it gives at its nominal temperature.
+var harmless = words("tc tc1 tc2 temp dtemp tnom mfg pn mpn type desc noise")
+
+// besideFormula goes through what stands on a card beside its formula, whose key is given. What changes the
+// source's law is the reason why the law is not known; the rest is named as not read.
+func (x *expander) besideFormula(lv *level, c *elementCard, key string, rest []*syntax.Atom) (why string) {
+	for _, w := range rest {
+		if w.IsExpression() {
+			return "a second formula stands on its card"
+		}
+	}
+	for _, a := range c.assigns {
+		switch {
+		case a.name == key:
+			key = "" // a second one of the same key is another formula
+		case !harmless[a.name]:
+			return "what " + a.name + "= adds to its formula is not modelled"
+		}
+	}
+	for _, w := range rest {
+		x.leftOver(lv, c, w.Text())
+	}
+	for _, a := range c.assigns {
+		if harmless[a.name] {
+			x.leftOver(lv, c, a.name+"=")
+		}
+	}
+	return ""
 }
 
 // formulaLine reads `B name n n V=formula` where the formula stands without braces: it is then everything behind
@@ -53,8 +86,30 @@ func (x *expander) formulaLine(lv *level, line *syntax.Line) bool {
 	}
 	c := &elementCard{line: line, letter: 'B', name: left[0], shown: left[0]}
 	nodes := []NodeID{x.node(lv, left[1]), x.node(lv, left[2])}
+	body, more := cutFields(body)
+	for _, key := range more {
+		c.assigns = append(c.assigns, assignment{name: strings.ToLower(key)})
+	}
+	if why := x.besideFormula(lv, c, "", nil); why != "" {
+		x.add(lv, c, nodes, Unknown{Letter: 'B', Why: why}, "")
+		return true
+	}
 	x.formulaSource(lv, c, nodes, out, body)
 	return true
+}
+
+// cutFields takes KEY=value from the end of a formula that stands without braces, and returns their keys.
+func cutFields(body string) (formula string, keys []string) {
+	signs := assignmentSigns(body, 1)
+	end := len(body)
+	for k, sign := range signs {
+		at := nameBefore(body, 0, sign)
+		if k == 0 {
+			end = at
+		}
+		keys = append(keys, strings.TrimSpace(body[at:sign]))
+	}
+	return strings.TrimSpace(body[:end]), keys
 }
 
 // formulaSource adds a behavioural source whose formula is compiled when every element it may refer to is known.

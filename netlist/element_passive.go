@@ -17,7 +17,7 @@ func (x *expander) passive(lv *level, c *elementCard) {
 		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "its value is a formula without braces"}, "")
 		return
 	}
-	rest := unquoted(c.words[2:])
+	rest := perCent(unquoted(c.words[2:]))
 	typeName := ""
 	value, found := 0.0, false
 	var number quantity.Spice
@@ -26,6 +26,13 @@ func (x *expander) passive(lv *level, c *elementCard) {
 		text := w.Text()
 		if !w.IsExpression() {
 			if n, ok := quantity.ParseSpice(text); ok {
+				if n.Coded && strings.Contains(n.Unit, "%") {
+					x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "`" + text + "` may be a value or a value and its tolerance"}, "")
+					return
+				}
+				if !found && c.ratingAlone(n) && c.addValueRatings(text) {
+					continue
+				}
 				if !found {
 					value, found, number = n.Value, true, n
 					if unit, ok := unitAlone(rest, k+1); ok && n.Factor == "" {
@@ -90,6 +97,9 @@ func (x *expander) passive(lv *level, c *elementCard) {
 			switch {
 			case !ours:
 				x.add(lv, c, nodes, wrongKind(c, m), typeName)
+				return
+			case m.unknown != "":
+				x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: m.unknown}, typeName)
 				return
 			case stated && !found:
 				value, found = v, true
@@ -156,6 +166,21 @@ func unquoted(words []*syntax.Atom) []*syntax.Atom {
 	return list
 }
 
+// perCent joins a tolerance whose sign stands behind a blank: `5 %`.
+func perCent(words []*syntax.Atom) []*syntax.Atom {
+	var list []*syntax.Atom
+	for _, w := range words {
+		if n := len(list); w.Word == "%" && n > 0 {
+			if _, number := spice(list[n-1].Word); number {
+				list[n-1] = &syntax.Atom{Pos: list[n-1].Pos, Word: list[n-1].Word + "%"}
+				continue
+			}
+		}
+		list = append(list, w)
+	}
+	return list
+}
+
 // looseFormula reports R=, C= or L= with a formula that stands without marks: it goes on behind its first word.
 func (c *elementCard) looseFormula() bool {
 	v, ok := c.assigned(strings.ToLower(string(c.letter)))
@@ -184,7 +209,7 @@ func (x *expander) noValue(lv *level, c *elementCard, nodes []NodeID, w *syntax.
 // depends on the solution, or it takes a function that is not known here.
 func (x *expander) unknowable(err error) bool {
 	var f unknownFunction
-	return x.unread || errors.Is(err, errNoProbe) || errors.As(err, &f)
+	return x.unread || errors.Is(err, errNoProbe) || errors.Is(err, errDoubtful) || errors.As(err, &f)
 }
 
 // copies is m= of a card: how many equal parts in parallel one symbol stands for.

@@ -28,6 +28,19 @@ func (c *elementCard) addValueRatings(text string) bool {
 	return all
 }
 
+// ratingAlone reports a number whose unit makes it a rating and no value, also where no value stands before it.
+func (c *elementCard) ratingAlone(n quantity.Spice) bool {
+	switch strings.ToLower(n.Unit) {
+	case "%":
+		return true
+	case "v", "vdc":
+		return c.letter != 'L'
+	case "w", "watt", "watts":
+		return c.letter == 'R'
+	}
+	return false
+}
+
 // ratingOf tells what one part behind a value means.
 func (c *elementCard) ratingOf(part string) (key, value string) {
 	n, ok := quantity.ParseSpice(part)

@@ -158,7 +158,7 @@ func (x *expander) voltageControlled(lv *level, c *elementCard) {
 	}
 	for _, key := range []string{"value", "vol", "cur"} {
 		if v, ok := c.assigned(key); ok && v.Atom != nil {
-			x.formulaSource(lv, c, nodes, out, v.Atom.Text())
+			x.valueSource(lv, c, nodes, out, key, v.Atom, c.words[2:])
 			return
 		}
 	}
@@ -167,7 +167,7 @@ func (x *expander) voltageControlled(lv *level, c *elementCard) {
 		switch strings.ToLower(rest[0].Text()) {
 		case "value", "vol", "cur":
 			if len(rest) > 1 {
-				x.formulaSource(lv, c, nodes, out, rest[1].Text())
+				x.valueSource(lv, c, nodes, out, "", rest[1], rest[2:])
 				return
 			}
 		case "poly":
@@ -181,7 +181,7 @@ func (x *expander) voltageControlled(lv *level, c *elementCard) {
 			return
 		}
 		if rest[0].IsExpression() {
-			x.formulaSource(lv, c, nodes, out, rest[0].Text())
+			x.valueSource(lv, c, nodes, out, "", rest[0], rest[1:])
 			return
 		}
 	}
@@ -191,6 +191,9 @@ func (x *expander) voltageControlled(lv *level, c *elementCard) {
 	}
 	if len(rest) < 3 {
 		x.fault(c.line.Start(), fmt.Sprintf("%s has %s behind its name", c.shown, counted(len(c.words), "word")), expectedCard[c.letter])
+		return
+	}
+	if x.behindControl(lv, c, nodes, out, rest) {
 		return
 	}
 	nodes = append(nodes, x.node(lv, rest[0].Text()), x.node(lv, rest[1].Text()))
@@ -210,6 +213,36 @@ func (x *expander) voltageControlled(lv *level, c *elementCard) {
 		return
 	}
 	x.add(lv, c, nodes, VoltageControlled{Output: out, Gain: gain}, "")
+}
+
+// valueSource reads a formula behind VALUE or alone; key is that of VALUE=, rest what stands on the card beside it.
+func (x *expander) valueSource(lv *level, c *elementCard, nodes []NodeID, out Quantity, key string, formula *syntax.Atom, rest []*syntax.Atom) {
+	if why := x.besideFormula(lv, c, key, rest); why != "" {
+		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: why}, "")
+		return
+	}
+	x.formulaSource(lv, c, nodes, out, formula.Text())
+}
+
+// behindControl reads a form that stands behind the control nodes, `E1 a 0 c d TABLE (x,y) ...`: a table is one of
+// the voltage between them, another form is kept as unknown. It reports whether the card is of this kind.
+func (x *expander) behindControl(lv *level, c *elementCard, nodes []NodeID, out Quantity, rest []*syntax.Atom) bool {
+	form := strings.ToLower(rest[2].Text())
+	switch form {
+	case "table":
+		points := rest[3:]
+		if len(points) > 0 && !points[0].IsExpression() {
+			of := &syntax.Atom{Pos: rest[0].Pos, Braced: "{V(" + rest[0].Text() + "," + rest[1].Text() + ")}"}
+			points = append([]*syntax.Atom{of}, points...)
+		}
+		x.table(lv, c, nodes, out, points)
+	case "value", "vol", "cur", "poly", "laplace", "freq", "chebyshev", "opamp", "delay", "transformer":
+		nodes = append(nodes, x.node(lv, rest[0].Text()), x.node(lv, rest[1].Text()))
+		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: form + " behind its control nodes is not modelled"}, "")
+	default:
+		return false
+	}
+	return true
 }
 
 // polynomial reads POLY(n) n+ n- ... p0 p1 ...: constant, linear and quadratic terms of n voltages, and for one
@@ -254,7 +287,7 @@ func (x *expander) polynomial(lv *level, c *elementCard, nodes []NodeID, out Qua
 	for k, w := range coefficients {
 		v, err := lv.env.atom(w)
 		if err != nil {
-			x.fault(c.line.Position(w.Pos.Offset), err.Error(), "a coefficient")
+			x.noValue(lv, c, nodes, w, err, "a coefficient")
 			return
 		}
 		if v != 0 {
@@ -277,7 +310,7 @@ func (x *expander) table(lv *level, c *elementCard, nodes []NodeID, out Quantity
 	for _, w := range rest[1:] {
 		v, err := lv.env.atom(w)
 		if err != nil {
-			x.fault(c.line.Position(w.Pos.Offset), err.Error(), "a number of the table")
+			x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "a point of its table: " + err.Error()}, "")
 			return
 		}
 		list = append(list, strconv.FormatFloat(v, 'e', -1, 64))

@@ -31,8 +31,9 @@ type argument struct {
 
 // function is a .func of the netlist.
 type function struct {
-	args []string
-	body *syntax.Formula
+	args  []string
+	body  *syntax.Formula
+	doubt bool // an .if whose condition is not known may leave it out
 }
 
 var errNoProbe = errors.New("a voltage or current cannot stand in a parameter")
@@ -331,6 +332,9 @@ func (r *resolver) call(name string, list []*syntax.Formula) (compiled, error) {
 	}
 	if r.function != nil {
 		if f, ok := r.function(name); ok {
+			if f.doubt {
+				return nil, fmt.Errorf("%s is not known: %w", name, errDoubtful)
+			}
 			if len(f.args) != len(args) {
 				return nil, fmt.Errorf("%s takes %d arguments, not %d", name, len(f.args), len(args))
 			}

@@ -35,7 +35,7 @@ func FuzzParse(f *testing.F) {
 		}
 		start := time.Now()
 		c, _, faults := Parse("fuzz.cir", text, nil, regulators{})
-		if took := time.Since(start); took > 5*time.Second {
+		if took := time.Since(start); took > hanging {
 			t.Fatalf("%v for %q", took, text)
 		}
 		lines := strings.Split(syntax.Decode(text), "\n")
@@ -79,6 +79,9 @@ func FuzzParse(f *testing.F) {
 		}
 	})
 }
+
+// hanging is far beyond what 4 KiB take on a slow and busy machine.
+const hanging = time.Minute
 
 // finite fails on a number in a device that is none.
 func finite(t *testing.T, name string, v reflect.Value) {

@@ -80,6 +80,9 @@ func (x *expander) modelCardAt(s *scope, name string, depth int) *modelCard {
 		return nil
 	}
 	m := &modelCard{name: name, values: map[string]float64{}, at: line.Start()}
+	if x.doubtful[line] {
+		m.unknown = "model " + name + " is not known: " + errDoubtful.Error()
+	}
 	env := x.environmentOf(home)
 	words := 0
 	var base string

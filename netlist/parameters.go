@@ -60,6 +60,9 @@ func (e *environment) lookup(name string, depth int) (float64, error) {
 		if !ok {
 			continue
 		}
+		if a.doubt {
+			return 0, fmt.Errorf("%s is not known: %w", name, errDoubtful)
+		}
 		if at.working[name] {
 			return 0, fmt.Errorf("parameter %s is defined by itself", name)
 		}

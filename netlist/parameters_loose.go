@@ -27,7 +27,7 @@ func (c *collector) looseParameters(l *syntax.Line) []assignment {
 	text := l.Text
 	if f := strings.Fields(text); len(f) == 3 && !strings.Contains(text, "=") {
 		if _, number := spice(f[2]); number {
-			return []assignment{{strings.ToLower(f[1]), &syntax.Value{Atom: &syntax.Atom{Word: f[2]}}, l}}
+			return []assignment{{name: strings.ToLower(f[1]), value: &syntax.Value{Atom: &syntax.Atom{Word: f[2]}}, line: l}}
 		}
 	}
 	equals := assignmentSigns(text, at)
@@ -36,19 +36,19 @@ func (c *collector) looseParameters(l *syntax.Line) []assignment {
 		return nil
 	}
 	var list []assignment
+	end := nameBefore(text, at, equals[0])
 	for k, sign := range equals {
-		end := len(text)
-		if k+1 < len(equals) {
-			end = nameBefore(text, at, equals[k+1])
+		from := end
+		if end = len(text); k+1 < len(equals) {
+			end = nameBefore(text, sign+1, equals[k+1])
 		}
-		from := nameBefore(text, at, sign)
 		name := strings.TrimSpace(text[from:sign])
 		value := strings.Trim(text[sign+1:end], " \t,")
 		if name == "" || value == "" || k == 0 && strings.Trim(text[at:from], " \t,") != "" {
 			c.fault(l.Position(from), "a parameter without a name or a value", "NAME=value")
 			return list
 		}
-		list = append(list, assignment{strings.ToLower(name), &syntax.Value{Atom: looseAtom(value, sign+1)}, l})
+		list = append(list, assignment{name: strings.ToLower(name), value: &syntax.Value{Atom: looseAtom(value, sign+1)}, line: l})
 	}
 	return list
 }

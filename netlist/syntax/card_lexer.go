@@ -117,7 +117,7 @@ func wordLength(text string) int {
 				return k
 			}
 			after := k + end + 1
-			glued := after < len(text) && !separator(text[after]) && !strings.ContainsRune(",=()", rune(text[after]))
+			glued := after < len(text) && !separator(text[after]) && !strings.ContainsRune(",=(){}'\"", rune(text[after]))
 			if k == 0 || !(strings.ContainsRune("-/_", rune(text[k-1])) || glued) {
 				return k
 			}
