@@ -5,7 +5,6 @@ import (
 	"fmt"
 	"os"
 	"path/filepath"
-	"strings"
 	"time"
 
 	"railproof/checks/parts"
@@ -55,7 +54,10 @@ type prepared struct {
 }
 
 func prepare(o Options) (*prepared, []netlist.Diagnostic, error) {
-	table, err := readParts(o.PartsFile)
+	if o.Source.Opened == nil {
+		o.Source.Opened = func(string) {}
+	}
+	table, err := readParts(o.PartsFile, o.Source.Opened)
 	if err != nil {
 		return nil, nil, err
 	}
@@ -64,13 +66,9 @@ func prepare(o Options) (*prepared, []netlist.Diagnostic, error) {
 	if err != nil || len(diagnostics) > 0 {
 		return nil, diagnostics, err
 	}
-	name := o.Policy
-	if name == "" {
-		name = duty.Policy
-	}
-	rules, err := readPolicy(name, filepath.Dir(o.Source.File))
-	if err != nil {
-		return nil, nil, err
+	rules, fault, err := o.readPolicy(duty)
+	if err != nil || fault != nil {
+		return nil, fault, err
 	}
 	r := &Result{
 		File: o.Source.File, Title: circuit.Title, Circuit: circuit, Duty: duty,
@@ -79,10 +77,11 @@ func prepare(o Options) (*prepared, []netlist.Diagnostic, error) {
 	return &prepared{r, study.NewSupply(circuit, duty, table), rules}, nil, nil
 }
 
-func readParts(file string) (*parts.Table, error) {
+func readParts(file string, opened func(string)) (*parts.Table, error) {
 	if file == "" {
 		return parts.Default(), nil
 	}
+	opened(file)
 	text, err := os.ReadFile(file)
 	if err != nil {
 		return nil, err
@@ -90,22 +89,49 @@ func readParts(file string) (*parts.Table, error) {
 	return parts.Load(file, text)
 }
 
-// readPolicy takes the name of a built-in policy or the path of a CSV file.
-func readPolicy(name, folder string) (*policy.Policy, error) {
+// readPolicy takes the policy of the options, of the duty, or the default: the name of a built-in one or the path
+// of a CSV file. One that a duty statement names wrongly is a fault of that statement.
+func (o *Options) readPolicy(d *netlist.Duty) (*policy.Policy, []netlist.Diagnostic, error) {
+	beside := filepath.Dir(o.Source.File)
+	name, folders := o.Policy, []string{"", beside}
+	if name == "" && d.Policy != "" {
+		name, folders = d.Policy, []string{filepath.Dir(d.PolicyAt.File), beside, ""}
+	}
 	if name == "" {
 		name = policy.Default
 	}
-	if !strings.HasSuffix(strings.ToLower(name), ".csv") {
+	rules, err := o.findPolicy(name, folders)
+	if err != nil && o.Policy == "" && d.Policy != "" {
+		return nil, []netlist.Diagnostic{{At: d.PolicyAt, What: err.Error()}}, nil
+	}
+	return rules, nil, err
+}
+
+// findPolicy reads a policy file from the first of the folders that has it.
+func (o *Options) findPolicy(name string, folders []string) (*policy.Policy, error) {
+	if !policy.IsFile(name) {
 		return policy.Named(name)
 	}
-	text, err := os.ReadFile(name)
-	if err != nil && !filepath.IsAbs(name) {
-		text, err = os.ReadFile(filepath.Join(folder, name))
+	if filepath.IsAbs(name) {
+		folders = []string{""}
 	}
-	if err != nil {
-		return nil, err
+	var first error
+	for _, folder := range folders {
+		path := filepath.Join(folder, name)
+		text, err := os.ReadFile(path)
+		if err == nil {
+			o.Source.Opened(path)
+			rules, err := policy.FromCSV(path, text)
+			if err == nil {
+				rules.Name = name
+			}
+			return rules, err
+		}
+		if first == nil {
+			first = err
+		}
 	}
-	return policy.FromCSV(name, text)
+	return nil, first
 }
 
 // Run reads a netlist with its duty sheet, solves its conditions and applies the checks. Diagnostics mean

@@ -47,7 +47,7 @@ type pageFile struct {
 	Assumptions                 []string
 	NotRead                     []string
 	Sources                     []string
-	PartsVersion, PolicyVersion string
+	JudgedBy string
 }
 
 type pageEntry struct {
@@ -136,7 +136,7 @@ func newPageFile(index int, f *File) pageFile {
 		Index: index, Name: printable(f.Name), Title: printable(f.Title),
 		Line: printable(c.Line), Load: printable(c.Load), Ambient: printable(c.Ambient), Policy: printable(c.Policy),
 		Needed: f.Needed(), NeededNote: doubtNote(f.Needed()), Statements: f.Statements(), Assumptions: foldAssumptions(f), NotRead: f.NotRead,
-		PartsVersion: f.PartsVersion, PolicyVersion: f.PolicyVersion,
+		JudgedBy: capital(printable(strings.Join(f.judgedBy(), ", "))),
 	}
 	if f.Failure != "" {
 		p.Faults = append(p.Faults, printable(f.Failure))

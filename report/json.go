@@ -84,6 +84,7 @@ type jsonFile struct {
 	RailMap     []string         `json:"rail_map"`
 	Conditions  jsonConditions   `json:"conditions"`
 	Tables      jsonTables       `json:"tables"`
+	SharedSheet string           `json:"shared_sheet,omitempty"`
 	Findings    []jsonFinding    `json:"findings"`
 	Assumptions []jsonAssumption `json:"assumptions"`
 	NotRead     []string         `json:"not_read"`
@@ -216,7 +217,7 @@ func encode(w io.Writer, d any) error {
 func toJSONFile(f *File) jsonFile {
 	j := jsonFile{
 		File: f.Name, Title: f.Title, RailMap: append([]string{}, f.RailMap...),
-		Conditions: jsonConditions(f.Circumstances), Tables: jsonTables{f.PartsVersion, f.PolicyVersion},
+		Conditions: jsonConditions(f.Circumstances), Tables: jsonTables{f.PartsVersion, f.PolicyVersion}, SharedSheet: f.SharedSheet,
 		Findings: []jsonFinding{}, Assumptions: []jsonAssumption{}, NotRead: append([]string{}, f.NotRead...),
 		Diagnostics: []jsonDiagnostic{},
 	}

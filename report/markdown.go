@@ -91,7 +91,7 @@ func (m *markdown) file(f *File) {
 	m.list("Assumed, because nothing was stated", foldAssumptions(f))
 	m.list("Not read", f.NotRead)
 	m.line("")
-	m.line(md(fmt.Sprintf("Judged by parts tables %s, policy %s.", f.PartsVersion, f.PolicyVersion)))
+	m.line(md(capital(strings.Join(f.judgedBy(), ", ")) + "."))
 }
 
 func (m *markdown) findings(f *File) {

@@ -38,6 +38,7 @@ type File struct {
 	Failure       string               // the file could not be read, in words; empty otherwise
 	PartsVersion  string
 	PolicyVersion string
+	SharedSheet   string // path of the shared sheet that was read; empty: none
 	Totals        Totals
 }
 
@@ -173,6 +174,7 @@ func newFile(in Input, now time.Time) File {
 		f.Findings = append(f.Findings, newFinding(finding, r.Circuit))
 	}
 	if r.Duty != nil {
+		f.SharedSheet = slashed(r.Duty.SharedSheet)
 		f.concede(r.Duty.Concessions, now)
 	}
 	sortFindings(f.Findings)

@@ -185,7 +185,18 @@ func (l *ledger) listTables(f *File) {
 		return
 	}
 	l.line("")
-	l.hang("", "", fmt.Sprintf("judged by parts tables %s, policy %s", f.PartsVersion, f.PolicyVersion))
+	for _, text := range f.judgedBy() {
+		l.hang("", "", text)
+	}
+}
+
+// judgedBy names the tables that a file was judged by, and the shared sheet.
+func (f *File) judgedBy() []string {
+	text := []string{fmt.Sprintf("judged by parts tables %s, policy %s", f.PartsVersion, f.PolicyVersion)}
+	if f.SharedSheet != "" {
+		text = append(text, "under the shared sheet "+f.SharedSheet)
+	}
+	return text
 }
 
 func (l *ledger) cautions() {

@@ -189,6 +189,9 @@ func Names() []string {
 	return names
 }
 
+// IsFile reports whether the name of a policy is that of a CSV file, not of a built-in one.
+func IsFile(name string) bool { return strings.HasSuffix(strings.ToLower(name), ".csv") }
+
 // Named is a built-in policy. The error of an unknown name lists those there are.
 func Named(name string) (*Policy, error) {
 	for _, known := range Names() {

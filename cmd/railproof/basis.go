@@ -3,7 +3,6 @@ package main
 import (
 	"fmt"
 	"os"
-	"strings"
 
 	"github.com/spf13/cobra"
 
@@ -59,7 +58,7 @@ func runBasis(s *streams, table string, args []string) error {
 }
 
 func readPolicy(name string) (*policy.Policy, error) {
-	if !strings.HasSuffix(strings.ToLower(name), ".csv") {
+	if !policy.IsFile(name) {
 		return policy.Named(name)
 	}
 	text, err := os.ReadFile(name)

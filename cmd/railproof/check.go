@@ -176,7 +176,10 @@ func complain(s *streams, inputs []report.Input) {
 	said := map[string]bool{}
 	for _, in := range inputs {
 		for _, d := range in.Diagnostics {
-			s.say(d.Error())
+			if !said[d.Error()] { // several netlists may share a sheet
+				said[d.Error()] = true
+				s.say(d.Error())
+			}
 		}
 		if in.Failure != nil && !said[in.Failure.Error()] {
 			said[in.Failure.Error()] = true

@@ -16,11 +16,13 @@ import (
 type sourceFlags struct {
 	duty, policy, parts string
 	include             []string
+	noShared            bool
 	jobs                int
 }
 
 func (f *sourceFlags) add(c *cobra.Command) {
 	c.Flags().StringVar(&f.duty, "duty", "", "duty sheet `FILE` (default: the netlist's name with the ending .duty, if it is there)")
+	c.Flags().BoolVar(&f.noShared, "no-shared", false, "pass over the shared sheet "+netlist.SharedSheet+" of the netlist's folder or one above it")
 	c.Flags().StringVar(&f.policy, "policy", "", "derating policy, a built-in `NAME` or a CSV file (default: the duty sheet's, else "+policy.Default+")")
 	c.Flags().StringVar(&f.parts, "parts", "", "ratings of your own, a CSV `FILE` with the columns of the built-in tables")
 	c.Flags().StringArrayVar(&f.include, "include", nil, "`DIR` in which included files are looked for, repeatable")
@@ -45,18 +47,25 @@ func (f *sourceFlags) validate(files int) error {
 // reads lists every file that a run over netlists reads by name: the netlists, their sheets, and the tables.
 func (f *sourceFlags) reads(netlists ...string) []string {
 	list := []string{f.duty, f.parts}
-	if strings.HasSuffix(strings.ToLower(f.policy), ".csv") {
+	if policy.IsFile(f.policy) {
 		list = append(list, f.policy)
 	}
 	for _, n := range netlists {
-		list = append(list, n, strings.TrimSuffix(n, filepath.Ext(n))+".duty")
+		own := strings.TrimSuffix(n, filepath.Ext(n)) + ".duty"
+		if f.duty != "" {
+			own = f.duty
+		}
+		list = append(list, n, own)
+		if !f.noShared {
+			list = append(list, netlist.FindSharedSheet(n, own))
+		}
 	}
 	return list
 }
 
 func (f *sourceFlags) options(file string) checks.Options {
 	return checks.Options{
-		Source: netlist.Source{File: file, DutyFile: f.duty, IncludeDirs: f.include},
+		Source: netlist.Source{File: file, DutyFile: f.duty, IncludeDirs: f.include, NoShared: f.noShared},
 		Policy: f.policy, PartsFile: f.parts, Jobs: f.jobs,
 	}
 }
