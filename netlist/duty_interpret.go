@@ -158,9 +158,9 @@ func (in *interpreter) settle() {
 		if !e.lost {
 			e.apply(in.duty)
 			effective[e.statement] = true
-			in.duty.Stated = append(in.duty.Stated, Statement{Text: e.text(), Origin: e.origin, At: e.statement.Place()})
 		}
 	}
+	in.listStated()
 	told := make(map[syntax.Statement]bool)
 	for _, e := range in.entries {
 		if !effective[e.statement] && !told[e.statement] {
@@ -177,6 +177,27 @@ func (in *interpreter) settle() {
 // idle keeps a statement of the shared sheet that has no effect on this netlist.
 func (in *interpreter) idle(statement syntax.Statement, why string) {
 	in.duty.Idle = append(in.duty.Idle, Statement{Text: syntax.PrintDuty(statement), Origin: FromSharedSheet, At: statement.Place(), Why: why})
+}
+
+// listStated lists what is in force: a statement as it is written where all of it is, and else each thing of it.
+func (in *interpreter) listStated() {
+	narrowed := make(map[syntax.Statement]bool)
+	for _, e := range in.entries {
+		narrowed[e.statement] = narrowed[e.statement] || e.lost
+	}
+	told := make(map[syntax.Statement]bool)
+	for _, e := range in.entries {
+		text := syntax.PrintDuty(e.statement)
+		if narrowed[e.statement] {
+			text = e.text()
+		} else if told[e.statement] {
+			continue
+		}
+		if !e.lost {
+			told[e.statement] = true
+			in.duty.Stated = append(in.duty.Stated, Statement{Text: text, Origin: e.origin, At: e.statement.Place()})
+		}
+	}
 }
 
 // text spells an entry as a statement of its own.

@@ -214,7 +214,7 @@ func (in *interpreter) rail(s *syntax.RailStatement) {
 			in.fault(s.Percent.At(), "two ranges", "a nominal voltage before a range in per cent, such as 12V -5%..+5%")
 			return
 		}
-		a, b := r.Low*(1+p.Low), r.Low*(1+p.High)
+		a, b := tidy(r.Low*(1+p.Low)), tidy(r.Low*(1+p.High))
 		r.Low, r.High = min(a, b), max(a, b)
 	} else if r.Low == r.High {
 		in.fault(s.Range.At(), "a rail of one voltage", "a range, such as 11.4V..12.6V or 12V -5%..+5%")

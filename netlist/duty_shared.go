@@ -90,7 +90,7 @@ func (in *interpreter) unfit(at Position, what, expected string) {
 // a source is the line or a winding, and a line stated for every source leaves no other.
 func (in *interpreter) supersededBy(e *dutyEntry) (by *dutyEntry) {
 	keyword, source, _ := strings.Cut(strings.ToLower(e.key), " ")
-	if e.origin != FromSharedSheet || keyword != "line" && keyword != "winding" {
+	if e.lost || e.origin != FromSharedSheet || keyword != "line" && keyword != "winding" {
 		return nil
 	}
 	for i := range in.entries {

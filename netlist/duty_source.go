@@ -71,7 +71,7 @@ func (in *interpreter) line(s *syntax.LineStatement) {
 // lineRange reads the range of the line in V rms, absolute or in per cent of the nominal voltage.
 func (in *interpreter) lineRange(s *syntax.LineStatement, nominal float64) (quantity.Interval, bool) {
 	about := func(low, high float64) quantity.Interval {
-		return quantity.Interval{Low: nominal * (1 + low), High: nominal * (1 + high), Unit: quantity.Volt}
+		return quantity.Interval{Low: tidy(nominal * (1 + low)), High: tidy(nominal * (1 + high)), Unit: quantity.Volt}
 	}
 	if s.Range == nil {
 		return about(defaultLineLow, defaultLineHigh), true
@@ -107,6 +107,15 @@ func (in *interpreter) lineFits(s *syntax.LineStatement, line Line, wave Sine) b
 		return false
 	}
 	return true
+}
+
+// tidy rounds a product of figures that were written to twelve digits: 253 V, not 253.00000000000003 V.
+func tidy(v float64) float64 {
+	rounded, err := strconv.ParseFloat(strconv.FormatFloat(v, 'g', 12, 64), 64)
+	if err != nil {
+		return v
+	}
+	return rounded
 }
 
 func (in *interpreter) winding(s *syntax.WindingStatement) {

@@ -47,7 +47,7 @@ type pageFile struct {
 	Assumptions                 []string
 	NotRead                     []string
 	Sources                     []string
-	JudgedBy string
+	JudgedBy                    string
 }
 
 type pageEntry struct {
