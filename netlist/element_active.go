@@ -149,6 +149,8 @@ func (x *expander) fet(lv *level, c *elementCard) {
 		}
 		f.Model = m.fet()
 		f.Width, f.Length = m.or("w", 0), m.or("l", 0)
+	} else {
+		x.remark(RemarkAssumption, c.line.Start(), lv.prefix+c.shown, "no model for "+typeName+": taken as an N channel with VTO 0 V, KP 2e-5 A/V² (defaults of an empty model card)")
 	}
 	for _, key := range []string{"w", "l"} {
 		if v, ok := c.assigned(key); ok {

@@ -9,7 +9,11 @@ func (c *Circuit) inferPins() {
 	for k := range c.Elements {
 		id, e := ElementID(k), &c.Elements[k]
 		d, ok := e.Device.(Regulator)
-		if !ok || d.Shunt || !d.PinsAssumed || len(e.Nodes) != 3 {
+		if !ok || !d.PinsAssumed || len(e.Nodes) != 3 {
+			continue
+		}
+		if d.Shunt {
+			c.inferShuntPins(id)
 			continue
 		}
 		in, reference, out := e.Nodes[0], e.Nodes[1], e.Nodes[2]
@@ -41,11 +45,25 @@ func (c *Circuit) inferPins() {
 
 // fed reports whether a node is reached from a rectifier or a source without passing the regulator itself, ground
 // or another regulator.
-func (c *Circuit) fed(start NodeID, regulator ElementID) bool {
+func (c *Circuit) fed(start NodeID, regulator ElementID) bool { return c.feed(start, regulator).found }
+
+// feed is a rectifier or source that reaches a node, and whether it makes it positive or negative; sign is 0 where it
+// does not tell.
+type feed struct {
+	found bool
+	sign  Polarity
+}
+
+// feed looks for what feeds a node without passing the regulator, ground, another regulator or one of the stops.
+func (c *Circuit) feed(start NodeID, regulator ElementID, stops ...NodeID) feed {
 	if start == Ground {
-		return false
+		return feed{}
 	}
-	seen := map[NodeID]bool{start: true}
+	seen := map[NodeID]bool{Ground: true}
+	for _, n := range stops {
+		seen[n] = true
+	}
+	seen[start] = true
 	queue := []NodeID{start}
 	for len(queue) > 0 {
 		n := queue[0]
@@ -58,17 +76,21 @@ func (c *Circuit) fed(start NodeID, regulator ElementID) bool {
 			switch d := e.Device.(type) {
 			case Diode:
 				if !c.IsZener(t.Element) {
-					return true
+					return feed{true, signOf(t.Pin == 1)}
 				}
 			case VoltageSource:
-				if w, constant := d.Wave.(Constant); !constant || w.Level != 0 {
-					return true
+				w, constant := d.Wave.(Constant)
+				switch {
+				case !constant:
+					return feed{found: true}
+				case w.Level != 0:
+					return feed{true, signOf((t.Pin == 0) == (w.Level > 0))}
 				}
 			case VoltageControlled, CurrentControlled, Transistor, Fet, Switch:
-				return true
+				return feed{found: true}
 			case Regulator:
 				if !d.Shunt && len(e.Nodes) == 3 && e.Nodes[2] == n {
-					return true
+					return feed{true, d.Polarity}
 				}
 				continue
 			case Resistor, Inductor:
@@ -76,12 +98,19 @@ func (c *Circuit) fed(start NodeID, regulator ElementID) bool {
 				continue
 			}
 			for _, m := range e.Nodes {
-				if m != Ground && !seen[m] {
+				if !seen[m] {
 					seen[m] = true
 					queue = append(queue, m)
 				}
 			}
 		}
 	}
-	return false
+	return feed{}
+}
+
+func signOf(positive bool) Polarity {
+	if positive {
+		return Positive
+	}
+	return Negative
 }

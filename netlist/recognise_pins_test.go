@@ -20,7 +20,38 @@ func (regulators) Recognise(name string) (KnownPart, bool) {
 	case "LM317":
 		return KnownPart{Type: "317", Role: RoleAdjustable, Polarity: Positive, Pins: pins}, true
 	}
+	if name == "TL431" {
+		return KnownPart{Type: "431", Role: RoleShunt, Pins: []Pin{PinReference, PinAnode, PinCathode}}, true
+	}
 	return KnownPart{}, false
+}
+
+// The divider shows the reference of a shunt reference, the sign of the supply which of the others is the cathode.
+func TestShuntPinsFromTopology(t *testing.T) {
+	positive := "t\nV1 in 0 12\nR1 in k 100\nR2 k ref 10k\nR3 ref 0 10k\nRL k 0 1k\n"
+	negative := "t\nV1 0 in 12\nR1 in a 100\nR2 a ref 10k\nR3 ref 0 10k\nRL a 0 1k\n"
+	tied := "t\nV1 in 0 12\nR1 in k 100\n"
+	open := "t\nV1 in 0 12\nV2 out 0 12\nR1 in k 100\nR2 out ref 10k\nR3 ref 0 10k\n"
+	for card, want := range map[string]string{
+		positive + "X1 ref 0 k TL431": "k ref 0", positive + "X1 k ref 0 TL431": "k ref 0", positive + "X1 ref k 0 TL431": "k ref 0",
+		positive + "X1 k 0 ref TL431": "k ref 0", positive + "X1 0 k ref TL431": "k ref 0", positive + "X1 0 ref k TL431": "k ref 0",
+		negative + "X1 ref a 0 TL431": "0 ref a", negative + "X1 0 ref a TL431": "0 ref a", negative + "X1 a 0 ref TL431": "0 ref a",
+		tied + "X1 k k 0 TL431": "k k 0", tied + "X1 0 k k TL431": "k k 0", tied + "X1 k 0 k TL431": "k k 0",
+		open + "X1 ref 0 k TL431": "k ref 0", open + "X1 k 0 ref TL431": "ref k 0",
+	} {
+		c, _, faults := Parse("t.cir", []byte(card+"\n"), nil, regulators{})
+		if len(faults) > 0 {
+			t.Fatal(faults)
+		}
+		id, _ := c.Find("X1")
+		var names []string
+		for _, n := range c.Elements[id].Nodes {
+			names = append(names, c.Nodes[n].Name)
+		}
+		if got := strings.Join(names, " "); got != want {
+			t.Errorf("%s: pins %s, want %s", card[strings.LastIndex(card, "X1"):], got, want)
+		}
+	}
 }
 
 // Whatever the order on the card, the pins are those that ground and the rectifier show; only a changed order is
