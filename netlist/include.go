@@ -176,6 +176,7 @@ func (c *collector) include(key string, l *syntax.Line) {
 	}
 	root, local, ok := c.files.find(name, c.files.folder(l.File), c.files.rootOf(l.File))
 	if !ok {
+		c.files.told(filepath.Join(c.files.names[0], base))
 		c.remark(RemarkLibraryNotRead, l.Start(), "", base+" is not beside the netlist nor in an --include folder")
 		return
 	}

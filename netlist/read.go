@@ -17,7 +17,7 @@ type Source struct {
 	Library     Library  // known types; may be nil
 	NoShared    bool     // pass over the shared sheet
 
-	Opened func(file string) // told of each file before it is read; may be nil
+	Opened func(file string) // told of each file before it is read, and of an included one that is missing; may be nil
 }
 
 // Read reads a netlist, what it includes, and its duty sheet. Diagnostics mean that the input is not to be

@@ -76,6 +76,9 @@ func runCheck(ctx context.Context, s *streams, o *checkOptions, args []string) e
 	if ctx.Err() != nil {
 		return fmt.Errorf("interrupted")
 	}
+	if err := o.spare(targets); err != nil {
+		return err
+	}
 	complain(s, inputs)
 	r := report.New(inputs, drawn)
 	if r.Exit == report.ExitBadInput {

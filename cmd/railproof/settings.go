@@ -52,6 +52,9 @@ func runSettings(s *streams, o *settingsOptions, file string) error {
 		}
 		return exitStatus(report.ExitBadInput)
 	}
+	if err := o.spare(targets); err != nil {
+		return err
+	}
 	page := report.NewSettings(settings)
 	return deliver(s, targets, func(w io.Writer, format string, style report.Style) error { return page.Write(w, format, style) })
 }

@@ -56,6 +56,9 @@ func runStress(ctx context.Context, s *streams, o *stressOptions, file string) e
 		}
 		return exitStatus(report.ExitBadInput)
 	}
+	if err := o.spare(targets); err != nil {
+		return err
+	}
 	table := report.NewStressTable(result, o.nominal)
 	return deliver(s, targets, func(w io.Writer, format string, style report.Style) error { return table.Write(w, format, style) })
 }

@@ -17,7 +17,9 @@ type sourceFlags struct {
 	duty, policy, parts string
 	include             []string
 	noShared            bool
-	jobs                int
+
+	opened fileList // what the runs have read so far
+	jobs   int
 }
 
 func (f *sourceFlags) add(c *cobra.Command) {
@@ -63,9 +65,12 @@ func (f *sourceFlags) reads(netlists ...string) []string {
 	return list
 }
 
+// spare refuses to write over what was read, included files too.
+func (f *sourceFlags) spare(targets []target) error { return spare(named(targets), f.opened.list()) }
+
 func (f *sourceFlags) options(file string) checks.Options {
 	return checks.Options{
-		Source: netlist.Source{File: file, DutyFile: f.duty, IncludeDirs: f.include, NoShared: f.noShared},
+		Source: netlist.Source{File: file, DutyFile: f.duty, IncludeDirs: f.include, NoShared: f.noShared, Opened: f.opened.add},
 		Policy: f.policy, PartsFile: f.parts, Jobs: f.jobs,
 	}
 }
