@@ -96,19 +96,22 @@ func (c Condition) Setting() (set Setting, ok bool) {
 // Trace solves one setting, or integrates its cold start, and follows signals over a window.
 func (p *Plan) Trace(ctx context.Context, set Setting, signals []Signal, w Window) *Trace {
 	t := &Trace{Condition: p.condition(&set), Held: set.Held, Period: p.period}
-	end := w.end(p.period)
 	var out *outcome
-	var list [][]source
-	var found [][]*series
+	var islands []solver.Island
 	if set.Cold {
-		var islands []solver.Island
 		out, islands = p.lay(set)
-		list = p.sources(out, signals)
-		found = p.followCold(ctx, out, islands, list, end)
 	} else {
 		out = p.solve(ctx, set, nil)
-		list = p.sources(out, signals)
-		found = p.followSteady(out, list, end)
+	}
+	if out.low != nil {
+		t.Period = out.low.net.Period
+	}
+	list := p.sources(out, signals)
+	var found [][]*series
+	if set.Cold {
+		found = followCold(ctx, out, islands, list, w.end(t.Period))
+	} else {
+		found = followSteady(out, list, w.end(t.Period))
 	}
 	var all []*series
 	for k, signal := range signals {

@@ -84,7 +84,7 @@ func (p *Plan) elementSources(out *outcome, s Signal) []source {
 }
 
 // followSteady repeats the solved period over the window.
-func (p *Plan) followSteady(out *outcome, list [][]source, end float64) [][]*series {
+func followSteady(out *outcome, list [][]source, end float64) [][]*series {
 	found := make([][]*series, len(list))
 	for k, parts := range list {
 		for _, part := range parts {
@@ -96,12 +96,13 @@ func (p *Plan) followSteady(out *outcome, list [][]source, end float64) [][]*ser
 			s := newSeries()
 			tr := is.solution.Fine
 			read := part.read(tr)
-			if p.period == 0 {
+			period := out.low.net.Period
+			if period == 0 {
 				s.append(0, read(0), end)
 				s.append(end, read(0), end)
 			}
-			for n := 0; p.period > 0 && float64(n)*p.period < end*(1-sameTime); n++ {
-				s.add(tr, read, float64(n)*p.period, end)
+			for n := 0; period > 0 && float64(n)*period < end*(1-sameTime); n++ {
+				s.add(tr, read, float64(n)*period, end)
 			}
 			found[k] = append(found[k], s)
 		}
@@ -110,7 +111,7 @@ func (p *Plan) followSteady(out *outcome, list [][]source, end float64) [][]*ser
 }
 
 // followCold integrates the switch-on of every island that a signal is read in.
-func (p *Plan) followCold(ctx context.Context, out *outcome, islands []solver.Island, list [][]source, end float64) [][]*series {
+func followCold(ctx context.Context, out *outcome, islands []solver.Island, list [][]source, end float64) [][]*series {
 	found := make([][]*series, len(list))
 	if out.failed != nil {
 		return found
@@ -118,7 +119,7 @@ func (p *Plan) followCold(ctx context.Context, out *outcome, islands []solver.Is
 	for k := range list {
 		found[k] = make([]*series, len(list[k]))
 	}
-	period := p.period
+	period := out.low.net.Period
 	if period == 0 {
 		period = restPeriod
 	}
