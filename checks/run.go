@@ -62,6 +62,9 @@ func prepare(o Options) (*prepared, []netlist.Diagnostic, error) {
 		return nil, nil, err
 	}
 	o.Source.Library = table
+	for _, c := range catalogue {
+		o.Source.Checks = append(o.Source.Checks, c.Name)
+	}
 	circuit, duty, diagnostics, err := netlist.Read(o.Source)
 	if err != nil || len(diagnostics) > 0 {
 		return nil, diagnostics, err

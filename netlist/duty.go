@@ -115,6 +115,7 @@ type Concession struct {
 	Until   string // YYYY-MM-DD, last day it holds
 	Reason  string
 	At      Position
+	Shared  bool // stated in the shared sheet, for many netlists
 }
 
 // Symbol is the trade's letter symbol of a rating or property, in its canonical spelling ("VRRM", "UR").

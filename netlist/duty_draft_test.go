@@ -53,7 +53,7 @@ func TestDraft(t *testing.T) {
 		t.Errorf("the diodes do not share a line:\n%s", text)
 	}
 	// As written the sheet states nothing and is no error.
-	d, faults := interpretDuty(c, sheets{FromSheet: DutyLines("a.duty", text)})
+	d, faults := interpretDuty(c, statements{sheets: sheets{FromSheet: DutyLines("a.duty", text)}})
 	if len(faults) > 0 || len(d.Ratings)+len(d.Lines)+len(d.Windings)+len(d.Loads) > 0 || d.Policy != "" {
 		t.Errorf("%v %+v", faults, d)
 	}
@@ -78,7 +78,7 @@ func TestDraftFilledIn(t *testing.T) {
 		filled = append(filled, strings.ReplaceAll(statement, "?", "50"))
 	}
 	sheet := strings.Join(filled, "\n")
-	d, faults := interpretDuty(c, sheets{FromSheet: DutyLines("a.duty", sheet)})
+	d, faults := interpretDuty(c, statements{sheets: sheets{FromSheet: DutyLines("a.duty", sheet)}})
 	if len(faults) > 0 {
 		t.Fatalf("%v in\n%s", faults, sheet)
 	}
@@ -90,7 +90,7 @@ func TestDraftFilledIn(t *testing.T) {
 		t.Errorf("asked again:\n%s", again)
 	}
 	// A ? left in place is an error with the unit that is expected.
-	_, faults = interpretDuty(c, sheets{FromSheet: DutyLines("a.duty", "rate C1 UR=?V")})
+	_, faults = interpretDuty(c, statements{sheets: sheets{FromSheet: DutyLines("a.duty", "rate C1 UR=?V")}})
 	if len(faults) != 1 || !strings.Contains(faults[0].Error(), `a.duty:1:12: "?V": no number; expected a voltage in V`) {
 		t.Errorf("%v", faults)
 	}

@@ -17,7 +17,7 @@ func FuzzInterpretDuty(f *testing.F) {
 	}
 	f.Fuzz(func(t *testing.T, text string) {
 		lines := DutyLines("a.duty", text)
-		first, faults := interpretDuty(build(t, dutyCircuit), sheets{FromSheet: lines})
+		first, faults := interpretDuty(build(t, dutyCircuit), statements{sheets: sheets{FromSheet: lines}})
 		for _, fault := range faults {
 			if fault.At.Line < 1 || fault.At.Line > len(lines) {
 				t.Fatalf("%v lies outside the sheet", fault)
@@ -26,7 +26,7 @@ func FuzzInterpretDuty(f *testing.F) {
 				t.Fatalf("%v lies outside its line %q", fault, lines[fault.At.Line-1].Text)
 			}
 		}
-		again, _ := interpretDuty(build(t, dutyCircuit), sheets{FromSheet: lines})
+		again, _ := interpretDuty(build(t, dutyCircuit), statements{sheets: sheets{FromSheet: lines}})
 		if len(again.Ratings) != len(first.Ratings) || remarksOf(again) != remarksOf(first) {
 			t.Fatal("read differently the second time")
 		}

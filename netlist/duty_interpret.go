@@ -27,10 +27,10 @@ func DutyLines(file, text string) []DutyLine {
 // against the circuit. Where two of these speak of the same thing the later in this order wins and a remark shows
 // both values; within one of them a statement with plain names wins over one with a pattern, and otherwise the
 // later one. `part` and `rate` statements may change what an element is taken for: the circuit is updated.
-func interpretDuty(c *Circuit, all sheets) (*Duty, []Diagnostic) {
-	in := &interpreter{circuit: c, duty: &Duty{}, places: make(map[string]int)}
+func interpretDuty(c *Circuit, all statements) (*Duty, []Diagnostic) {
+	in := &interpreter{circuit: c, checks: all.checks, duty: &Duty{}, places: make(map[string]int)}
 	var statements []dutyStatement
-	for origin, lines := range all {
+	for origin, lines := range all.sheets {
 		for _, line := range lines {
 			statement, fault := syntax.ParseDuty(line.Text, line.At)
 			if fault != nil {
@@ -71,6 +71,7 @@ type interpreter struct {
 	entries []dutyEntry
 	places  map[string]int // key -> index of the entry that holds it
 
+	checks  []string // that a concession may name; nil: any
 	current dutyStatement
 	why     string // the current statement has no effect
 }

@@ -35,7 +35,7 @@ func interpretText(t *testing.T, inline, sheet string) (*Circuit, *Duty, []Diagn
 	if inline != "" {
 		lines = DutyLines("a.cir", inline)
 	}
-	d, faults := interpretDuty(c, sheets{FromNetlist: lines, FromSheet: DutyLines("a.duty", sheet)})
+	d, faults := interpretDuty(c, statements{sheets: sheets{FromNetlist: lines, FromSheet: DutyLines("a.duty", sheet)}})
 	return c, d, faults
 }
 

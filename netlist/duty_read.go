@@ -2,6 +2,7 @@ package netlist
 
 import (
 	"errors"
+	"slices"
 	"strconv"
 	"strings"
 	"time"
@@ -249,6 +250,11 @@ func (in *interpreter) rail(s *syntax.RailStatement) {
 }
 
 func (in *interpreter) concession(s *syntax.ConcessionStatement) {
+	check := strings.ToLower(s.Check.Text())
+	if in.checks != nil && !slices.Contains(in.checks, check) {
+		in.fault(s.Check.At(), "no check "+strconv.Quote(s.Check.Text()), suggest(check, in.checks, "one that `railproof basis` lists"))
+		return
+	}
 	unit, ok := quantity.UnitOf(s.Ceiling.Raw)
 	if !ok {
 		in.fault(s.Ceiling.At(), strconv.Quote(s.Ceiling.Raw)+": no value with a unit", "the highest value permitted, such as 460V")
@@ -268,7 +274,7 @@ func (in *interpreter) concession(s *syntax.ConcessionStatement) {
 		in.fault(s.Place(), "the concession gives no reason", `one in quotation marks, such as "avalanche-rated part, review 12"`)
 		return
 	}
-	base := Concession{Check: strings.ToLower(s.Check.Text()), Element: -1, Ceiling: ceiling, Until: s.Until.Raw, Reason: reason, At: s.Place()}
+	base := Concession{Check: check, Shared: in.shared(), Element: -1, Ceiling: ceiling, Until: s.Until.Raw, Reason: reason, At: s.Place()}
 	value := "up to " + ceiling.Compact() + " until " + s.Until.Raw + ` "` + reason + `"`
 	grant := func(target string, id ElementID, exact bool) {
 		one := base

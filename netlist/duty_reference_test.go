@@ -56,7 +56,7 @@ func TestReference(t *testing.T) {
 		for _, line := range strings.Split(strings.TrimSpace(block), "\n") {
 			c := build(t, dutyCircuit+"\nRN aux e 10\nC3 P 0 1u")
 			examples++
-			if d, faults := interpretDuty(c, sheets{FromSheet: DutyLines("DUTY.md", line)}); len(faults) > 0 {
+			if d, faults := interpretDuty(c, statements{sheets: sheets{FromSheet: DutyLines("DUTY.md", line)}}); len(faults) > 0 {
 				t.Errorf("%s: %v", line, faults)
 			} else if strings.Contains(remarksOf(d), "unused") {
 				t.Errorf("%s: %s", line, remarksOf(d))

@@ -60,6 +60,12 @@ type Statement struct {
 	Why    string
 }
 
+// statements are what is stated about a netlist, and the checks that a concession may name (nil: any).
+type statements struct {
+	sheets sheets
+	checks []string
+}
+
 // sheets are the statements about a netlist, by origin.
 type sheets [FromSheet + 1][]DutyLine
 

@@ -11,7 +11,7 @@ import (
 func sharedDuty(t *testing.T, shared, inline, own string) (*Circuit, *Duty) {
 	t.Helper()
 	c := build(t, dutyCircuit)
-	d, faults := interpretDuty(c, sheets{DutyLines("railproof.duty", shared), DutyLines("a.cir", inline), DutyLines("a.duty", own)})
+	d, faults := interpretDuty(c, statements{sheets: sheets{DutyLines("railproof.duty", shared), DutyLines("a.cir", inline), DutyLines("a.duty", own)}})
 	for _, f := range faults {
 		t.Errorf("%v", f)
 	}
@@ -89,7 +89,7 @@ func TestSharedSheetMistakes(t *testing.T) {
 		"rate D4..D1 VRRM=4V":          "railproof.duty:1:6:",
 		`concession x D77 up to 4V until 2027-13-31 "a"`: "railproof.duty:1:33:",
 	} {
-		_, faults := interpretDuty(build(t, dutyCircuit), sheets{FromSharedSheet: DutyLines("railproof.duty", text)})
+		_, faults := interpretDuty(build(t, dutyCircuit), statements{sheets: sheets{FromSharedSheet: DutyLines("railproof.duty", text)}})
 		if len(faults) != 1 || !strings.HasPrefix(faults[0].Error(), want) {
 			t.Errorf("%s: %v, want one at %s", text, faults, want)
 		}

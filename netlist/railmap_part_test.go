@@ -33,7 +33,7 @@ C1 P 0 1000u
 		{"no rail, but a name and a ground", "V1 a 0 5\nRL a 0 1k", "", "RL"},
 	} {
 		c := build(t, l.cards)
-		d, faults := interpretDuty(c, sheets{FromSheet: DutyLines("a.duty", l.sheet)})
+		d, faults := interpretDuty(c, statements{sheets: sheets{FromSheet: DutyLines("a.duty", l.sheet)}})
 		if len(faults) > 0 {
 			t.Errorf("%s: %v", l.name, faults)
 		}
@@ -125,7 +125,7 @@ C4 a 0 47u type=film
 C5 a 0 1u type=Al_electrolytic
 C6 a 0 100u
 C7 a 0 1u polarised=yes`)
-	d, faults := interpretDuty(c, sheets{FromSheet: DutyLines("a.duty", "rate C6 polarised=no")})
+	d, faults := interpretDuty(c, statements{sheets: sheets{FromSheet: DutyLines("a.duty", "rate C6 polarised=no")}})
 	var got []ElementID
 	for i := range c.Elements {
 		if c.Polarised(ElementID(i), d) {
@@ -147,7 +147,7 @@ V2 b 0 SIN(0 17 50)
 V3 c 0 SIN(0 325.27 50)
 V4 d 0 SIN(0 120 60)
 V5 e 0 5`)
-	d, faults := interpretDuty(c, sheets{FromSheet: DutyLines("a.duty", "line V3 230V -10%..+10%\nwinding V2 as-drawn\nline 230V -10%..+10%")})
+	d, faults := interpretDuty(c, statements{sheets: sheets{FromSheet: DutyLines("a.duty", "line V3 230V -10%..+10%\nwinding V2 as-drawn\nline 230V -10%..+10%")}})
 	if len(faults) > 0 {
 		t.Fatal(faults)
 	}

@@ -33,7 +33,7 @@ func TestAnyCircuit(t *testing.T) {
 		text := strings.Join(cards, "\n")
 		describe := func() ([]string, []Fact, []ElementID, []ZenerFeed, []Island, []byte) {
 			c := build(t, text)
-			d, _ := interpretDuty(c, sheets{FromSheet: nil})
+			d, _ := interpretDuty(c, statements{sheets: sheets{FromSheet: nil}})
 			var rails []string
 			for _, r := range c.RailMap(d) {
 				rails = append(rails, r.String())

@@ -16,6 +16,7 @@ type Source struct {
 	IncludeDirs []string // --include folders
 	Library     Library  // known types; may be nil
 	NoShared    bool     // pass over the shared sheet
+	Checks      []string // the checks that a concession may name; nil: any
 
 	Opened func(file string) // told of each file before it is read, and of an included one that is missing; may be nil
 }
@@ -49,7 +50,7 @@ func Read(src Source) (*Circuit, *Duty, []Diagnostic, error) {
 	if stated[FromSharedSheet], err = src.readSheet(shared); err != nil {
 		return nil, nil, nil, err
 	}
-	c, d, faults := parse(src.File, text, stated, src.Library, opened)
+	c, d, faults := parse(src.File, text, statements{stated, src.Checks}, src.Library, opened)
 	if d != nil {
 		d.SharedSheet = shared
 	}
@@ -58,9 +59,9 @@ func Read(src Source) (*Circuit, *Duty, []Diagnostic, error) {
 
 // Parse reads a netlist and a duty sheet that are not on disk; includes are not followed.
 func Parse(name string, text, sheet []byte, library Library) (*Circuit, *Duty, []Diagnostic) {
-	var stated sheets
+	var stated statements
 	if sheet != nil {
-		stated[FromSheet] = DutyLines(name+".duty", syntax.Decode(sheet))
+		stated.sheets[FromSheet] = DutyLines(name+".duty", syntax.Decode(sheet))
 	}
 	return parse(name, text, stated, library, nil)
 }
@@ -111,7 +112,7 @@ func (src *Source) readSheet(name string) ([]DutyLine, error) {
 	return DutyLines(name, syntax.Decode(text)), nil
 }
 
-func parse(name string, text []byte, stated sheets, library Library, opened *files) (*Circuit, *Duty, []Diagnostic) {
+func parse(name string, text []byte, stated statements, library Library, opened *files) (*Circuit, *Duty, []Diagnostic) {
 	decoded := syntax.Decode(text)
 	if kind := syntax.Foreign(decoded); kind != "" {
 		return nil, nil, []Diagnostic{{At: Position{File: name, Line: 1, Column: 1}, What: "this is " + kind + ", not a SPICE-style netlist", Expected: "element cards such as `R1 in out 1k`"}}
@@ -155,7 +156,7 @@ func parse(name string, text []byte, stated sheets, library Library, opened *fil
 	if !c.HasGround {
 		c.Remarks = append(c.Remarks, Remark{Kind: RemarkAssumption, At: Position{File: name, Line: 1, Column: 1}, Text: "no element touches node 0: voltages between nodes hold, voltages to ground are arbitrary"})
 	}
-	stated[FromNetlist] = x.inline
+	stated.sheets[FromNetlist] = x.inline
 	d, faults := interpretDuty(c, stated)
 	c.inferPins()
 	if len(faults) > 0 {

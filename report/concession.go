@@ -28,7 +28,11 @@ var ConcessionCheck = &checks.Check{
 // concede applies the concessions at a day. One that covers nothing becomes a finding.
 func (f *File) concede(list []netlist.Concession, now time.Time) {
 	for _, c := range list {
-		if reason := f.apply(c, now); reason != "" {
+		reason := f.apply(c, now)
+		if c.Shared && !expired(c.Until, now) {
+			continue // it need not be needed by each of the netlists it is for
+		}
+		if reason != "" {
 			title, rank := titleOf(ConcessionCheck.Name)
 			f.Findings = append(f.Findings, Finding{Title: title, rank: rank, place: int(c.Element), Finding: checks.Finding{
 				Check: ConcessionCheck.Name, Element: c.Target, At: c.At,
