@@ -6,8 +6,6 @@ import (
 	"math"
 	"math/rand/v2"
 	"strconv"
-
-	"railproof/netlist/quantity"
 )
 
 // A spread is a Monte Carlo study: line, loads and tolerances drawn at random within the same ends as those of the
@@ -59,6 +57,7 @@ type Sampled struct {
 	Nominal  float64 // nominal line, full load, every tolerance at nought; NaN if unsolved
 	Headline bool
 	Proves   []string // checks that call the part proven by this bound
+	Beyond   []uint64 // trials that lie beyond the bound, ascending
 }
 
 // UnsolvedTrial is a trial in which a stress that has a bound was not found.
@@ -88,7 +87,8 @@ type SpreadOptions struct {
 	Trials       int
 	Distribution Distribution
 	Jobs         int
-	Done         func() // called after each trial, from several cores at once; may be nil
+	Begin        func(s *Spread) error // called when the stresses are known, before the first trial; may be nil
+	Done         func()                // called after each trial, from several cores at once; may be nil
 }
 
 // draw gives n numbers of 0..1 that depend on the seed and the trial alone.
@@ -115,7 +115,7 @@ func (s *Spread) Positions(trial uint64) []float64 {
 	return at
 }
 
-// setting is the condition of a trial.
+// trial is the condition at the positions of what is varied.
 func (p *Plan) trial(positions []float64) Setting {
 	loads := len(p.loads)
 	set := Setting{Line: LineBetween, LineAt: positions[0], Ambient: p.Ambient[1], Shift: positions[1+loads:]}
@@ -149,18 +149,27 @@ func Sample(ctx context.Context, t *Table, o SpreadOptions) (*Spread, error) {
 		Trials: []Range{{o.First, o.First + uint64(o.Trials) - 1}},
 	}
 	n := newTrials(ctx, t, s)
+	if o.Begin != nil {
+		if err := o.Begin(s); err != nil {
+			return nil, err
+		}
+	}
 	reasons := make([]string, o.Trials)
+	beyond := make([][]int, o.Trials)
 	s.Values = make([][]float64, o.Trials)
 	inParallel(o.Trials, o.Jobs, func(k int) {
 		if ctx.Err() != nil {
 			return
 		}
-		s.Values[k], reasons[k] = n.solve(ctx, o.First+uint64(k))
+		s.Values[k], beyond[k], reasons[k] = n.solve(ctx, o.First+uint64(k))
 		if o.Done != nil {
 			o.Done()
 		}
 	})
 	for k, why := range reasons {
+		for _, column := range beyond[k] {
+			s.Stresses[column].Beyond = append(s.Stresses[column].Beyond, o.First+uint64(k))
+		}
 		if why != "" {
 			s.Unsolved = append(s.Unsolved, UnsolvedTrial{o.First + uint64(k), why})
 		}
@@ -174,11 +183,11 @@ const keptDigits = 10
 // kept rounds a value to what a file holds of it.
 func kept(v float64) float64 {
 	rounded, err := strconv.ParseFloat(strconv.FormatFloat(v, 'g', keptDigits, 64), 64)
-	if err != nil || math.IsInf(v, 0) {
+	switch {
+	case err != nil || math.IsInf(v, 0):
 		return math.NaN()
+	case rounded == 0:
+		return 0 // a negative zero too
 	}
 	return rounded
 }
-
-// unit is the unit of a sampled stress.
-func (s *Sampled) Unit() quantity.Unit { return s.Bound.Unit }

@@ -38,6 +38,15 @@ func Join(list []*Spread) (*Spread, error) {
 		}
 		whole.Values = append(whole.Values, p.rows...)
 	}
+	whole.Stresses = slices.Clone(whole.Stresses)
+	for k := range whole.Stresses {
+		var beyond []uint64
+		for _, s := range list {
+			beyond = append(beyond, s.Stresses[k].Beyond...)
+		}
+		slices.Sort(beyond)
+		whole.Stresses[k].Beyond = beyond
+	}
 	slices.SortFunc(whole.Unsolved, func(a, b UnsolvedTrial) int { return cmp.Compare(a.Trial, b.Trial) })
 	return &whole, nil
 }

@@ -27,9 +27,9 @@ type Statistics struct {
 	Mean, Deviation float64 // of the sample, n - 1
 	Percentiles     [len(Percentiles)]float64
 	// Used is the share of the bound that the worst value uses: it over the bound, or the bound over it where
-	// smaller is worse. NaN unless both are above zero.
+	// smaller is worse. NaN unless both are above nought.
 	Used      float64
-	Beyond    int // trials beyond the bound
+	Farthest  Extremum // of the trials beyond the bound; trial 0: none is
 	Low, High float64
 	Counts    []int // of the histogram from Low to High
 }
@@ -48,14 +48,22 @@ func (s *Sampled) Limit() float64 {
 	return s.Bound.Value + s.Bound.Error
 }
 
-// Beyond reports whether a value lies beyond the bound. What the worst case itself takes for equal is not beyond.
-func (s *Sampled) Beyond(v float64) bool {
-	margin := tie * math.Abs(s.Bound.Value)
+// rounding is what double precision may leave of a value that is exactly nought, such as the mean of a balanced
+// winding, in SI units.
+const rounding = 1e-12
+
+// beyond reports whether a value lies beyond the bound by more than its own numerical error. What the worst case
+// itself takes for equal is not beyond.
+func (s *Sampled) beyond(v, inexact float64) bool {
+	margin := tie*math.Abs(s.Bound.Value) + rounding + inexact
 	if s.SmallerIsWorse() {
 		return s.Bounded() && v < s.Limit()-margin
 	}
 	return s.Bounded() && v > s.Limit()+margin
 }
+
+// worse reports whether a is worse than b.
+func (s *Sampled) worse(a, b float64) bool { return a != b && (a < b) == s.SmallerIsWorse() }
 
 // Worst is the extremum that is the worse one.
 func (st *Statistics) Worst(s *Sampled) Extremum {
@@ -85,8 +93,8 @@ func (s *Spread) Statistics(k int) Statistics {
 			if !(v <= st.Max.Value) {
 				st.Max = Extremum{v, trial}
 			}
-			if sampled.Beyond(v) {
-				st.Beyond++
+			if _, ok := slices.BinarySearch(sampled.Beyond, trial); ok && (st.Farthest.Trial == 0 || sampled.worse(v, st.Farthest.Value)) {
+				st.Farthest = Extremum{v, trial}
 			}
 		}
 	}
@@ -104,7 +112,7 @@ func (s *Spread) Statistics(k int) Statistics {
 	for i, p := range Percentiles {
 		st.Percentiles[i] = stat.Quantile(p/100, stat.Empirical, sorted, nil)
 	}
-	if worst, limit := st.Worst(sampled).Value, sampled.Limit(); sampled.Bounded() && worst > 0 && limit > 0 {
+	if worst, limit := st.Worst(sampled).Value, sampled.Limit(); sampled.Bounded() && worst > rounding && limit > rounding {
 		st.Used = worst / limit
 		if sampled.SmallerIsWorse() {
 			st.Used = limit / worst

@@ -20,6 +20,10 @@ type warmPass struct {
 	warm states
 }
 
+// noRail is the ripple factor above which a node is no rail but an alternating voltage: its mean passes through
+// nought somewhere between the ends of the load, and its ripple factor, which nothing reads, has no bound.
+const noRail = 10
+
 // newTrials solves the nominal condition and lists the stresses that are sampled, in the order of the table.
 func newTrials(ctx context.Context, t *Table, s *Spread) *trials {
 	p := t.Plan
@@ -51,7 +55,7 @@ func newTrials(ctx context.Context, t *Table, s *Spread) *trials {
 		bound := t.Stresses[k]
 		key := tableKey{bound.Element, bound.Quantity}
 		v, ok := nominal[key]
-		if !ok {
+		if !ok || bound.Quantity == RippleFactor && bound.Value > noRail {
 			continue
 		}
 		bound.Value, bound.Error, bound.Phase = kept(bound.Value), kept(bound.Error), kept(bound.Phase)
@@ -74,34 +78,34 @@ func found(s *Stress) float64 {
 	return kept(s.Value)
 }
 
-// solve finds the stresses of one trial; why says what was not found although it has a bound, empty if nothing.
-func (n *trials) solve(ctx context.Context, trial uint64) (row []float64, why string) {
+// solve finds the stresses of one trial and which of them lie beyond their bounds; why says what was not found
+// although it has a bound, empty if nothing.
+func (n *trials) solve(ctx context.Context, trial uint64) (row []float64, beyond []int, why string) {
 	stresses := n.spread.Stresses
-	row = make([]float64, len(stresses))
-	for k := range row {
-		row[k] = math.NaN()
+	read := make([]Stress, len(stresses))
+	for k := range read {
+		read[k] = Stress{Element: stresses[k].Bound.Element, Quantity: stresses[k].Bound.Quantity, Value: math.NaN(), Unproven: "no value was found"}
 	}
-	reasons := make([]string, len(stresses))
 	positions := n.spread.Positions(trial)
 	for _, pass := range n.passes {
 		set := n.plan.trial(positions)
 		set.Held = pass.held
 		n.plan.extract(n.plan.solve(ctx, set, pass.warm), func(st Stress) {
-			k, ok := n.column[tableKey{st.Element, st.Quantity}]
-			if !ok || !n.plan.counts(pass.held, st.Quantity) {
-				return
+			if k, ok := n.column[tableKey{st.Element, st.Quantity}]; ok && n.plan.counts(pass.held, st.Quantity) {
+				read[k] = st
 			}
-			row[k], reasons[k] = found(&st), st.Unproven
 		})
 	}
-	for k := range row {
-		if math.IsNaN(row[k]) && stresses[k].Bounded() {
-			if why = reasons[k]; why == "" {
-				why = "no value was found"
-			}
-			b := &stresses[k].Bound
-			return row, b.Element + " " + string(b.Quantity) + ": " + why
+	row = make([]float64, len(stresses))
+	for k := range read {
+		st := &read[k]
+		row[k] = found(st)
+		switch {
+		case stresses[k].beyond(row[k], st.Error):
+			beyond = append(beyond, k)
+		case math.IsNaN(row[k]) && stresses[k].Bounded() && why == "":
+			why = st.Element + " " + string(st.Quantity) + ": " + st.Unproven
 		}
 	}
-	return row, ""
+	return row, beyond, why
 }

@@ -142,7 +142,7 @@ func checkAll(ctx context.Context, s *streams, o *checkOptions, files []string, 
 	if jobs == 0 {
 		jobs = runtime.GOMAXPROCS(0)
 	}
-	progress := newProgress(s, len(files))
+	progress := newProgress(s, len(files), "files")
 	var group errgroup.Group
 	group.SetLimit(jobs)
 	for k, file := range files {

@@ -1,35 +1,28 @@
 package main
 
 import (
-	"fmt"
-	"sync"
+	"time"
+
+	"github.com/schollz/progressbar/v3"
 )
 
-// progress counts finished files on the error stream, on a terminal only.
-type progress struct {
-	s          *streams
-	mutex      sync.Mutex
-	done, from int
-}
+// progress is a bar on the error stream, on a terminal only. It may be stepped from several cores at once.
+type progress struct{ bar *progressbar.ProgressBar }
 
-// progressFrom is from how many files a count is worth the ink.
+// progressFrom is from how many files a bar is worth the ink.
 const progressFrom = 5
 
-func newProgress(s *streams, files int) *progress { return &progress{s: s, from: files} }
-
-func (p *progress) shown() bool { return p.s.errTerm && p.from >= progressFrom }
-
-func (p *progress) step() {
-	p.mutex.Lock()
-	defer p.mutex.Unlock()
-	p.done++
-	if p.shown() {
-		fmt.Fprintf(p.s.err, "\r%d of %d files", p.done, p.from)
-	}
+// newProgress begins a bar that counts up to n of what is named.
+func newProgress(s *streams, n int, what string) *progress {
+	return &progress{progressbar.NewOptions(n,
+		progressbar.OptionSetWriter(s.err), progressbar.OptionSetVisibility(s.errTerm && n >= progressFrom),
+		progressbar.OptionSetDescription(what), progressbar.OptionShowCount(), progressbar.OptionSetElapsedTime(false),
+		progressbar.OptionSetWidth(24), progressbar.OptionThrottle(100*time.Millisecond), progressbar.OptionClearOnFinish(),
+		progressbar.OptionSetTheme(progressbar.Theme{Saucer: "#", SaucerHead: "#", SaucerPadding: ".", BarStart: "|", BarEnd: "|"}),
+	)}
 }
 
-func (p *progress) end() {
-	if p.shown() {
-		fmt.Fprint(p.s.err, "\r\x1b[K")
-	}
-}
+// A bar that cannot be drawn is no reason to stop.
+func (p *progress) step() { _ = p.bar.Add(1) }
+
+func (p *progress) end() { _ = p.bar.Finish() }

@@ -58,7 +58,7 @@ or a part of the circuit unsolved. Over several files the gravest wins: 2, then 
 	root.SetFlagErrorFunc(func(c *cobra.Command, err error) error {
 		return fmt.Errorf("%w; see `%s --help`", err, c.CommandPath())
 	})
-	root.AddCommand(newCheck(s), newStress(s), newTrace(s), newDraft(s), newCompare(s), newBasis(s), newParts(s), newVersion(s))
+	root.AddCommand(newCheck(s), newStress(s), newSpread(s), newTrace(s), newDraft(s), newCompare(s), newBasis(s), newParts(s), newVersion(s))
 	root.AddCommand(newSettings(s))
 	return root
 }
