@@ -3,6 +3,8 @@ package report
 import (
 	"fmt"
 	"io"
+	"slices"
+	"strconv"
 	"strings"
 
 	"railproof/checks"
@@ -88,22 +90,38 @@ func WriteBasis(w io.Writer, c *checks.Check, colour bool) error {
 	return err
 }
 
-// WritePolicy writes a derating table, each row with its source and how sure it is.
+// WritePolicy writes a derating table, each row with its source, numbered below it, and how sure it is.
 func WritePolicy(w io.Writer, p *policy.Policy, colour bool) error {
 	l := &ledger{palette: newPalette(colour)}
-	l.line(l.strong.Sprint("policy "+printable(p.Name)) + "  " + printable(p.Version()))
+	l.line(l.strong.Sprint("policy " + printable(p.Version())))
 	l.line("")
+	var sources []string
+	rows := [][]string{{"quantity", "rule", "source", "note"}}
 	for _, row := range p.Rows() {
-		l.line(fmt.Sprintf("  %-32s %s", row.Quantity, row.Rule()))
-		source := row.Source
-		if row.Confidence != "" {
-			source += " [" + row.Confidence + "]"
+		source := policySource(row)
+		k := slices.Index(sources, source)
+		if k < 0 {
+			k = len(sources)
+			sources = append(sources, source)
 		}
-		l.hang("      ", "      ", source)
-		if row.Note != "" {
-			l.hang("      ", "      ", row.Note)
-		}
+		rows = append(rows, []string{string(row.Quantity), row.Rule(), strconv.Itoa(k + 1), printable(row.Note)})
+	}
+	l.table(rows)
+	l.section("Sources")
+	for k, source := range sources {
+		l.hang(fmt.Sprintf("%4d  ", k+1), "      ", source)
 	}
 	_, err := io.WriteString(w, l.out.String())
 	return err
+}
+
+// policySource is the source of a row and how sure the row is.
+func policySource(row policy.Row) string {
+	switch {
+	case row.Source == "":
+		return "no source (" + row.Confidence + ")"
+	case row.Confidence == "" || row.Source == row.Confidence:
+		return row.Source
+	}
+	return row.Source + " (" + row.Confidence + ")"
 }

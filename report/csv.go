@@ -45,7 +45,7 @@ func csvStress(file, element string, s *study.Stress) []string {
 		return []string{cell(file), cell(element), "", "", "", "", ""}
 	}
 	return []string{
-		cell(file), cell(element), string(s.Quantity), plainNumber(s.Value), s.Unit.String(), plainNumber(s.Error), cell(conditionWords(s.Condition)),
+		cell(file), cell(element), string(s.Quantity), plainNumber(s.Value), s.Unit.String(), plainError(s), cell(conditionWords(s.Condition)),
 	}
 }
 

@@ -67,7 +67,7 @@ func (t *StressTable) WriteCSV(w io.Writer) error {
 	for k := range t.Stresses {
 		s := &t.Stresses[k]
 		rows = append(rows, []string{
-			cell(t.File), cell(s.Element), string(s.Quantity), plainNumber(s.Value), s.Unit.String(), plainNumber(s.Error),
+			cell(t.File), cell(s.Element), string(s.Quantity), plainNumber(s.Value), s.Unit.String(), plainError(s),
 			cell(conditionWords(s.Condition)), s.Condition.Start, plainNumber(s.Phase), cell(s.Unproven),
 		})
 	}
@@ -83,6 +83,14 @@ func plainNumber(v float64) string {
 		return "0"
 	}
 	return strconv.FormatFloat(v, 'g', jsonDigits, 64)
+}
+
+// plainError is the numerical error for a spreadsheet: where there is no value there is none.
+func plainError(s *study.Stress) string {
+	if plainNumber(s.Value) == "" {
+		return ""
+	}
+	return plainNumber(s.Error)
 }
 
 // cell makes text safe for a spreadsheet: a leading character that would begin a formula is quoted.

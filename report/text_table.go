@@ -63,7 +63,7 @@ func (l *ledger) listProven(f *File, all bool) {
 }
 
 // widestCell is how many columns a cell takes before it wraps; the longest name of a quantity fits.
-const widestCell = 25
+const widestCell = 30
 
 // table writes rows under a heading; the last column takes what is left of the line and wraps.
 func (l *ledger) table(rows [][]string) {
