@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"strings"
 
+	"railproof/netlist/quantity"
 	"railproof/netlist/syntax"
 )
 
@@ -236,7 +237,7 @@ func (c *elementCard) decimalComma() int {
 	for _, w := range c.words[2:4] { // the value may stand behind DC or a model
 		at := w.Pos.Offset + len(w.Word)
 		text := c.line.Text
-		if _, number := spice(w.Word); number && at+1 < len(text) && text[at] == ',' && text[at+1] >= '0' && text[at+1] <= '9' {
+		if n, number := quantity.ParseSpice(w.Word); number && n.Factor+n.Unit+n.Rest == "" && at+1 < len(text) && text[at] == ',' && text[at+1] >= '0' && text[at+1] <= '9' {
 			if before := strings.ToLower(c.words[2].Text()); w == c.words[2] || before == "dc" || c.letter != 'V' && c.letter != 'I' {
 				return at
 			}

@@ -35,6 +35,9 @@ func (x *expander) source(lv *level, c *elementCard) {
 				fail(rest[k], err)
 				return nil, k, false
 			}
+			if strings.Contains(strings.ToLower(rest[k].Word), "rms") {
+				x.remark(RemarkValueSuffix, c.line.Start(), lv.prefix+c.shown, "`"+rest[k].Word+"` in a waveform is a peak, not an RMS value")
+			}
 			list = append(list, v)
 			k++
 		}

@@ -29,6 +29,7 @@ func TestPracticeOfSources(t *testing.T) {
 		{"AC only", v("AC 1"), is("0"), "assumed: AC magnitude"},
 		{"amplitude of RMS mains, said by the check of sources", v("SIN(0 230 50)"), is("sin:0:230:50"), ""},
 		{"a level with rms behind it", v("230Vrms"), is("230"), "suffix: constant level"},
+		{"an amplitude with rms behind it", v("SIN(0 12Vrms 50)"), is("sin:0:12:50"), "suffix: `12Vrms` in a waveform is a peak"},
 		{"PULSE", v("PULSE(0 5 0 1n 1n 5u 10u)"), is("pulse:0:5"), ""},
 		{"PWL", v("PWL(0 0, 1m 5)"), is("pwl:2"), ""},
 		{"PWL from a file", v("PWL file=\"x.txt\""), is("unknown"), "library: V1 its waveform stands in a file"},

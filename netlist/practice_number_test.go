@@ -42,6 +42,8 @@ func TestPracticeOfNumbers(t *testing.T) {
 		{"value, rating and technology", c("1u/60V/tantalum"), is("C", "1e-06"), ""},
 		{"a word that says nothing", r("1k foo"), is("R", "1000"), "assumed: `foo` behind the value"},
 		{"a second number", r("1k 2k"), is("R", "1000"), "assumed: `2k` behind the value"},
+		{"value and rating divided by a comma", c("1000uF,16V"), is("C", "0.001"), ""},
+		{"value and tolerance divided by a comma and a blank", r("1k, 1%"), is("R", "1000"), ""},
 		{"a tolerance is no value", r("5%"), is("R", "unknown"), ""},
 		{"a tolerance with a blank is no value", r("5 %"), is("R", "unknown"), ""},
 		{"a tolerance before the value", r("1% 4k7"), is("R", "4700"), ""},

@@ -60,15 +60,20 @@ func TestPinsFromTopology(t *testing.T) {
 	supply := "title\nV1 a 0 SIN(0 24 50)\nD1 a raw DX\nC1 raw 0 1m\nRL out 0 100\n.model DX D\n"
 	adjustable := supply + "R1 out adj 240\nR2 adj 0 2k\n"
 	for card, inferred := range map[string]bool{
-		supply + "X1 raw 0 out LM7812":      false,
-		supply + "X1 raw out 0 LM7812":      true,
-		supply + "X1 0 raw out LM7812":      true,
-		supply + "X1 0 out raw LM7812":      true,
-		supply + "X1 out 0 raw LM7812":      true,
-		supply + "X1 out raw 0 LM7812":      true,
-		adjustable + "X1 raw adj out LM317": false,
-		adjustable + "X1 out adj raw LM317": true,
-		adjustable + "X1 adj raw out LM317": true,
+		supply + "X1 raw 0 out LM7812":                                    false,
+		supply + "X1 raw out 0 LM7812":                                    true,
+		supply + "X1 0 raw out LM7812":                                    true,
+		supply + "X1 0 out raw LM7812":                                    true,
+		supply + "X1 out 0 raw LM7812":                                    true,
+		supply + "X1 out raw 0 LM7812":                                    true,
+		adjustable + "X1 raw adj out LM317":                               false,
+		adjustable + "X1 out adj raw LM317":                               true,
+		adjustable + "X1 adj raw out LM317":                               true,
+		adjustable + "X1 adj out raw LM317":                               true,
+		adjustable + "D8 out raw DX\nD9 adj out DX\nX1 adj out raw LM317": true,
+		adjustable + "D8 out raw DX\nD9 adj out DX\nX1 raw adj out LM317": false,
+		supply + "D8 out raw DX\nX1 out 0 raw LM7812":                     true,
+		supply + "D8 out raw DX\nX1 raw 0 out LM7812":                     false,
 	} {
 		c, _, faults := Parse("t.cir", []byte(card+"\n"), nil, regulators{})
 		if len(faults) > 0 {
