@@ -1,6 +1,9 @@
 package netlist
 
-import "slices"
+import (
+	"cmp"
+	"slices"
+)
 
 // multipliers finds the ladders of diodes whose joints a capacitor ties to a winding, follows the rails
 // behind them, and returns their diodes.

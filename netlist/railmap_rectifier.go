@@ -1,9 +1,6 @@
 package netlist
 
-import (
-	"cmp"
-	"slices"
-)
+import "slices"
 
 // arm is a rectifier diode, or several in series or in parallel, between a cluster and a direct node.
 type arm struct {
