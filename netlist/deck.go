@@ -141,8 +141,11 @@ func (c *collector) block(lines []syntax.Line, section string) {
 			if word != "" && word[0] != '.' && elementBehindEnd(l.Text) && c.depth == 0 {
 				c.remark(RemarkAfterEnd, l.Start(), word, "stands behind .end and is not part of the circuit")
 			}
-			if strings.EqualFold(word, ".control") {
+			switch strings.ToLower(word) {
+			case ".control":
 				skipTo = ".endc"
+			case ".end":
+				c.remark(RemarkAssumption, l.Start(), "", "a second .end: the circuit ends at the first")
 			}
 			continue
 		}

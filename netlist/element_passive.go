@@ -130,6 +130,7 @@ func (x *expander) passive(lv *level, c *elementCard) {
 		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "its value with m= is beyond all numbers"}, typeName)
 		return
 	}
+	x.parasitics(lv, c)
 	var initial *float64
 	if v, ok := c.assigned("ic"); ok {
 		if n, err := lv.env.evaluate(v, 0); err == nil {
@@ -149,6 +150,16 @@ func (x *expander) passive(lv *level, c *elementCard) {
 // leftOver says that a word behind the value was not understood.
 func (x *expander) leftOver(lv *level, c *elementCard, text string) {
 	x.remark(RemarkAssumption, c.line.Start(), lv.prefix+c.shown, "`"+shorten(text)+"` behind the value is not read")
+}
+
+// parasitics names the small parts that some programs put around an element by its card: they are not modelled.
+func (x *expander) parasitics(lv *level, c *elementCard) {
+	for _, f := range c.fields {
+		switch strings.ToLower(f.Key) {
+		case "rpar", "cpar", "lser", "rlshunt":
+			x.leftOver(lv, c, f.Key+"=")
+		}
+	}
 }
 
 // unquoted takes quoted text apart at its blanks: "4.7mF 63V".

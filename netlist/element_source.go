@@ -133,6 +133,7 @@ func (x *expander) source(lv *level, c *elementCard) {
 	if wave == nil {
 		wave = Constant{Level: dc}
 	}
+	x.parasitics(lv, c)
 	if c.letter == 'I' {
 		if v, ok := c.assigned("r"); ok && !stated && len(rest) == 0 { // a current source used as a resistance
 			if n, err := lv.env.evaluate(v, 0); err == nil {

@@ -37,6 +37,7 @@ func TestPracticeOfSources(t *testing.T) {
 		{"no value", v(""), is("0"), ""},
 		{"an ammeter", v("0"), is("0"), ""},
 		{"Rser", v("9 Rser=0.1"), is("9+0.1ohm"), ""},
+		{"Cpar of a source", v("9 Rser = 0.1 Cpar=1u"), is("9+0.1ohm"), "assumed: `Cpar=` behind the value is not read"},
 		{"value is a placeholder", v("VSOURCE"), is("unknown"), ""},
 		{"a current source", "t\nI1 a 0 DC 1m\nR1 a 0 1\n", "I1(a 0)=0.001 R1(a 0)=1", ""},
 	})
@@ -113,6 +114,7 @@ func TestPracticeOfElements(t *testing.T) {
 		{"a diode of a transistor's model", in("D1 a 0 QX\n.model QX NPN"), is("D1(a 0)=unknown"), ""},
 		{"a diode of straight lines", in("D1 a 0 DX\n.model DX D(Ron=.1 Vfwd=.7)"), is("D1(a 0)=unknown"), ""},
 		{"IC of a capacitor", in("C1 a 0 1u IC=5"), is("C1(a 0)=1e-06"), ""},
+		{"small parts around an inductor", in("L1 a 0 10u Rpar=1k Cpar=1p Rser=1m"), is("L1(a 0)=1e-05"), "assumed: `Rpar=`|assumed: `Cpar=`"},
 		{"metadata of an inductor", in("L1 a 0 10u Ipk=2 Rser=.05 mfg=\"A B\" pn=\"x y\""), is("L1(a 0)=1e-05"), ""},
 	})
 	refuse(t, map[string]string{

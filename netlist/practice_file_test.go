@@ -50,7 +50,7 @@ func TestPracticeOfFiles(t *testing.T) {
 		{"first line is .param, continued", ".param r=\n+ 1k ; note\nV1 a 0 5\nR1 a 0 {r}\n", two, ""},
 		{".end missing", "t\nV1 a 0 5\nR1 a 0 1k\n", two, ""},
 		{"control block behind .end", "t\nV1 a 0 5\nR1 a 0 1k\n.end\n.control\nR9 a 0 1\n.endc\n", two, ""},
-		{".end twice", "t\nV1 a 0 5\nR1 a 0 1k\n.end\n\n.END\n", two, ""},
+		{".end twice", "t\nV1 a 0 5\nR1 a 0 1k\n.end\n\n.END\n", two, "assumed: a second .end: the circuit ends at the first"},
 		{"elements behind .end", "t\nV1 a 0 5\nR1 a 0 1k\n.end\nCx a 0 1u\n", two, "after end: Cx stands behind .end"},
 		{"words behind .end", "t\nV1 a 0 5\nR1 a 0 1k\n.end\nrun it again\nplot v(a) v(b)\n", two, ""},
 		{"typos of directives", "t\nV1 a 0 5\nR1 a 0 1k\n.endA\n.trans 1\n", two, "not read: .enda|not read: .trans"},
