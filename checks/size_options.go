@@ -18,6 +18,9 @@ const (
 	chokeSpan     = 24
 )
 
+// largestReservoir is the capacitance beyond which no reservoir is offered, F. Common practice.
+const largestReservoir = 0.1
+
 // valueOptions lists, by check, the values whose change may mend its violations, the first to try first.
 var valueOptions = map[string]func(z *sizer, f *Finding, id netlist.ElementID) []adjustment{
 	regulatorHeadroom.Name: func(z *sizer, _ *Finding, id netlist.ElementID) []adjustment { return z.reservoirUp(id) },
@@ -100,6 +103,9 @@ func (z *sizer) larger(list []netlist.ElementID) []adjustment {
 		a.series = parts.E6
 	}
 	a.values = steps(a.series, a.from, false, capacitorSpan)
+	if k := slices.IndexFunc(a.values, func(v float64) bool { return v > largestReservoir }); k >= 0 {
+		a.values = a.values[:k]
+	}
 	return []adjustment{a}
 }
 

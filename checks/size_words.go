@@ -37,13 +37,29 @@ func roundUp(x float64) float64 {
 func (z *sizer) missed(f *Finding, a *adjustment, last *Finding) miss {
 	furthest := a.values[len(a.values)-1]
 	what := fmt.Sprintf("no %s of %s helps", a.noun(), z.names(a.elements))
-	if last == nil || !found(last.Stress) {
+	if last == nil || last.Limit == nil && last.Verdict != Unproven || !found(last.Stress) || !found(f.Stress) {
 		return miss{words: what}
 	}
 	if last.Verdict == Unproven {
 		return miss{words: what, unproven: last.Reason}
 	}
-	return miss{words: what + ": with " + quantity.Format(furthest, a.unit, 3) + " " + shortage(f, last, a)}
+	switch {
+	case !a.circuit():
+		needed := (f.Stress.Value + f.Stress.Error) * a.from / f.Limit.Value
+		return miss{words: join("no standard "+string(a.symbol)+" reaches the "+quantity.Format(roundUp(needed), a.unit, 3)+" that are needed", f.Remedy)}
+	case unmoved(f, last):
+		return miss{words: what + ": whatever its value, " + shortage(last)}
+	case a.symbol == "C" && f.Floor && last.Stress.Unit == quantity.Volt:
+		return miss{words: fmt.Sprintf("%s: with %s the crest at %s is short by %s: a higher winding voltage, or less current", what,
+			quantity.Format(furthest, a.unit, 3), lineWords(last), distance(last))}
+	}
+	return miss{words: what + ": with " + quantity.Format(furthest, a.unit, 3) + " " + shortage(last)}
+}
+
+// unmoved reports whether a rail's voltage did not follow a change: then what holds it decides, not its reservoir.
+func unmoved(f, last *Finding) bool {
+	const part = 0.01
+	return f.Check == railVoltage.Name && last.Limit != nil && math.Abs(last.Stress.Value-f.Stress.Value) < part*math.Abs(f.Stress.Value-last.Limit.Value)
 }
 
 // noun is what an adjustment changes, in words.
@@ -59,19 +75,18 @@ func (a *adjustment) noun() string {
 	return string(a.symbol)
 }
 
-// shortage says by how much a stress misses its limit. Where no reservoir helps, it is the crest that is short.
-func shortage(f, last *Finding, a *adjustment) string {
-	if last.Limit == nil {
-		return "it is still violated"
+// distance is by how much a stress misses its limit.
+func distance(f *Finding) string {
+	return quantity.Format(math.Abs(f.Stress.Value-f.Limit.Value), f.Stress.Unit, 3)
+}
+
+// shortage says what misses its limit, and by how much: "the smallest headroom is short by 1.2 V".
+func shortage(f *Finding) string {
+	side := "over"
+	if f.Floor {
+		side = "short"
 	}
-	by := quantity.Format(math.Abs(last.Stress.Value-last.Limit.Value), last.Stress.Unit, 2)
-	switch {
-	case a.symbol == "C" && f.Floor && last.Stress.Unit == quantity.Volt:
-		return "the crest at " + lineWords(last) + " is short by " + by + ": a higher winding voltage, or less current"
-	case last.Floor:
-		return fmt.Sprintf("the %s is short by %s", spoken(last), by)
-	}
-	return fmt.Sprintf("the %s is over by %s", spoken(last), by)
+	return fmt.Sprintf("the %s is %s by %s", spoken(f), side, distance(f))
 }
 
 func lineWords(f *Finding) string {
@@ -81,18 +96,23 @@ func lineWords(f *Finding) string {
 	return "this line"
 }
 
-// spoken is the quantity of a finding in words.
-func spoken(f *Finding) string { return strings.ReplaceAll(string(f.Stress.Quantity), "-", " ") }
-
 // lacking says for a violation that no value touches what is wrong, and what its check advises.
 func lacking(f *Finding) string {
 	words := f.Reason
 	if found(f.Stress) && f.Limit != nil && !math.IsInf(f.Stress.Value, 0) {
-		side := "over"
-		if f.Floor {
-			side = "short"
-		}
-		words = fmt.Sprintf("the %s is %s by %s", spoken(f), side, quantity.Format(math.Abs(f.Stress.Value-f.Limit.Value), f.Stress.Unit, 3))
+		words = shortage(f)
 	}
-	return join(words, f.Remedy)
+	return "no value helps: " + join(words, f.Remedy)
+}
+
+// spoken is the quantity of a finding in words: "largest backflow", "smallest headroom".
+func spoken(f *Finding) string {
+	words := strings.ReplaceAll(string(f.Stress.Quantity), "-", " ")
+	if rest, ok := strings.CutPrefix(words, "max "); ok {
+		return "largest " + rest
+	}
+	if rest, ok := strings.CutPrefix(words, "min "); ok {
+		return "smallest " + rest
+	}
+	return words
 }

@@ -18,30 +18,35 @@ func (p *Plan) outputShorts(ctx context.Context, jobs int, t *Table) {
 		id := p.loads[k].element
 		outcomes[k] = p.solve(ctx, Setting{Line: LineHigh, Loads: loads, Ambient: p.Ambient[1], Short: &id}, nil)
 	})
+	for k, out := range outcomes {
+		t.Solved++
+		p.shortStresses(out, p.loads[k].element, t.merge)
+	}
+}
+
+// shortStresses hands on what an outcome with a shorted output says of the other parts.
+func (p *Plan) shortStresses(out *outcome, output netlist.ElementID, emit func(Stress)) {
 	c := p.supply.Circuit
 	kinds := map[string]netlist.Device{}
 	for k := range c.Elements {
 		kinds[c.Elements[k].Name] = c.Elements[k].Device
 	}
-	for k, out := range outcomes {
-		t.Solved++
-		shorted := c.Elements[p.loads[k].element].Name
-		p.extract(out, func(s Stress) {
-			if s.Element == shorted {
-				return
-			}
-			_, diode := kinds[s.Element].(netlist.Diode)
-			switch {
-			case s.Quantity == MeanPower:
-				s.Quantity = ShortPower
-			case s.Quantity == MeanCurrent && diode, s.Quantity == RMSCurrent && !diode:
-				s.Quantity = ShortCurrent
-			default:
-				return
-			}
-			s.Condition.Name = "high line, output " + shorted + " shorted"
-			s.Condition.Load = "shorted"
-			t.merge(s)
-		})
-	}
+	shorted := c.Elements[output].Name
+	p.extract(out, func(s Stress) {
+		if s.Element == shorted {
+			return
+		}
+		_, diode := kinds[s.Element].(netlist.Diode)
+		switch {
+		case s.Quantity == MeanPower:
+			s.Quantity = ShortPower
+		case s.Quantity == MeanCurrent && diode, s.Quantity == RMSCurrent && !diode:
+			s.Quantity = ShortCurrent
+		default:
+			return
+		}
+		s.Condition.Name = "high line, output " + shorted + " shorted"
+		s.Condition.Load = "shorted"
+		emit(s)
+	})
 }
