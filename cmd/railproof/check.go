@@ -26,6 +26,9 @@ type checkOptions struct {
 	baseline      string
 	newOnly       bool
 	proven        bool
+	watch         bool
+
+	fresh func() // called before a run first writes; may be nil
 }
 
 func newCheck(s *streams) *cobra.Command {
@@ -39,7 +42,12 @@ given by name is taken whatever its ending.
 
 When an input cannot be read, its faults stand on the error stream, no FILE is written, and the status is 2.`,
 		Args: cobra.MinimumNArgs(1),
-		RunE: func(c *cobra.Command, args []string) error { return runCheck(c.Context(), s, &o, args) },
+		RunE: func(c *cobra.Command, args []string) error {
+			if o.watch {
+				return watchCheck(c.Context(), s, &o, args)
+			}
+			return checkOnce(c.Context(), s, &o, args)
+		},
 	}
 	o.sourceFlags.add(c)
 	o.outputFlags.add(c, report.Formats())
@@ -49,11 +57,12 @@ When an input cannot be read, its faults stand on the error stream, no FILE is w
 	c.Flags().StringVar(&o.baseline, "baseline", "", "an earlier JSON report `FILE`: findings it has are marked unchanged, others new")
 	c.Flags().BoolVar(&o.newOnly, "new-only", false, "with --baseline: the gate looks at new findings only")
 	c.Flags().BoolVar(&o.proven, "proven", false, "let the text ledger list all that is proven, not the headline checks alone")
+	c.Flags().BoolVar(&o.watch, "watch", false, "check again after each save of a file that is read; Ctrl-C ends, with the status of the last check")
 	completeWords(c, "gate", "critical", "major", "minor", "never")
 	return c
 }
 
-func runCheck(ctx context.Context, s *streams, o *checkOptions, args []string) error {
+func checkOnce(ctx context.Context, s *streams, o *checkOptions, args []string) error {
 	targets, err := o.targets(report.Formats())
 	if err != nil {
 		return err
@@ -75,6 +84,9 @@ func runCheck(ctx context.Context, s *streams, o *checkOptions, args []string) e
 	inputs := checkAll(ctx, s, o, files, drawn.Now)
 	if ctx.Err() != nil {
 		return fmt.Errorf("interrupted")
+	}
+	if o.fresh != nil {
+		o.fresh()
 	}
 	if err := o.spare(targets); err != nil {
 		return err
