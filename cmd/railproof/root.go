@@ -59,7 +59,7 @@ or a part of the circuit unsolved. Over several files the gravest wins: 2, then 
 		return fmt.Errorf("%w; see `%s --help`", err, c.CommandPath())
 	})
 	root.AddCommand(newCheck(s), newStress(s), newSpread(s), newTrace(s), newDraft(s), newCompare(s), newBasis(s), newParts(s), newVersion(s))
-	root.AddCommand(newSettings(s))
+	root.AddCommand(newSettings(s), newMan(s))
 	root.AddCommand(newSize(s))
 	return root
 }
