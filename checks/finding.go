@@ -50,6 +50,7 @@ type Finding struct {
 
 	At         netlist.Position
 	Concession *Concession
+	Wave       *Wave // the curve of the stress; nil: none was asked for, or there is none
 }
 
 // Rating is what the maker allows, and where that is known from.

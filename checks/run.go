@@ -22,6 +22,7 @@ type Options struct {
 	Jobs      int    // conditions solved at once; 0: one a core
 	Now       time.Time
 	Only      []string // names of the checks to run; empty: all
+	Waves     bool     // follow the curve of each finding that has one
 }
 
 // Circumstances puts the duty into words for the head of a report.
@@ -158,6 +159,9 @@ func Run(ctx context.Context, o Options) (*Result, []netlist.Diagnostic, error) 
 		pass := &Pass{Supply: p.supply, Table: table, Policy: p.policy, check: c}
 		c.run(pass)
 		r.Findings = append(r.Findings, pass.findings...)
+	}
+	if o.Waves {
+		addWaves(ctx, r.Circuit, table.Plan, r.Findings)
 	}
 	r.describe(p, table)
 	return r, nil, nil

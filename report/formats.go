@@ -59,6 +59,9 @@ func StressFormats() []string {
 	return names
 }
 
+// ShowsWaves reports whether a format shows the curves of findings.
+func ShowsWaves(name string) bool { return name == "html" }
+
 // Write writes the report in a named format.
 func (r *Report) Write(w io.Writer, name string, s Style) error {
 	k := slices.IndexFunc(reportFormats, func(f format) bool { return f.name == name })

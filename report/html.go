@@ -44,6 +44,7 @@ type pageFile struct {
 	NeededNote                  string
 	Statements                  []string
 	Rows                        []pageRow
+	Waves                       []*waveDrawing // of what is proven
 	Assumptions                 []string
 	NotRead                     []string
 	Sources                     []string
@@ -53,6 +54,7 @@ type pageFile struct {
 type pageEntry struct {
 	Label, Class, Name, Title, Found string
 	Bar                              bar
+	Wave                             *waveDrawing
 	Lines                            []pageLine
 	Items                            []string // of a group that waits for one thing
 }
@@ -150,7 +152,7 @@ func newPageFile(index int, f *File) pageFile {
 	for k := range f.Findings {
 		p.Rows = append(p.Rows, newPageRow(k, &f.Findings[k]))
 	}
-	p.Sources = sourcesOf(f)
+	p.Sources, p.Waves = sourcesOf(f), provenWaves(f)
 	return p
 }
 
@@ -198,6 +200,9 @@ func entriesOf(f *File) []pageEntry {
 
 func newPageEntry(x *Folded) pageEntry {
 	e := pageEntry{Label: labelOf(&x.Finding), Class: classOf(&x.Finding), Name: printable(x.Name()), Title: x.Title + strings.TrimPrefix(stateTail(x), " "), Found: inSentence(foundLine(&x.Finding)), Bar: newBar(&x.Finding)}
+	if x.Verdict != checks.Unproven {
+		e.Wave = drawWave(x)
+	}
 	add := func(word, text string) {
 		if text != "" {
 			e.Lines = append(e.Lines, pageLine{word, printable(text)})

@@ -18,6 +18,7 @@ type SignalKind string
 const (
 	VoltageSignal SignalKind = "voltage" // V
 	CurrentSignal SignalKind = "current" // A
+	InputSignal   SignalKind = "input"   // V; of a regulator its input, positive in the working direction; else as voltage
 )
 
 // Signal is what a trace follows: the voltage of a node against ground, or the voltage or current of an element.
@@ -83,6 +84,9 @@ func (p *Plan) Fits(w Window) (most float64, ok bool) {
 	most = Window{Periods: maxWindow}.end(p.period)
 	return most, w.end(p.period) <= most
 }
+
+// Period is the period of the sources, s; 0: all are constant.
+func (p *Plan) Period() float64 { return p.period }
 
 // Setting returns what was solved in a condition, so that it can be traced; ok is false for a condition that no
 // setting of a supply with its line on describes.

@@ -68,12 +68,15 @@ func (p *Plan) elementSources(out *outcome, s Signal) []source {
 	local := solver.Device(home.index)
 	if d, ok := e.Device.(netlist.Regulator); ok && !d.Shunt {
 		sign := out.low.regulators[s.Element].Sign
-		if s.Kind == VoltageSignal {
+		switch s.Kind {
+		case InputSignal:
+			return []source{{home.island, scaled(sign, branchVoltage(local, 0))}}
+		case VoltageSignal:
 			return []source{{home.island, combine(sign, branchVoltage(local, 0), -sign, branchVoltage(local, 1))}}
 		}
 		return []source{{home.island, scaled(-sign, branchCurrent(local, 1))}}
 	}
-	if s.Kind == VoltageSignal {
+	if s.Kind != CurrentSignal {
 		return []source{{home.island, branchVoltage(local, 0)}}
 	}
 	var list []source

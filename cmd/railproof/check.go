@@ -6,6 +6,7 @@ import (
 	"io"
 	"os"
 	"runtime"
+	"slices"
 	"strings"
 	"time"
 
@@ -26,6 +27,7 @@ type checkOptions struct {
 	baseline      string
 	newOnly       bool
 	proven        bool
+	waves         bool // some format shows curves
 	watch         bool
 
 	fresh func() // called before a run first writes; may be nil
@@ -81,6 +83,7 @@ func checkOnce(ctx context.Context, s *streams, o *checkOptions, args []string) 
 	if err := spare(named(targets), append(o.reads(files...), o.baseline)); err != nil {
 		return err
 	}
+	o.waves = slices.ContainsFunc(targets, func(t target) bool { return report.ShowsWaves(t.format) })
 	inputs := checkAll(ctx, s, o, files, drawn.Now)
 	if ctx.Err() != nil {
 		return fmt.Errorf("interrupted")
@@ -160,7 +163,7 @@ func checkAll(ctx context.Context, s *streams, o *checkOptions, files []string, 
 	for k, file := range files {
 		group.Go(func() error {
 			options := o.options(file)
-			options.Now = now
+			options.Now, options.Waves = now, o.waves
 			if len(files) > 1 {
 				options.Jobs = 1
 			}
