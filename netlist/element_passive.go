@@ -17,7 +17,7 @@ func (x *expander) passive(lv *level, c *elementCard) {
 		x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "its value is a formula without braces"}, "")
 		return
 	}
-	rest := perCent(unquoted(c.words[2:]))
+	rest := joinRatings(unquoted(c.words[2:]))
 	typeName := ""
 	value, found := 0.0, false
 	var number quantity.Spice
@@ -30,7 +30,7 @@ func (x *expander) passive(lv *level, c *elementCard) {
 					x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "`" + text + "` may be a value or a value and its tolerance"}, "")
 					return
 				}
-				if !found && c.ratingAlone(n) && c.addValueRatings(text) {
+				if !found && c.ratingAlone(n) && c.addValueRatings(text) == "" {
 					continue
 				}
 				if !found {
@@ -42,11 +42,9 @@ func (x *expander) passive(lv *level, c *elementCard) {
 							k++
 						}
 					}
-					if n.Rest != "" && !c.addValueRatings(n.Rest) {
-						x.leftOver(lv, c, n.Rest)
-					}
-				} else if !c.addValueRatings(text) {
-					x.leftOver(lv, c, text)
+					x.leftOver(lv, c, c.addValueRatings(n.Rest))
+				} else {
+					x.leftOver(lv, c, c.addValueRatings(text))
 				}
 				continue
 			}
@@ -75,8 +73,8 @@ func (x *expander) passive(lv *level, c *elementCard) {
 			}
 		case model && typeName == "":
 			typeName = text
-		case !c.addValueRatings(text):
-			x.leftOver(lv, c, text)
+		default:
+			x.leftOver(lv, c, c.addValueRatings(text))
 		}
 	}
 	key := map[byte]string{'R': "r", 'C': "c", 'L': "l"}[c.letter]
@@ -147,8 +145,11 @@ func (x *expander) passive(lv *level, c *elementCard) {
 	}
 }
 
-// leftOver says that a word behind the value was not understood.
+// leftOver says that a word behind the value was not understood; none if it is empty.
 func (x *expander) leftOver(lv *level, c *elementCard, text string) {
+	if text == "" {
+		return
+	}
 	x.remark(RemarkAssumption, c.line.Start(), lv.prefix+c.shown, "`"+shorten(text)+"` behind the value is not read")
 }
 
@@ -177,13 +178,13 @@ func unquoted(words []*syntax.Atom) []*syntax.Atom {
 	return list
 }
 
-// perCent joins a tolerance whose sign stands behind a blank: `5 %`.
-func perCent(words []*syntax.Atom) []*syntax.Atom {
+// joinRatings joins a tolerance or rating whose sign stands behind a blank to its number: `5 %`, `25 V`, `1/4 W`.
+func joinRatings(words []*syntax.Atom) []*syntax.Atom {
 	var list []*syntax.Atom
 	for _, w := range words {
-		if n := len(list); w.Word == "%" && n > 0 {
-			if _, number := spice(list[n-1].Word); number {
-				list[n-1] = &syntax.Atom{Pos: list[n-1].Pos, Word: list[n-1].Word + "%"}
+		if n := len(list); n > 0 && ratingUnits[strings.ToLower(w.Word)] {
+			if number, ok := quantity.ParseSpice(list[n-1].Word); ok && number.Factor+number.Unit == "" {
+				list[n-1] = &syntax.Atom{Pos: list[n-1].Pos, Word: list[n-1].Word + w.Word}
 				continue
 			}
 		}
@@ -191,6 +192,8 @@ func perCent(words []*syntax.Atom) []*syntax.Atom {
 	}
 	return list
 }
+
+var ratingUnits = words("% v vdc w watt watts")
 
 // looseFormula reports R=, C= or L= with a formula that stands without marks: it goes on behind its first word.
 func (c *elementCard) looseFormula() bool {

@@ -7,10 +7,10 @@ import (
 	"railproof/netlist/quantity"
 )
 
-// addValueRatings reads what exporters write behind a value: `50V`, `2W`, `1/4W`, `60V/tantalum`. It reports whether
-// every part of the text was understood.
-func (c *elementCard) addValueRatings(text string) bool {
-	all := true
+// addValueRatings reads what exporters write behind a value: `50V`, `2W`, `1/4W`, `60V/tantalum`. It returns
+// the parts of the text that say nothing.
+func (c *elementCard) addValueRatings(text string) (unread string) {
+	var left []string
 	if watts, ok := fractionOfWatt(&text); ok && c.letter == 'R' {
 		c.fields = append(c.fields, Field{Key: "P70", Value: watts, At: c.line.Start()})
 	}
@@ -20,12 +20,12 @@ func (c *elementCard) addValueRatings(text string) bool {
 		}
 		key, value := c.ratingOf(part)
 		if key == "" {
-			all = false
+			left = append(left, part)
 			continue
 		}
 		c.fields = append(c.fields, Field{Key: key, Value: value, At: c.line.Start()})
 	}
-	return all
+	return strings.Join(left, "/")
 }
 
 // ratingAlone reports a number whose unit makes it a rating and no value, also where no value stands before it.

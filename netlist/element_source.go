@@ -5,13 +5,14 @@ import (
 	"strconv"
 	"strings"
 
+	"railproof/netlist/quantity"
 	"railproof/netlist/syntax"
 )
 
 // source reads V and I: a DC value, DC v, AC m p and a waveform, in any order, with or without brackets.
 func (x *expander) source(lv *level, c *elementCard) {
 	nodes := []NodeID{x.node(lv, c.words[0].Text()), x.node(lv, c.words[1].Text())}
-	rest := c.words[2:]
+	rest := x.joinUnits(lv, c, c.words[2:])
 	var wave Waveform
 	dc, stated := 0.0, false
 	fail := func(w *syntax.Atom, err error) {
@@ -35,7 +36,7 @@ func (x *expander) source(lv *level, c *elementCard) {
 				fail(rest[k], err)
 				return nil, k, false
 			}
-			if strings.Contains(strings.ToLower(rest[k].Word), "rms") {
+			if alternating(rest[k].Word) {
 				x.remark(RemarkValueSuffix, c.line.Start(), lv.prefix+c.shown, "`"+rest[k].Word+"` in a waveform is a peak, not an RMS value")
 			}
 			list = append(list, v)
@@ -110,7 +111,7 @@ func (x *expander) source(lv *level, c *elementCard) {
 				x.add(lv, c, nodes, Unknown{Letter: c.letter, Why: "it has two values"}, "")
 				return
 			}
-			if strings.Contains(text, "rms") {
+			if alternating(text) {
 				x.remark(RemarkValueSuffix, c.line.Start(), lv.prefix+c.shown, "`"+text+"` is a constant level in a netlist, not an alternating voltage")
 			}
 			dc, stated = v, true
@@ -152,6 +153,34 @@ func (x *expander) source(lv *level, c *elementCard) {
 	}
 	x.add(lv, c, nodes, s, "")
 }
+
+// alternating reports a number whose unit says that an RMS value is meant.
+func alternating(text string) bool {
+	n, ok := quantity.ParseSpice(text)
+	unit := strings.ToLower(n.Unit)
+	return ok && (strings.Contains(unit, "rms") || strings.Contains(unit, "eff") || unit == "vac" || unit == "aac")
+}
+
+// joinUnits joins a unit that stands behind a blank to its number: `12 V`, `50 Hz`.
+func (x *expander) joinUnits(lv *level, c *elementCard, words []*syntax.Atom) []*syntax.Atom {
+	var list []*syntax.Atom
+	for _, w := range words {
+		if n := len(list); n > 0 && sourceUnits[strings.ToLower(w.Word)] {
+			before := list[n-1]
+			_, err := lv.env.value(strings.ToLower(w.Word))
+			if number, ok := quantity.ParseSpice(before.Word); err != nil && ok && number.Factor+number.Unit+number.Rest == "" {
+				x.remark(RemarkAssumption, c.line.Start(), lv.prefix+c.shown, "read `"+before.Word+" "+w.Word+"` as "+before.Word+w.Word)
+				list[n-1] = &syntax.Atom{Pos: before.Pos, Word: before.Word + w.Word}
+				continue
+			}
+		}
+		list = append(list, w)
+	}
+	return list
+}
+
+// sourceUnits are the units that may stand behind a blank on the card of a source.
+var sourceUnits = words("v mv kv vdc vac vrms vpk a ma ua µa hz khz s ms us µs ns")
 
 // voltageControlled reads E and G: linear, polynomial of one voltage, or a formula.
 func (x *expander) voltageControlled(lv *level, c *elementCard) {

@@ -18,6 +18,7 @@ func TestPracticeOfNames(t *testing.T) {
 		{"? is unconnected, each its own", "t\nV1 a 0 5\nR1 a ? 1\nR2 a ? 2\n", "V1(a 0)=5 R1(a ?1)=1 R2(a ?2)=2", ""},
 		{"blanks round commas in a node list", "t\nV1 a 0 5\nGx a 0 (c ,d) 7m\n", "V1(a 0)=5 Gx(a 0 c d)=*0.007", ""},
 		{"odd designators", "t\nV1 a 0 5\nX§U1 a 0 b LM7812\nR-load a 0 1\nR(PULL)3 a 0 2\nR6.1 a 0 3\nR$1 a 0 4\n", "V1(a 0)=5 U1(a 0 b)=LM7812 R-load(a 0)=1 R(PULL)3(a 0)=2 R6.1(a 0)=3 R$1(a 0)=4", "assumed: U1 its pins are taken in the customary order"},
+		{"a bracket at the end of a designator", "t\nV1 a 0 5\nR(x) a GND 5k1\nSIN(1) a 0 b 0 sw\n", "V1(a 0)=5 R(x)(a 0)=5100 SIN(1)(a 0 b 0)=sw?", ""},
 		{"one-letter designators", "t\nV a 0 5\nC a 0 1u\nL1 a 0 1\nL2 a 0 1\nK L1 L2 1\n", "V(a 0)=5 C(a 0)=1e-06 L1(a 0)=1 L2(a 0)=1 K()=L1-L2*1", ""},
 		{"part and model of one name", "t\nV1 a 0 5\nD1 a 0 d1\n.model d1 D(N=2)\n", "V1(a 0)=5 D1(a 0)=d1[IS=1e-14,N=2,BV=0]", ""},
 		{"duplicate designators are kept apart", "t\nV1 a 0 5\nR1 a 0 1\nr1 a 0 2\nR1 a 0 3\n", "V1(a 0)=5 R1(a 0)=1 r1#2(a 0)=2 R1#3(a 0)=3", "duplicate: this one is called r1#2|duplicate: this one is called R1#3"},

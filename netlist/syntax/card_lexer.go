@@ -51,7 +51,7 @@ func (l *cardTokens) Next() (lexer.Token, error) {
 	if l.at >= len(l.text) {
 		return lexer.EOFToken(pos), nil
 	}
-	kind, size := classifyCard(l.text[l.at:])
+	kind, size := classifyCard(l.text[l.at:], l.at == 0 && l.text[0] != '.')
 	token := lexer.Token{Type: kind, Value: l.text[l.at : l.at+size], Pos: pos}
 	l.at += size
 	return token, nil
@@ -60,7 +60,8 @@ func (l *cardTokens) Next() (lexer.Token, error) {
 // separator reports a blank; non-breaking blanks arrive as U+00A0 and are blanks too where they stand alone.
 func separator(c byte) bool { return c == ' ' || c == '\t' || c == '\v' || c == '\f' || c == 0 }
 
-func classifyCard(text string) (lexer.TokenType, int) {
+// classifyCard measures the token that begins a text; named says that it is the name of an element.
+func classifyCard(text string, named bool) (lexer.TokenType, int) {
 	switch c := text[0]; c {
 	case '(', ')', ',', '=':
 		return cardPunct, 1
@@ -82,7 +83,7 @@ func classifyCard(text string) (lexer.TokenType, int) {
 	case '}':
 		return cardInvalid, 1
 	}
-	return cardWord, wordLength(text)
+	return cardWord, wordLength(text, named)
 }
 
 // closing returns the length of a braced text with its closing brace, 0 if it is not closed.
@@ -103,8 +104,8 @@ func closing(text string) int {
 
 // wordLength measures a word. Names of exports carry parentheses: `Net-(D1-K)`, `R(PULL)3`. A parenthesis
 // belongs to the word if it follows - or / or _ inside it, or if what follows its closing one goes on without
-// a blank; SIN(0 and dc(48) are a keyword and a bracket.
-func wordLength(text string) int {
+// a blank, or if it touches the name of an element: `R(x)`. SIN(0 and dc(48) are a keyword and a bracket.
+func wordLength(text string, named bool) int {
 	for k := 0; k < len(text); k++ {
 		switch text[k] {
 		case ' ', '\t', '\v', '\f', 0, ',', '=', ')', '{', '"', '\'':
@@ -118,7 +119,7 @@ func wordLength(text string) int {
 			}
 			after := k + end + 1
 			glued := after < len(text) && !separator(text[after]) && !strings.ContainsRune(",=(){}'\"", rune(text[after]))
-			if k == 0 || !(strings.ContainsRune("-/_", rune(text[k-1])) || glued) {
+			if k == 0 || !(named || strings.ContainsRune("-/_", rune(text[k-1])) || glued) {
 				return k
 			}
 			k += end
