@@ -17,22 +17,12 @@ func newBasis(s *streams) *cobra.Command {
 		Short: "Print what a check rests on: formula, severity rule, source",
 		Long: `basis without an argument lists the checks. With the name of one it prints its formula, assumptions, severity
 rule and published source. With --policy it prints a derating table with the source of each row.`,
-		Args: cobra.MaximumNArgs(1),
-		ValidArgsFunction: func(*cobra.Command, []string, string) ([]string, cobra.ShellCompDirective) {
-			var names []string
-			for _, c := range report.Catalogue() {
-				names = append(names, c.Name+"\t"+c.Title)
-			}
-			return names, cobra.ShellCompDirectiveNoFileComp
-		},
-		RunE: func(_ *cobra.Command, args []string) error { return runBasis(s, table, args) },
+		Args:              cobra.MaximumNArgs(1),
+		ValidArgsFunction: whileWanted(completeChecks),
+		RunE:              func(_ *cobra.Command, args []string) error { return runBasis(s, table, args) },
 	}
 	c.Flags().StringVar(&table, "policy", "", "print this derating policy, a built-in `NAME` or a CSV file")
-	if err := c.RegisterFlagCompletionFunc("policy", func(*cobra.Command, []string, string) ([]string, cobra.ShellCompDirective) {
-		return policy.Names(), cobra.ShellCompDirectiveDefault
-	}); err != nil {
-		panic(err)
-	}
+	completeFlag(c, "policy", completePolicy)
 	return c
 }
 

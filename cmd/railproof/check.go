@@ -60,7 +60,8 @@ When an input cannot be read, its faults stand on the error stream, no FILE is w
 	c.Flags().BoolVar(&o.newOnly, "new-only", false, "with --baseline: the gate looks at new findings only")
 	c.Flags().BoolVar(&o.proven, "proven", false, "let the text ledger list all that is proven, not the headline checks alone")
 	c.Flags().BoolVar(&o.watch, "watch", false, "check again after each save of a file that is read; Ctrl-C ends, with the status of the last check")
-	completeWords(c, "gate", "critical", "major", "minor", "never")
+	completeFlag(c, "baseline", completeFiles(".json"))
+	completeList(c, "gate", "critical", "major", "minor", "never")
 	return c
 }
 

@@ -23,13 +23,14 @@ func newCompare(s *streams) *cobra.Command {
 		Short: "Tell what a change did: new, cleared, better, worse",
 		Long: `compare takes two reports of check --format json. The gate looks only at what is new or worse: the status is 1
 if a violation at or above the gate is, and 3 if a headline check is newly unproven.`,
-		Args: cobra.ExactArgs(2),
-		RunE: func(_ *cobra.Command, args []string) error { return runCompare(s, &o, args[0], args[1]) },
+		Args:              cobra.ExactArgs(2),
+		ValidArgsFunction: whileWanted(completeFiles(".json")),
+		RunE:              func(_ *cobra.Command, args []string) error { return runCompare(s, &o, args[0], args[1]) },
 	}
 	o.outputFlags.add(c, report.ComparisonFormats())
 	c.Flags().StringVar(&o.gate, "gate", report.DefaultGate, "severities that stop: `LIST` of critical, major, minor, or never; graver ones are implied")
 	c.Flags().BoolVar(&o.allowUnproven, "allow-unproven", false, "let the gate pass while headline checks are newly unproven")
-	completeWords(c, "gate", "critical", "major", "minor", "never")
+	completeList(c, "gate", "critical", "major", "minor", "never")
 	return c
 }
 

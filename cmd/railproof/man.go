@@ -26,9 +26,7 @@ that folder to be named man1. The pages carry the version and no date: the same 
 			}
 			return writeManual(c.Root(), args[0])
 		},
-		ValidArgsFunction: func(*cobra.Command, []string, string) ([]string, cobra.ShellCompDirective) {
-			return nil, cobra.ShellCompDirectiveFilterDirs
-		},
+		ValidArgsFunction: whileWanted(completeFolders),
 	}
 }
 

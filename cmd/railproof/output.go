@@ -25,7 +25,7 @@ type target struct{ format, file string }
 func (o *outputFlags) add(c *cobra.Command, formats []string) {
 	c.Flags().StringArrayVarP(&o.formats, "format", "f", nil, "`FORMAT` or FORMAT=FILE, repeatable: "+strings.Join(formats, ", "))
 	c.Flags().StringVarP(&o.file, "output", "o", "", "write the one format to `FILE` instead of the standard output")
-	completeWords(c, "format", formats...)
+	completeFlag(c, "format", completeFormat(formats))
 }
 
 // targets reads the flags; known are the formats of the verb, the default first.

@@ -17,17 +17,12 @@ func newParts(s *streams) *cobra.Command {
 		Short: "Print the built-in ratings, each with its source",
 		Long: `parts without an argument lists the types. With a type, in any spelling a netlist may use, it prints the row that
 the type is recognised as: every rating with its condition, its source, and whether it was read there or is from memory.`,
-		Args: cobra.MaximumNArgs(1),
-		ValidArgsFunction: func(*cobra.Command, []string, string) ([]string, cobra.ShellCompDirective) {
-			var names []string
-			for _, row := range parts.Default().Rows() {
-				names = append(names, row.Type+"\t"+row.Kind)
-			}
-			return names, cobra.ShellCompDirectiveNoFileComp
-		},
-		RunE: func(_ *cobra.Command, args []string) error { return runParts(s, file, args) },
+		Args:              cobra.MaximumNArgs(1),
+		ValidArgsFunction: whileWanted(completeParts),
+		RunE:              func(_ *cobra.Command, args []string) error { return runParts(s, file, args) },
 	}
 	c.Flags().StringVar(&file, "parts", "", "ratings of your own, a CSV `FILE`")
+	completeFlag(c, "parts", completeFiles(".csv"))
 	return c
 }
 

@@ -63,10 +63,3 @@ or a part of the circuit unsolved. Over several files the gravest wins: 2, then 
 	root.AddCommand(newSize(s))
 	return root
 }
-
-// completeWords offers words for a flag to the shell.
-func completeWords(c *cobra.Command, flag string, words ...string) {
-	if err := c.RegisterFlagCompletionFunc(flag, cobra.FixedCompletions(words, cobra.ShellCompDirectiveNoFileComp)); err != nil {
-		panic(err) // a flag that does not exist
-	}
-}

@@ -29,10 +29,12 @@ func (f *sourceFlags) add(c *cobra.Command) {
 	c.Flags().StringVar(&f.parts, "parts", "", "ratings of your own, a CSV `FILE` with the columns of the built-in tables")
 	c.Flags().StringArrayVar(&f.include, "include", nil, "`DIR` in which included files are looked for, repeatable")
 	c.Flags().IntVar(&f.jobs, "jobs", 0, "how much is solved at once (default: one a core)")
-	if err := c.RegisterFlagCompletionFunc("policy", func(*cobra.Command, []string, string) ([]string, cobra.ShellCompDirective) {
-		return policy.Names(), cobra.ShellCompDirectiveDefault
-	}); err != nil {
-		panic(err)
+	completeFlag(c, "policy", completePolicy)
+	completeFlag(c, "duty", completeFiles(".duty"))
+	completeFlag(c, "parts", completeFiles(".csv"))
+	completeFlag(c, "include", completeFolders)
+	if c.ValidArgsFunction == nil {
+		c.ValidArgsFunction = whileWanted(completeFiles(netlistEndings...))
 	}
 }
 
