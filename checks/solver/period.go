@@ -37,6 +37,7 @@ type march struct {
 	leaped       bool      // the last step extrapolated far, see longLeap
 	scale        []float64 // natural size of each state
 
+	unknowns      []float64 // for sampling
 	before        []float64 // x, and the port currents, at the start of the step
 	currentBefore []float64
 	flowBefore    []float64
@@ -49,7 +50,8 @@ func newMarch(sys *system, step float64) (*march, error) {
 	}
 	m := sys.states()
 	a := &march{
-		sys: sys, step: step, stage: newStage(r),
+		unknowns: make([]float64, sys.unknowns),
+		sys:      sys, step: step, stage: newStage(r),
 		x: make([]float64, m), x1: make([]float64, m), pred: make([]float64, m),
 		u: make([]float64, len(sys.sources)), spare: make([]float64, m), spareInputs: make([]float64, len(sys.sources)), flow: newDense(m, m), work: newDense(m, m),
 		before: make([]float64, m), currentBefore: make([]float64, len(sys.ports)), flowBefore: make([]float64, m*m),
@@ -212,18 +214,31 @@ func (a *march) cutStep(t float64, track bool) error {
 	return nil
 }
 
-// period integrates over steps steps from time start. With track, flow becomes the monodromy matrix.
-func (a *march) period(ctx context.Context, start float64, steps int, track bool) error {
+// period integrates over steps steps from time start. With track, flow becomes the monodromy matrix; with keep, every
+// unknown at every step goes into a trajectory, whose first sample is taken to be its last.
+func (a *march) period(ctx context.Context, start float64, steps int, track bool, into *Trajectory, keep bool) error {
 	if track {
 		identity(a.flow)
+	}
+	if keep {
+		into.forget()
+		a.onJump = a.keepJump(into, a.unknowns)
+		defer func() { a.onJump = nil }()
 	}
 	for k := range steps {
 		if k&63 == 0 && ctx.Err() != nil {
 			return ctx.Err()
 		}
+		a.sampleNumber = k + 1
 		if err := a.advance(start+float64(k)*a.step, track); err != nil {
 			return err
 		}
+		if keep {
+			a.sample(into, k+1, a.unknowns)
+		}
+	}
+	if keep {
+		into.close()
 	}
 	return nil
 }

@@ -34,19 +34,37 @@ type search struct {
 	steps   int
 	scale   []float64
 	periods int // integrated so far
+	// enough is the size of the last Newton step, in units of the bounds above, at which the search ends.
+	enough float64
 }
 
-// settle finds the state from which a period returns to itself, starting at x (overwritten).
-// It returns the number of periods integrated.
-func (s *search) settle(ctx context.Context, x []float64, plain int) error {
+// asRecorded is the size of a Newton step, in the same units, below which the period before it is the solution. A step
+// between it and 1 is followed by one more: a reservoir that hardly anything loads turns a small change of its voltage
+// into a large one of its ripple current. roughly is enough for a solution on one grid, which proves nothing by itself.
+const (
+	asRecorded = 1e-2
+	roughly    = 10
+)
+
+// worthKeeping is the size of a Newton step, in units of the bound that ends the search, below which the next period
+// is likely to be the last, so that it is recorded.
+const worthKeeping = 1e5
+
+// settle finds the state from which a period returns to itself, starting at x (overwritten), and returns that period.
+func (s *search) settle(ctx context.Context, x []float64, plain int) (*Trajectory, error) {
 	n := len(x)
 	residual := make([]float64, n)
-	best, worse := math.Inf(1), 0
+	best, worse, size := math.Inf(1), 0, math.Inf(1)
+	var kept *Trajectory
 	for s.periods < maxPeriods && s.periods*s.steps < maxSteps {
 		track := plain <= 0
 		copy(s.m.x, x)
-		if err := s.m.period(ctx, 0, s.steps, track); err != nil {
-			return err
+		record := track && size < worthKeeping || n == 0
+		if record && kept == nil {
+			kept = newTrajectory(s.m.sys.net, 0, s.m.step, s.steps+1)
+		}
+		if err := s.m.period(ctx, 0, s.steps, track, kept, record); err != nil {
+			return nil, err
 		}
 		s.periods++
 		norm := 0.0
@@ -55,10 +73,10 @@ func (s *search) settle(ctx context.Context, x []float64, plain int) error {
 			norm = math.Max(norm, math.Abs(residual[k])/(s.scale[k]*absoluteState+relativeState*math.Abs(x[k])))
 		}
 		if n == 0 {
-			return nil
+			return kept, nil
 		}
 		if math.IsNaN(norm) {
-			return ErrUnsettled
+			return nil, ErrUnsettled
 		}
 		if !track {
 			plain--
@@ -81,16 +99,17 @@ func (s *search) settle(ctx context.Context, x []float64, plain int) error {
 			plain = 1
 			continue
 		}
-		size := 0.0
+		before := size
+		size = 0
 		for k := range x {
 			size = math.Max(size, math.Abs(step[k])/(s.scale[k]*absoluteState+relativeState*math.Abs(x[k])))
 			x[k] += step[k]
 		}
-		if size < 1 {
-			return nil
+		if record && (size < s.enough || size < 1 && before < 1) {
+			return kept, nil
 		}
 	}
-	return fmt.Errorf("%w in %d periods", ErrUnsettled, s.periods)
+	return nil, fmt.Errorf("%w in %d periods", ErrUnsettled, s.periods)
 }
 
 // newton solves (I - flow) step = residual in the scaled states; neutral directions get no step.

@@ -14,6 +14,8 @@ type Options struct {
 	// Start holds the states at the start of the period of a neighbouring solution (Solution.States), from
 	// which the search may start; nil or of another length: ignored.
 	Start []float64
+	// OneGrid solves on the first grid alone: Coarse is then Fine, and nothing says how accurate it is.
+	OneGrid bool
 }
 
 const (
@@ -87,9 +89,12 @@ func SteadyState(ctx context.Context, n *Network, o Options) (*Solution, error) 
 		plain = 0
 	}
 	sol := &Solution{}
-	differs := ""
+	differs, enough := "", asRecorded
+	if o.OneGrid {
+		enough = roughly
+	}
 	for steps := o.Steps; steps <= o.MaxSteps; steps *= 2 {
-		tr, err := sol.grid(ctx, sys, x, steps, plain)
+		tr, err := sol.grid(ctx, sys, x, steps, plain, enough)
 		if err != nil {
 			if (errors.Is(err, ErrNewton) || errors.Is(err, ErrUnsettled)) && steps*2 <= o.MaxSteps && sol.Fine == nil && steps < 4*o.Steps {
 				// A finer step may carry Newton's method over what a coarse one could not.
@@ -103,6 +108,10 @@ func SteadyState(ctx context.Context, n *Network, o Options) (*Solution, error) 
 		}
 		sol.Coarse, sol.Fine = sol.Fine, tr
 		plain = 0
+		if o.OneGrid {
+			sol.Coarse, sol.States = tr, append(sol.States[:0], x...)
+			return sol, nil
+		}
 		if sol.Coarse == nil {
 			continue
 		}
@@ -120,30 +129,25 @@ func SteadyState(ctx context.Context, n *Network, o Options) (*Solution, error) 
 }
 
 // grid solves on one grid, from state x, which it moves to the solution.
-func (s *Solution) grid(ctx context.Context, sys *system, x []float64, steps, plain int) (*Trajectory, error) {
+func (s *Solution) grid(ctx context.Context, sys *system, x []float64, steps, plain int, enough float64) (*Trajectory, error) {
 	m, err := newMarch(sys, sys.net.Period/float64(steps))
 	if err != nil {
 		return nil, err
 	}
-	find := &search{m: m, steps: steps, scale: sys.stateScale()}
-	err = find.settle(ctx, x, plain)
+	find := &search{m: m, steps: steps, scale: sys.stateScale(), enough: enough}
+	tr, err := find.settle(ctx, x, plain)
 	s.Periods += find.periods
 	s.Iterations += m.stage.iterations
 	if err != nil {
 		return nil, err
 	}
-	tr, err := m.record(ctx, 0, steps, false)
-	if err != nil {
-		return nil, err
-	}
-	s.Periods++
 	if sys.centre(m, tr) {
 		if tr, err = m.record(ctx, 0, steps, false); err != nil {
 			return nil, err
 		}
 		s.Periods++
+		copy(x, m.x)
 	}
-	copy(x, m.x)
 	tr.Periodic = true
 	return tr, nil
 }
@@ -196,6 +200,15 @@ func (s *Solution) disagreement(n *Network) string {
 				{"RMS current", i1.RMS, i0.RMS, CurrentTolerance*i1.RMS + floor, false},
 				{"mean current", i1.Mean, i0.Mean, VoltageTolerance*i1.RMS + floor, true},
 				{"mean power", p1, p0, VoltageTolerance*v1.RMS*i1.RMS + powerFloor, true},
+			}
+			if n.devices[d].kind == capacitor {
+				// The crest and the trough themselves are wanted, and no kink may hide more of them.
+				for _, e := range [][2]Extreme{{v1.Max, v0.Max}, {v1.Min, v0.Min}} {
+					tolerance := VoltageTolerance*(math.Abs(e[0].Value)+0.1*size) + voltageFloor
+					if differ(e[0].Value, e[1].Value, tolerance) || e[0].Doubt > tolerance {
+						return fmt.Sprintf("extreme voltage of device %d: %.6g, then %.6g, within %.2g", d, e[1].Value, e[0].Value, e[0].Doubt)
+					}
+				}
 			}
 			for _, c := range compare {
 				if n.devices[d].kind == capacitor && c.onCharge {

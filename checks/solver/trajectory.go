@@ -32,6 +32,34 @@ type jump struct {
 // maxJumps is how many jumps a trajectory keeps.
 const maxJumps = 64
 
+// forget drops the jumps of an earlier recording.
+func (tr *Trajectory) forget() {
+	tr.jumps = tr.jumps[:0]
+	for k := range tr.Nodes {
+		tr.Nodes[k] = tr.Nodes[k][:tr.samples]
+	}
+	for k := range tr.Currents {
+		tr.Currents[k] = tr.Currents[k][:tr.samples]
+	}
+	for d := range tr.flux {
+		tr.flux[d] = tr.flux[d][:tr.samples]
+	}
+}
+
+// close makes the first sample the last one, as they are in the periodic steady state.
+func (tr *Trajectory) close() {
+	last := tr.samples - 1
+	for k := range tr.Nodes {
+		tr.Nodes[k][0] = tr.Nodes[k][last]
+	}
+	for k := range tr.Currents {
+		tr.Currents[k][0] = tr.Currents[k][last]
+	}
+	for d := range tr.flux {
+		tr.flux[d][0] = tr.flux[d][last]
+	}
+}
+
 // extend makes room for one more column behind the samples and returns its number, -1 if there is none left.
 func (tr *Trajectory) extend() int {
 	column := len(tr.Nodes[0])
@@ -179,9 +207,6 @@ func (a *march) sample(tr *Trajectory, k int, z []float64) {
 	}
 }
 
-// Extreme is a largest or smallest value and when it occurs.
-type Extreme struct{ Value, At float64 }
-
 // Stats summarises a sampled signal over its interval.
 type Stats struct {
 	Max, Min  Extreme
@@ -196,11 +221,11 @@ func (s Stats) Ripple() float64 { return math.Sqrt(math.Max(0, s.RMS*s.RMS-s.Mea
 const tie = 1e-7
 
 // Summary computes the statistics of a signal; value(k) is its sample k. Means are by the trapezoidal rule,
-// which for a periodic signal is also the most accurate; extrema inside the interval are refined by the
-// parabola through the three samples around them.
+// which for a periodic signal is also the most accurate; extrema are looked
+// for between the samples too, see refine.
 func (tr *Trajectory) Summary(value func(k int) float64) Stats {
 	n := tr.Samples()
-	st := Stats{Max: Extreme{math.Inf(-1), 0}, Min: Extreme{math.Inf(1), 0}}
+	st := Stats{Max: Extreme{Value: math.Inf(-1)}, Min: Extreme{Value: math.Inf(1)}}
 	maxAt, minAt := 0, 0
 	for k := range n {
 		v := value(k)
@@ -218,9 +243,9 @@ func (tr *Trajectory) Summary(value func(k int) float64) Stats {
 	for _, j := range tr.jumps {
 		at := tr.Start + (float64(j.sample-1)+j.share)*tr.Step
 		if v := value(j.column); v > st.Max.Value {
-			st.Max = Extreme{v, at}
+			st.Max = Extreme{Value: v, At: at}
 		} else if v < st.Min.Value {
-			st.Min = Extreme{v, at}
+			st.Min = Extreme{Value: v, At: at}
 		}
 	}
 	return st
@@ -249,29 +274,6 @@ func (tr *Trajectory) integrate(value func(k int) float64) (mean, square float64
 		last = v
 	}
 	return mean / float64(n-1), square / float64(n-1)
-}
-
-// refine returns the vertex of the parabola through samples k-1, k, k+1 where k holds an extremum, if the
-// curvature there is that of a smooth crest: about the same one sample earlier and later. At a kink, where a
-// diode starts or stops to conduct, the sample itself is the extremum.
-func (tr *Trajectory) refine(value func(k int) float64, k int) Extreme {
-	e := Extreme{value(k), tr.Start + float64(k)*tr.Step}
-	last := tr.Samples() - 1
-	if last < 4 || !tr.Periodic && (k < 2 || k > last-2) {
-		return e
-	}
-	sample := func(j int) float64 { return value((k + j + last) % last) }
-	a, b, c := sample(-1), e.Value, sample(1)
-	curve := a - 2*b + c
-	before, after := sample(-2)-2*a+b, b-2*c+sample(2)
-	if curve == 0 || before/curve < 0.3 || before/curve > 3 || after/curve < 0.3 || after/curve > 3 {
-		return e
-	}
-	shift := 0.5 * (a - c) / curve
-	if math.Abs(shift) > 1 {
-		return e
-	}
-	return Extreme{b - 0.25*(a-c)*shift, e.At + shift*tr.Step}
 }
 
 // Mean returns the mean of a signal over the interval.

@@ -34,10 +34,9 @@ func (p *Plan) Assumptions() []Assumption {
 			}
 		}
 	}
-	for _, q := range p.Parameters {
-		if q.Origin == "common practice" {
-			name := c.Elements[q.Element].Name
-			list = append(list, Assumption{name + " tolerance", fmt.Sprintf("%+.3g %%..%+.3g %%", 100*q.Low, 100*q.High), q.Origin})
+	for k, q := range p.Parameters {
+		if a, ok := p.toleranceAssumed(k, q); ok {
+			list = append(list, a)
 		}
 	}
 	for k := range c.Elements {
@@ -66,6 +65,17 @@ func (p *Plan) Assumptions() []Assumption {
 		}
 	}
 	return list
+}
+
+// toleranceAssumed is the assumption behind a tolerance that nobody stated.
+func (p *Plan) toleranceAssumed(k int, q Parameter) (Assumption, bool) {
+	switch {
+	case q.Symbol == symbolAmbient:
+		return Assumption{"junctions", "as cold and as warm as the ambient, their forward law moved with it", "EG 1.11 eV and XTI 3, a metal barrier 0.69 eV and 2 (from memory)"}, true
+	case strings.Contains(q.Origin, byPractice), strings.Contains(q.Origin, "memory"):
+		return Assumption{p.ParameterName(k) + " tolerance", fmt.Sprintf("%+.3g %%..%+.3g %%", 100*q.Low, 100*q.High), q.Origin}, true
+	}
+	return Assumption{}, false
 }
 
 func word(name string) string {

@@ -3,16 +3,27 @@ package study
 import (
 	"context"
 	"math"
+
+	"railproof/netlist/quantity"
 )
 
 // Extreme value analysis: every toleranced parameter at the end that is bad for the stress in question (the
 // method and its pessimism: RIAC, worst case circuit analysis). For each base condition that is the worst of
-// some stress, each parameter is moved to both ends alone; the signs of the changes give the corner for each
-// stress, and every distinct corner is solved. Parameters of different islands do not influence one another,
+// some stress, each parameter is moved to both ends alone; the signs of the changes give the vertex for each
+// stress, and every distinct vertex is solved. Where the changes do not add up there, the signs are taken again
+// around the vertex, until they no longer change. Parameters of different islands do not influence one another,
 // so they are moved together: the cost grows with the largest island, not with their number.
 
-// indifferent is the relative change of a stress below which a parameter does not count for it.
-const indifferent = 1e-4
+const (
+	// indifferent is the relative change of a stress below which a parameter does not count for it.
+	indifferent = 1e-4
+	// additive and resolved: a vertex may miss the sum of all single changes by this part of it and this part of the
+	// stress itself, the accuracy of one grid, before the signs are taken again.
+	additive = 0.05
+	resolved = 1e-3
+	// maxRounds bounds how often signs are taken again.
+	maxRounds = 3
+)
 
 // corners is the analysis around one base condition.
 type corners struct {
@@ -20,31 +31,50 @@ type corners struct {
 	table   *Table
 	base    *outcome
 	warm    states
-	island  []int   // of each parameter
-	columns [][]int // columns[j] lists the j-th parameter of each island
-	rank    []int   // parameter -> its j
+	columns [][]int       // columns[j] lists the j-th parameter of each island, or one parameter of the whole supply
+	rank    []int         // parameter -> its column
+	affect  map[int][]int // island -> the parameters that may influence it
 }
 
 func newCorners(p *Plan, t *Table, base *outcome) *corners {
-	c := &corners{plan: p, table: t, base: base, warm: states{}}
-	for i := range base.islands {
-		if s := base.islands[i].solution; s != nil {
-			c.warm[i] = s.States
+	c := &corners{plan: p, table: t, base: base, warm: base.states(), rank: make([]int, len(p.Parameters)), affect: map[int][]int{}}
+	var wide []int
+	for k, q := range p.Parameters {
+		if q.Element == supplyWide {
+			wide = append(wide, k)
+			c.rank[k] = len(c.columns)
+			c.columns = append(c.columns, []int{k})
 		}
 	}
-	count := map[int]int{}
+	first := len(c.columns)
 	for k, q := range p.Parameters {
-		i := t.islands[q.Element]
-		c.island = append(c.island, i)
-		j := count[i]
-		count[i]++
-		c.rank = append(c.rank, j)
+		if q.Element == supplyWide {
+			continue
+		}
+		i := p.islands[q.Element]
+		if c.affect[i] == nil {
+			c.affect[i] = append([]int(nil), wide...)
+		}
+		j := first + len(c.affect[i]) - len(wide)
+		c.affect[i] = append(c.affect[i], k)
+		c.rank[k] = j
 		for len(c.columns) <= j {
 			c.columns = append(c.columns, nil)
 		}
 		c.columns[j] = append(c.columns[j], k)
 	}
 	return c
+}
+
+// states are the periodic states of an outcome, from which a neighbouring setting may start.
+func (o *outcome) states() states {
+	warm := states{}
+	for i := range o.islands {
+		if s := o.islands[i].solution; s != nil {
+			warm[i] = s.States
+		}
+	}
+	return warm
 }
 
 // shifted is the base setting with some parameters moved.
@@ -54,9 +84,11 @@ func (c *corners) shifted(shift []float64) Setting {
 	return set
 }
 
-// readings indexes the stresses of a settled outcome.
-func readings(out *outcome) map[tableKey]*Stress {
-	m := make(map[tableKey]*Stress, len(out.read))
+type readings map[tableKey]*Stress
+
+// readingsOf indexes the stresses of a settled outcome.
+func readingsOf(out *outcome) readings {
+	m := make(readings, len(out.read))
 	for k := range out.read {
 		s := &out.read[k]
 		m[tableKey{s.Element, s.Quantity}] = s
@@ -64,121 +96,231 @@ func readings(out *outcome) map[tableKey]*Stress {
 	return m
 }
 
-// solve finds the corners for the given stresses and merges their outcomes into the table.
-func (c *corners) solve(ctx context.Context, keys []tableKey, jobs int) {
-	settings := make([]Setting, 0, 2*len(c.columns))
-	for _, column := range c.columns {
-		for _, end := range []float64{-1, 1} {
-			shift := make([]float64, len(c.plan.Parameters))
-			for _, k := range column {
-				shift[k] = end
-			}
-			settings = append(settings, c.shifted(shift))
-		}
-	}
-	nominal := readings(c.base)
-	moved := make([]map[tableKey]*Stress, len(settings))
-	outcomes := make([]*outcome, len(settings))
-	inParallel(len(settings), jobs, func(k int) {
-		outcomes[k] = c.plan.settle(c.plan.solve(ctx, settings[k], c.warm))
-		moved[k] = readings(outcomes[k])
-	})
-	for _, out := range outcomes {
-		c.table.take(out)
-	}
+// vertex is a combination of ends with the stresses it is meant to be the worst of.
+type vertex struct {
+	shift []float64
+	fixed []bool // parameters whose position counts for one of the stresses
+	keys  []tableKey
+	found readings
+}
 
-	// The corner of each stress, as signs of the parameters of its island; 0 where it does not care.
-	perIsland := map[int][][]float64{}
-	for _, key := range keys {
-		island, ok := c.table.home[key.element]
-		if !ok || island < 0 {
-			continue
-		}
-		at, ok := nominal[key]
-		if !ok || math.IsNaN(at.Value) {
-			continue
-		}
-		signs := make([]float64, len(c.plan.Parameters))
-		for k := range signs {
-			if c.island[k] != island {
-				continue
-			}
-			low, high := moved[2*c.rank[k]][key], moved[2*c.rank[k]+1][key]
-			signs[k] = badEnd(at, low, high)
-		}
-		perIsland[island] = addCorner(perIsland[island], signs)
-	}
-	most := 0
-	for _, list := range perIsland {
-		most = max(most, len(list))
-	}
-	settings = settings[:0]
-	for m := range most {
-		shift := make([]float64, len(c.plan.Parameters))
-		for k := range shift {
-			if list := perIsland[c.island[k]]; m < len(list) {
-				shift[k] = list[m][k]
+// solve finds the vertices for the given stresses and merges their outcomes into the table.
+func (c *corners) solve(ctx context.Context, keys []tableKey, jobs int) {
+	at := c.vertex()
+	at.keys, at.found = keys, readingsOf(c.base)
+	open := c.next(ctx, []*vertex{at}, jobs)
+	for round := 1; len(open) > 0 && round <= maxRounds && ctx.Err() == nil; round++ {
+		outcomes := make([]*outcome, len(open))
+		inParallel(len(open), jobs, func(k int) {
+			outcomes[k] = c.plan.settle(c.plan.solve(ctx, c.shifted(open[k].vertex.shift), c.warm))
+		})
+		var doubtful []*vertex
+		for k, out := range outcomes {
+			c.table.take(out)
+			v := open[k]
+			v.vertex.found = readingsOf(out)
+			if v.doubtful() {
+				doubtful = append(doubtful, v.vertex)
 			}
 		}
-		settings = append(settings, c.shifted(shift))
-	}
-	outcomes = make([]*outcome, len(settings))
-	inParallel(len(settings), jobs, func(k int) { outcomes[k] = c.plan.settle(c.plan.solve(ctx, settings[k], c.warm)) })
-	for _, out := range outcomes {
-		c.table.take(out)
+		open = c.next(ctx, doubtful, jobs)
 	}
 }
 
-// badEnd says at which end of a parameter a stress is worst: -1, 1, or 0 if neither end is worse.
-func badEnd(at, low, high *Stress) float64 {
-	threshold := indifferent * math.Abs(at.Value)
+func (c *corners) vertex() *vertex {
+	return &vertex{shift: make([]float64, len(c.plan.Parameters)), fixed: make([]bool, len(c.plan.Parameters))}
+}
+
+// proposal is a vertex with what single changes promise there for each of its stresses.
+type proposal struct {
+	vertex    *vertex
+	promised  []float64 // by key
+	movements []float64 // by key, the sum of the magnitudes of the single changes
+}
+
+// doubtful keeps the stresses for which the vertex does not hold what the single changes promised.
+func (p *proposal) doubtful() bool {
+	var keys []tableKey
+	for k, key := range p.vertex.keys {
+		s, ok := p.vertex.found[key]
+		if !ok || math.IsNaN(s.Value) {
+			continue
+		}
+		if math.Abs(s.Value-p.promised[k]) > additive*p.movements[k]+resolved*math.Abs(s.Value)+trifle(s.Unit) {
+			keys = append(keys, key)
+		}
+	}
+	p.vertex.keys = keys
+	return len(keys) > 0
+}
+
+// next moves every parameter alone around each vertex and proposes the vertices that its stresses then ask for, those
+// already solved left out.
+func (c *corners) next(ctx context.Context, around []*vertex, jobs int) []*proposal {
+	type probe struct {
+		vertex, column int
+		end            float64
+	}
+	var probes []probe
+	for v, at := range around {
+		wanted := c.wanted(at)
+		for j, column := range c.columns {
+			if !wanted[j] {
+				continue
+			}
+			for _, end := range []float64{-1, 1} {
+				if !c.isAt(at, column, end) {
+					probes = append(probes, probe{v, j, end})
+				}
+			}
+		}
+	}
+	moved := make([]readings, len(probes))
+	inParallel(len(probes), jobs, func(k int) {
+		p := probes[k]
+		shift := append([]float64(nil), around[p.vertex].shift...)
+		for _, q := range c.columns[p.column] {
+			shift[q] = p.end
+		}
+		moved[k] = readingsOf(c.plan.settle(c.plan.probe(ctx, c.shifted(shift), c.warm)))
+	})
+	type at struct{ vertex, column, end int }
+	where := map[at]readings{}
+	for k, p := range probes {
+		where[at{p.vertex, p.column, int(p.end)}] = moved[k]
+	}
+	var list []*proposal
+	for v, from := range around {
+		reference := from.found
+		if len(probes) > 0 {
+			reference = c.probed(ctx, from)
+		}
+		for _, key := range from.keys {
+			home, ok := c.table.home[key.element]
+			now := reference[key]
+			if !ok || home < 0 || now == nil || math.IsNaN(now.Value) {
+				continue
+			}
+			ends := map[int]float64{}
+			promised, movement := from.found[key].Value, 0.0
+			for _, k := range c.affect[home] {
+				low, high := where[at{v, c.rank[k], -1}][key], where[at{v, c.rank[k], 1}][key]
+				end, matters := badEnd(now, low, high)
+				switch {
+				case !matters:
+					continue
+				case end == 0:
+					ends[k] = from.shift[k]
+					continue
+				}
+				ends[k] = end
+				to := high
+				if end < 0 {
+					to = low
+				}
+				promised += to.Value - now.Value
+				movement += math.Abs(to.Value - now.Value)
+			}
+			if movement > 0 {
+				list = c.propose(list, key, ends, promised, movement)
+			}
+		}
+	}
+	return list
+}
+
+// probed reads the vertex itself by the same short way as its neighbours, so that what is left of the numerical error
+// cancels in the differences.
+func (c *corners) probed(ctx context.Context, v *vertex) readings {
+	return readingsOf(c.plan.settle(c.plan.probe(ctx, c.shifted(v.shift), c.warm)))
+}
+
+// wanted says which columns hold a parameter that may influence a stress of the vertex.
+func (c *corners) wanted(v *vertex) []bool {
+	wanted := make([]bool, len(c.columns))
+	seen := map[int]bool{}
+	for _, key := range v.keys {
+		home, ok := c.table.home[key.element]
+		if !ok || seen[home] {
+			continue
+		}
+		seen[home] = true
+		for _, k := range c.affect[home] {
+			wanted[c.rank[k]] = true
+		}
+	}
+	return wanted
+}
+
+// isAt reports whether a vertex has every parameter of a column at an end.
+func (c *corners) isAt(v *vertex, column []int, end float64) bool {
+	for _, k := range column {
+		if v.shift[k] != end {
+			return false
+		}
+	}
+	return true
+}
+
+// propose adds a stress to a vertex that its ends do not contradict, or to a new one.
+func (c *corners) propose(list []*proposal, key tableKey, ends map[int]float64, promised, movement float64) []*proposal {
+next:
+	for _, p := range list {
+		for k, end := range ends {
+			if p.vertex.fixed[k] && p.vertex.shift[k] != end {
+				continue next
+			}
+		}
+		p.add(key, ends, promised, movement)
+		return list
+	}
+	p := &proposal{vertex: c.vertex()}
+	p.add(key, ends, promised, movement)
+	return append(list, p)
+}
+
+func (p *proposal) add(key tableKey, ends map[int]float64, promised, movement float64) {
+	for k, end := range ends {
+		p.vertex.shift[k], p.vertex.fixed[k] = end, true
+	}
+	p.vertex.keys = append(p.vertex.keys, key)
+	p.promised = append(p.promised, promised)
+	p.movements = append(p.movements, movement)
+}
+
+// badEnd says at which end of a parameter a stress is worst: -1, 1, or 0 if where it is now is the worst; matters is
+// false if it changes too little at either end to count.
+func badEnd(at, low, high *Stress) (end float64, matters bool) {
+	threshold := indifferent*math.Abs(at.Value) + trifle(at.Unit)
 	gain := func(s *Stress) float64 {
-		if s == nil {
+		if s == nil || math.IsNaN(s.Value) {
 			return 0
 		}
-		d := s.Value - at.Value
 		if smallerIsWorse[at.Quantity] {
-			d = -d
+			return at.Value - s.Value
 		}
-		if math.IsNaN(d) {
-			return 0
-		}
-		return d
+		return s.Value - at.Value
 	}
 	l, h := gain(low), gain(high)
 	switch {
 	case l > threshold && l >= h:
-		return -1
+		return -1, true
 	case h > threshold:
-		return 1
+		return 1, true
 	}
-	return 0
+	return 0, l < -threshold || h < -threshold
 }
 
-// addCorner adds a corner to a list, merged with one that it does not contradict.
-func addCorner(list [][]float64, signs []float64) [][]float64 {
-	moved := false
-	for _, s := range signs {
-		moved = moved || s != 0
+// trifle is a change too small to count beside any rating of a supply: a tenth of a millivolt, a microampere, a
+// microwatt.
+func trifle(u quantity.Unit) float64 {
+	switch u {
+	case quantity.Volt:
+		return 1e-4
+	case quantity.Ampere, quantity.Watt:
+		return 1e-6
 	}
-	if !moved {
-		return list
-	}
-next:
-	for _, old := range list {
-		for k, s := range signs {
-			if s != 0 && old[k] != 0 && s != old[k] {
-				continue next
-			}
-		}
-		for k, s := range signs {
-			if s != 0 {
-				old[k] = s
-			}
-		}
-		return list
-	}
-	return append(list, signs)
+	return 0
 }
 
 // tolerances adds the extreme value analysis around every base outcome that is the worst of some stress.

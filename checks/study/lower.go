@@ -40,7 +40,7 @@ func (s *Supply) lower(set *Setting, plan *Plan) (*lowered, error) {
 		net: solver.New(len(c.Nodes)), devices: make([]solver.Device, len(c.Elements)),
 		regulators: map[netlist.ElementID]solver.Regulator{}, blocked: map[solver.Device]string{},
 	}
-	low.net.Period = plan.period
+	low.net.Period = plan.period / plan.factor(set, supplyWide, symbolFrequency)
 	for k := range low.devices {
 		low.devices[k] = none
 	}
@@ -126,7 +126,7 @@ func (low *lowered) add(s *Supply, id netlist.ElementID, e *netlist.Element, set
 	case netlist.Diode:
 		dev = n.AddDiode(at(0), at(1), s.diode(id, &d, set, plan))
 	case netlist.Transistor:
-		dev = n.AddBipolar(at(0), at(1), at(2), s.bipolar(&d))
+		dev = n.AddBipolar(at(0), at(1), at(2), s.bipolar(&d, shift(symbolGain), plan.temperature(set)))
 	case netlist.Fet:
 		bulk := at(3)
 		if len(e.Nodes) < 4 {
@@ -202,7 +202,7 @@ func (low *lowered) voltageSource(s *Supply, id netlist.ElementID, e *netlist.El
 		if sine, ok := wave.(netlist.Sine); ok {
 			sine.Amplitude = math.Copysign(math.Sqrt2*w.Voltage*(1+w.Regulation), sine.Amplitude)
 			wave = sine
-			ohms += w.Voltage * w.Regulation / w.Current
+			ohms += w.Voltage * w.Regulation / w.Current * plan.factor(set, id, symbolWinding)
 		}
 	}
 	if _, fed := plan.lines[id]; fed && set.LineOff {

@@ -19,7 +19,8 @@ const breakdownSlope = 1.0
 // diode returns the law of a diode: its model card, else the forward law of its row, else the defaults;
 // with the breakdown of its zener voltage where the card states none.
 func (s *Supply) diode(id netlist.ElementID, d *netlist.Diode, set *Setting, plan *Plan) solver.Diode {
-	vt := solver.ThermalVoltage(s.Circuit.Temperature)
+	celsius := plan.temperature(set)
+	vt := solver.ThermalVoltage(celsius)
 	law := solver.Diode{IS: defaultIS, N: defaultN, VT: vt, NBV: 1}
 	row := s.rows[id]
 	if d.Model != nil {
@@ -43,13 +44,14 @@ func (s *Supply) diode(id netlist.ElementID, d *netlist.Diode, set *Setting, pla
 			}
 		}
 	}
+	law.IS = saturation(law.IS, law.N, s.Circuit.Temperature, celsius)
 	if law.BV > 0 {
-		law.BV *= plan.factor(set, id, "VZ")
+		law.BV *= plan.factor(set, id, "VZ") * (1 + s.number(id, "TC", 0)*(celsius-s.Circuit.Temperature))
 	}
 	if law.IBV <= 0 {
 		law.IBV = 1e-3
 	}
-	if shift := plan.factor(set, id, "VF"); shift != 1 {
+	if shift := plan.factor(set, id, symbolForward); shift != 1 {
 		// A forward voltage lower or higher by a fraction: scale the emission coefficient and resistance.
 		law.N *= shift
 		law.RS *= shift
@@ -65,8 +67,9 @@ func (s *Supply) zenerVoltage(id netlist.ElementID) (float64, bool) {
 	return 0, false
 }
 
-func (s *Supply) bipolar(d *netlist.Transistor) solver.Bipolar {
-	vt := solver.ThermalVoltage(s.Circuit.Temperature)
+// bipolar returns the law of a transistor with its current gain multiplied by a factor, its junctions at a temperature.
+func (s *Supply) bipolar(d *netlist.Transistor, gain, celsius float64) solver.Bipolar {
+	vt := solver.ThermalVoltage(celsius)
 	q := solver.Bipolar{Sign: 1, IS: 1e-16, BF: 100, BR: 1, NF: 1, NR: 1, VT: vt}
 	if m := d.Model; m != nil {
 		q = solver.Bipolar{
@@ -74,6 +77,8 @@ func (s *Supply) bipolar(d *netlist.Transistor) solver.Bipolar {
 			VAF: m.VAF, RB: m.RB, RC: m.RC, RE: m.RE, VT: vt,
 		}
 	}
+	q.IS = saturation(q.IS, q.NF, s.Circuit.Temperature, celsius)
+	q.BF *= gain
 	if area := d.Area; area > 0 && area != 1 {
 		q.IS *= area
 		q.RB, q.RC, q.RE = q.RB/area, q.RC/area, q.RE/area
@@ -177,7 +182,7 @@ func (s *Supply) regulatorLaw(id netlist.ElementID, e *netlist.Element, d *netli
 	}
 	return solver.Regulator{
 		Sign: sign, Set: math.Abs(vout.Value()) * plan.factor(set, id, "VOUT"),
-		Dropout: math.Abs(dropout.Value()), Quiescent: math.Abs(quiescent),
+		Dropout: math.Abs(dropout.Value()) * plan.factor(set, id, "VDO"), Quiescent: math.Abs(quiescent),
 		ROut: s.number(id, "Rout", 0), Held: set.Held, CurrentLimit: limit, Sink: sink,
 	}, ""
 }

@@ -30,6 +30,7 @@ type Plan struct {
 	// Parameters are the toleranced quantities.
 	Parameters []Parameter
 	index      map[statedKey]int
+	islands    []int // of each element, the independent part of the circuit it belongs to; -1: none
 	// Doubtful lists the sources whose amplitude looks like an RMS value of the mains.
 	Doubtful []netlist.ElementID
 	// Undeclared lists the sinusoidal sources that are neither line nor winding.
@@ -84,6 +85,7 @@ func NewPlan(s *Supply) *Plan {
 	}
 	p.planLine()
 	p.planLoads()
+	p.planIslands()
 	p.planTolerances()
 	return p
 }
@@ -317,16 +319,7 @@ func (p *Plan) condition(set *Setting) Condition {
 		if position == 0 {
 			continue
 		}
-		q := p.Parameters[k]
-		end := q.High
-		if position < 0 {
-			end = q.Low
-		}
-		name := p.supply.Circuit.Elements[q.Element].Name
-		if q.Symbol != "R" && q.Symbol != "C" && q.Symbol != "L" {
-			name += " " + string(q.Symbol)
-		}
-		c.Also = append(c.Also, fmt.Sprintf("%s at %+.3g %%", name, 100*end*math.Abs(position)))
+		c.Also = append(c.Also, p.shiftWords(k, set))
 	}
 	return c
 }

@@ -46,20 +46,3 @@ type Setting struct {
 	// Nominal solves the netlist exactly as written.
 	Nominal bool
 }
-
-// Parameter is a quantity with a tolerance.
-type Parameter struct {
-	Element netlist.ElementID
-	Symbol  netlist.Symbol // of the quantity that varies: "R", "C", "L", "VZ", "VOUT", "VF"
-	// Low and High are the relative ends: -0.2, +0.2.
-	Low, High float64
-	Origin    string // where the tolerance is known from
-}
-
-// factor is the multiplier of a parameter at its position.
-func (p Parameter) factor(position float64) float64 {
-	if position < 0 {
-		return 1 - position*p.Low
-	}
-	return 1 + position*p.High
-}

@@ -37,7 +37,7 @@ type states map[int][]float64
 // The grids of the many conditions of a check: the difference of two grids counts against the part, so that they
 // may be coarser than those of the netlist exactly as written.
 const (
-	workingSteps    = 128
+	workingSteps    = 64
 	workingMaxSteps = 2048
 )
 
@@ -87,14 +87,23 @@ func (p *Plan) lay(set Setting) (*outcome, []solver.Island) {
 
 // solve finds the steady state of every island of the supply in one setting.
 func (p *Plan) solve(ctx context.Context, set Setting, warm states) *outcome {
+	// The conditions of a check fill the cores by themselves; a netlist exactly as written has only its islands.
+	if set.Nominal {
+		return p.solveWith(ctx, set, warm, 0, solver.Options{})
+	}
+	return p.solveWith(ctx, set, warm, 1, solver.Options{Steps: workingSteps, MaxSteps: workingMaxSteps})
+}
+
+// probe solves a setting on one grid, without an estimate of the numerical error: good enough to see which way a
+// stress moves, not to prove one.
+func (p *Plan) probe(ctx context.Context, set Setting, warm states) *outcome {
+	return p.solveWith(ctx, set, warm, 1, solver.Options{Steps: workingSteps, OneGrid: true})
+}
+
+func (p *Plan) solveWith(ctx context.Context, set Setting, warm states, jobs int, effort solver.Options) *outcome {
 	out, parts := p.lay(set)
 	if out.failed != nil {
 		return out
-	}
-	// The conditions of a check fill the cores by themselves; a netlist exactly as written has only its islands.
-	jobs, effort := 1, solver.Options{Steps: workingSteps, MaxSteps: workingMaxSteps}
-	if set.Nominal {
-		jobs, effort = 0, solver.Options{}
 	}
 	inParallel(len(parts), jobs, func(i int) {
 		is, own := &out.islands[i], effort

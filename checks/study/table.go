@@ -20,9 +20,7 @@ type Table struct {
 	Plan     *Plan
 	Solved   int // conditions solved
 
-	index map[tableKey]int
-	// islands: element -> index of the island it was solved in, -1 if none
-	islands []int
+	index   map[tableKey]int
 	home    map[string]int                     // element or node name -> its island
 	sources map[netlist.ElementID]map[int]bool // voltage source -> islands it takes part in
 	// Unsolved lists islands without a steady state in some condition: the reason, in words.
@@ -51,7 +49,7 @@ func (t *Table) Get(element string, q Quantity) (*Stress, bool) {
 }
 
 // Island is the index of the independent part of the circuit that an element belongs to, -1 if unknown.
-func (t *Table) Island(id netlist.ElementID) int { return t.islands[id] }
+func (t *Table) Island(id netlist.ElementID) int { return t.Plan.islands[id] }
 
 // smallerIsWorse are the quantities whose worst value is the smallest.
 var smallerIsWorse = map[Quantity]bool{MinVoltage: true, MinCurrent: true, MinDifferential: true, MinHeadroom: true, LeastCurrent: true, MinOutputCurrent: true}
@@ -266,11 +264,7 @@ func (p *Plan) held() bool {
 // note records islands and failures of an outcome.
 func (t *Table) note(out *outcome) {
 	c := t.Plan.supply.Circuit
-	if t.islands == nil {
-		t.islands = make([]int, len(c.Elements))
-		for k := range c.Elements {
-			t.islands[k] = out.islandOf(c, netlist.ElementID(k))
-		}
+	if t.home == nil {
 		t.place(out)
 	}
 	if out.set.Held {
@@ -292,7 +286,7 @@ func (t *Table) note(out *outcome) {
 		}
 		u := UnsolvedIsland{Why: why, When: when}
 		for k := range c.Elements {
-			if t.islands[k] == i {
+			if t.Plan.islands[k] == i {
 				u.Elements = append(u.Elements, c.Elements[k].Name)
 			}
 		}
@@ -305,7 +299,7 @@ func (t *Table) place(out *outcome) {
 	c := t.Plan.supply.Circuit
 	t.home, t.sources = map[string]int{}, map[netlist.ElementID]map[int]bool{}
 	for k := range c.Elements {
-		t.home[c.Elements[k].Name] = t.islands[k]
+		t.home[c.Elements[k].Name] = t.Plan.islands[k]
 	}
 	if out.low == nil {
 		return

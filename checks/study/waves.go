@@ -86,7 +86,25 @@ func commonPeriod(c *netlist.Circuit) (float64, error) {
 
 // wave turns a waveform into a solver source, scaled by a factor. In the periodic steady state a start delay
 // only shifts the phase; from a cold start it is honoured.
+// The line frequency is a toleranced parameter: the time of every waveform runs faster or slower with it.
 func (p *Plan) wave(w netlist.Waveform, factor float64, set *Setting) solver.Wave {
+	pace := p.factor(set, supplyWide, symbolFrequency)
+	if pace == 1 {
+		return p.drawnWave(w, factor, set)
+	}
+	if sine, ok := w.(netlist.Sine); ok {
+		sine.Frequency *= pace
+		sine.Delay /= pace
+		return p.drawnWave(sine, factor, set)
+	}
+	drawn := p.drawnWave(w, factor, set)
+	if _, constant := drawn.(solver.Level); constant {
+		return drawn
+	}
+	return solver.Func(func(t float64) float64 { return drawn.At(t * pace) })
+}
+
+func (p *Plan) drawnWave(w netlist.Waveform, factor float64, set *Setting) solver.Wave {
 	if level, ends := finalLevel(w); ends && !set.Cold {
 		return solver.Level(level * factor)
 	}
@@ -97,7 +115,7 @@ func (p *Plan) wave(w netlist.Waveform, factor float64, set *Setting) solver.Wav
 		phase := w.PhaseDegrees*math.Pi/180 - 2*math.Pi*w.Frequency*w.Delay
 		sine := solver.Sinusoid{
 			Offset: w.Offset * factor, Amplitude: w.Amplitude * factor, Frequency: w.Frequency,
-			Phase: phase + 2*math.Pi*w.Frequency*set.Phase*p.period,
+			Phase: phase + 2*math.Pi*w.Frequency*set.Phase*p.period/p.factor(set, supplyWide, symbolFrequency),
 		}
 		if set.Cold && (w.Delay > 0 || w.Damping != 0) && set.Nominal {
 			rest := sine.Offset + sine.Amplitude*math.Sin(w.PhaseDegrees*math.Pi/180)
