@@ -19,7 +19,7 @@ func TestNoTrialBeyondTheWorstCase(t *testing.T) {
 		t.Run(filepath.Base(file), func(t *testing.T) {
 
 			r, faults, err := Spread(context.Background(), Options{Source: netlist.Source{File: file}},
-				study.SpreadOptions{Seed: 1, First: 1, Trials: 15, Distribution: study.Uniform})
+				study.SpreadOptions{Seed: 1, First: 1, Trials: 10, Distribution: study.Uniform})
 			if err != nil || len(faults) > 0 {
 				t.Fatal(err, faults)
 			}

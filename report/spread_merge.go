@@ -12,6 +12,9 @@ import (
 	"railproof/netlist/quantity"
 )
 
+// LargestTrial is the largest number of a trial, and of a seed, that every reader of JSON keeps exactly.
+const LargestTrial = 1<<53 - 1
+
 // ReadSpread reads a spread as WriteJSON writes it. What follows from the values is worked out again.
 func ReadSpread(name string, text []byte) (*Spread, error) {
 	var d jsonSpread
@@ -38,7 +41,7 @@ func (d *jsonSpread) sound() error {
 	}
 	left := uint64(len(d.Values))
 	for _, r := range d.Trials {
-		if r.First < 1 || r.Last < r.First || r.Last-r.First >= left {
+		if r.First < 1 || r.Last < r.First || r.Last > LargestTrial || r.Last-r.First >= left {
 			return errors.New("the values do not fit the trials; expected a row for each")
 		}
 		left -= r.Last - r.First + 1
@@ -51,7 +54,23 @@ func (d *jsonSpread) sound() error {
 			return fmt.Errorf("a row of %d values; expected one for each of %d stresses", len(row), len(d.Stresses))
 		}
 	}
+	for k := range d.Stresses {
+		if b := d.Stresses[k].Beyond; b != nil && !d.holds(b.Trials) {
+			return fmt.Errorf("%s %s: trials beyond the bound that the study does not hold, or not in ascending order", d.Stresses[k].Element, d.Stresses[k].Quantity)
+		}
+	}
 	return nil
+}
+
+// holds reports whether ascending trials all stand in the document.
+func (d *jsonSpread) holds(trials []uint64) bool {
+	for k, trial := range trials {
+		in := slices.ContainsFunc(d.Trials, func(r jsonRange) bool { return r.First <= trial && trial <= r.Last })
+		if !in || k > 0 && trial <= trials[k-1] {
+			return false
+		}
+	}
+	return len(trials) > 0
 }
 
 // unitNamed is the unit of a symbol.

@@ -248,7 +248,11 @@ func (s *Spread) verdict(l *ledger) {
 		}
 		l.hangPainted(l.unproven, "NOT PROVEN", "  ", held+", but "+strings.Join(open, ", "))
 	default:
-		l.hangPainted(l.proven, "HELD", "  ", held+"; "+stressCount(len(s.Study.Stresses))+" compared")
+		held += "; " + stressCount(len(s.Study.Stresses)) + " compared"
+		if n := len(s.Study.Unsolved); n > 0 {
+			held += ", some not found in " + counted(n, "trial")
+		}
+		l.hangPainted(l.proven, "HELD", "  ", held)
 	}
 }
 

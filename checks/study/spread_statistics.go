@@ -132,7 +132,7 @@ func (st *Statistics) histogram(s *Sampled, values []float64) {
 	for _, v := range values {
 		bin := 0
 		if width > 0 {
-			bin = min(int((v-st.Low)/width), HistogramBins-1)
+			bin = min(max(int((v-st.Low)/width), 0), HistogramBins-1)
 		}
 		st.Counts[bin]++
 	}

@@ -17,7 +17,7 @@ func newProgress(s *streams, n int, what string) *progress {
 	return &progress{progressbar.NewOptions(n,
 		progressbar.OptionSetWriter(s.err), progressbar.OptionSetVisibility(s.errTerm && n >= progressFrom),
 		progressbar.OptionSetDescription(what), progressbar.OptionShowCount(), progressbar.OptionSetElapsedTime(false),
-		progressbar.OptionSetWidth(24), progressbar.OptionThrottle(100*time.Millisecond), progressbar.OptionClearOnFinish(),
+		progressbar.OptionSetWidth(24), progressbar.OptionThrottle(100*time.Millisecond), progressbar.OptionClearOnFinish(), progressbar.OptionUseANSICodes(true),
 		progressbar.OptionSetTheme(progressbar.Theme{Saucer: "#", SaucerHead: "#", SaucerPadding: ".", BarStart: "|", BarEnd: "|"}),
 	)}
 }

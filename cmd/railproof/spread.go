@@ -25,8 +25,8 @@ type spreadOptions struct {
 	merge        bool
 }
 
-// largestSeed is the largest number that every reader of JSON keeps exactly.
-const largestSeed = 1<<53 - 1
+// mostTrials is how many trials one run takes: their values are all kept.
+const mostTrials = 1_000_000
 
 func newSpread(s *streams) *cobra.Command {
 	var o spreadOptions
@@ -76,12 +76,12 @@ proven bound or a trial without a value, or a part of the circuit is unsolved.`,
 func (o *spreadOptions) sampling() (study.SpreadOptions, error) {
 	d := study.Distribution(o.distribution)
 	switch {
-	case o.trials < 1:
-		return study.SpreadOptions{}, fmt.Errorf("--trials %d; expected 1 or more", o.trials)
-	case o.seed > largestSeed:
-		return study.SpreadOptions{}, fmt.Errorf("--seed %d; expected at most %d", o.seed, uint64(largestSeed))
-	case o.first < 1 || o.first > largestSeed:
-		return study.SpreadOptions{}, fmt.Errorf("--first %d; expected 1 to %d", o.first, uint64(largestSeed))
+	case o.trials < 1 || o.trials > mostTrials:
+		return study.SpreadOptions{}, fmt.Errorf("--trials %d; expected 1 to %d, more in pieces (--first)", o.trials, mostTrials)
+	case o.seed > report.LargestTrial:
+		return study.SpreadOptions{}, fmt.Errorf("--seed %d; expected at most %d", o.seed, uint64(report.LargestTrial))
+	case o.first < 1 || o.first > report.LargestTrial-mostTrials:
+		return study.SpreadOptions{}, fmt.Errorf("--first %d; expected 1 to %d", o.first, uint64(report.LargestTrial-mostTrials))
 	case d != study.Uniform && d != study.Normal:
 		return study.SpreadOptions{}, fmt.Errorf("--distribution %q; expected %s or %s", o.distribution, study.Uniform, study.Normal)
 	}
