@@ -127,6 +127,10 @@ func (p *Pass) judge(u upper) Finding {
 		_, row := p.derate(1, u.key)
 		f.Verdict, f.Reason = Unproven, "no rating "+string(u.symbol)+" is known"
 		f.Needs = &Needs{Symbol: u.symbol, Value: math.Max(0, found) / row.Factor, Unit: u.unit}
+		if found <= unstressed && u.unit != quantity.Celsius && u.stress.Unproven == "" {
+			f.Reason += "; nothing stresses it in any condition, so any will do"
+			f.Needs.Value = 0
+		}
 		if u.steps != "" {
 			if next, ok := parts.NextUp(u.steps, f.Needs.Value); ok {
 				f.Needs.NextStandard = next
@@ -164,6 +168,9 @@ func (p *Pass) judge(u upper) Finding {
 	}
 	return f
 }
+
+// unstressed is the stress in SI units below which any part will do, as of a diode that never conducts.
+const unstressed = 1e-9
 
 // missing is the duty statement that a stress waits for, nil if none would help.
 func missing(s *study.Stress) *Needs {

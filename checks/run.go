@@ -155,11 +155,8 @@ func Run(ctx context.Context, o Options) (*Result, []netlist.Diagnostic, error) 
 	}
 	r := p.result
 	r.Table, r.Stresses = table, table.Stresses
-	for _, c := range selected {
-		pass := &Pass{Supply: p.supply, Table: table, Policy: p.policy, check: c}
-		c.run(pass)
-		r.Findings = append(r.Findings, pass.findings...)
-	}
+	r.Findings = judge(selected, p.supply, table, p.policy)
+	remedied(ctx, p, o.Jobs, table, r.Findings)
 	if o.Waves {
 		addWaves(ctx, r.Circuit, table.Plan, r.Findings)
 	}

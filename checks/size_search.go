@@ -208,7 +208,6 @@ func (z *sizer) remedy(f *Finding, a *adjustment, to float64, then *Finding, aft
 			was[key] = math.MaxInt // each once
 		}
 	}
-	was = gravest(z.before)
 	for k := range z.before {
 		key := keyOf(&z.before[k])
 		if key != subject && z.before[k].Verdict == Violated && is[key] == 0 {

@@ -36,8 +36,11 @@ func (n Needed) Bound() string {
 		return n.Bound() + " ?"
 	}
 	word := "at least "
-	if n.Floor {
+	switch {
+	case n.Floor:
 		word = "at most "
+	case n.Value == 0:
+		return "any" // nothing stresses the part
 	}
 	return word + upward(n.Value, n.Unit, n.Floor)
 }

@@ -104,6 +104,9 @@ func needWords(f *Finding) string {
 	case n.Symbol == "":
 		return ""
 	}
+	if n.Value == 0 && !f.Floor && !f.doubtful() {
+		return "any " + string(n.Symbol)
+	}
 	text := string(n.Symbol) + " of " + boundWord(f) + " " + upward(n.Value, n.Unit, f.Floor)
 	if f.doubtful() {
 		if n.Value == 0 {
