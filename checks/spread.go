@@ -17,23 +17,31 @@ import (
 type SpreadResult struct {
 	*Result
 	Spread                    *study.Spread
-	NetlistDigest, DutyDigest string // SHA-256 of the files, hexadecimal; empty where there is none
+	NetlistDigest, DutyDigest string // SHA-256 of the netlist with what it includes, and of its sheets; empty where there is none
 }
 
 // Spread solves the worst case of a netlist, judges it, and holds random trials against its bounds. The stresses
 // of headline checks are marked, and each stress names the checks that its bound proves.
 func Spread(ctx context.Context, o Options, trials study.SpreadOptions) (*SpreadResult, []netlist.Diagnostic, error) {
 	trials.Jobs = o.Jobs
+	var opened []string
+	told := o.Source.Opened
+	o.Source.Opened = func(file string) {
+		opened = append(opened, file)
+		if told != nil {
+			told(file)
+		}
+	}
 	p, diagnostics, err := prepare(o)
 	if p == nil {
 		return nil, diagnostics, err
 	}
 	r := &SpreadResult{Result: p.result}
-	sheet := o.Source.DutyFile
-	if sheet == "" {
-		sheet = strings.TrimSuffix(o.Source.File, filepath.Ext(o.Source.File)) + ".duty"
+	isSheet := func(file string) bool {
+		return file == o.Source.DutyFile || file == r.Duty.SharedSheet || strings.EqualFold(filepath.Ext(file), ".duty")
 	}
-	r.NetlistDigest, r.DutyDigest = digest(o.Source.File), digest(sheet)
+	r.NetlistDigest = digest(slices.DeleteFunc(slices.Clone(opened), isSheet))
+	r.DutyDigest = digest(slices.DeleteFunc(opened, func(file string) bool { return !isSheet(file) }))
 	r.Table = study.Worst(ctx, p.supply, o.Jobs)
 	if ctx.Err() != nil {
 		return nil, nil, ctx.Err()
@@ -54,14 +62,19 @@ func Spread(ctx context.Context, o Options, trials study.SpreadOptions) (*Spread
 	return r, nil, nil
 }
 
-// digest is the SHA-256 of a file, empty if it is not there.
-func digest(file string) string {
-	text, err := os.ReadFile(file)
-	if err != nil {
+// digest is the SHA-256 of files one behind the other, those that are there; empty if there is none.
+func digest(files []string) string {
+	sum, some := sha256.New(), false
+	for _, file := range files {
+		if text, err := os.ReadFile(file); err == nil {
+			sum.Write(text)
+			some = true
+		}
+	}
+	if !some {
 		return ""
 	}
-	sum := sha256.Sum256(text)
-	return hex.EncodeToString(sum[:])
+	return hex.EncodeToString(sum.Sum(nil))
 }
 
 // mark says of a sampled stress what its bound is for.

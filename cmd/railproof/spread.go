@@ -39,18 +39,26 @@ bound. The ambient stays at its upper end. Switch-on, line off and shorted outpu
 has them.
 
 A trial depends on the seed and its own number alone. So a study can be cut into pieces, for several machines or
-one after the other, and put together again; the whole is, byte for byte, what one run over all trials writes:
-
-  railproof spread a.cir --first 1    --trials 5000 -f json=1.json
-  railproof spread a.cir --first 5001 --trials 5000 -f json=2.json
-  railproof spread --merge 1.json 2.json
+one after the other, and put together again; the whole is, byte for byte, what one run over all trials writes.
 
 Text shows the stresses of the headline checks, or those that --stress names; JSON and CSV hold all.
 
 Exit status: 0 no trial lies beyond a worst-case bound; 1 a trial does, of any stress: then that bound is not
 proven; 2 a file could not be read or the usage is wrong; 3 none does, but a stress that was asked for has no
 proven bound or a trial without a value, or a part of the circuit is unsolved.`,
+		Example: `  railproof spread a.cir --first 1 --trials 5000 --format json=1.json
+  railproof spread a.cir --first 5001 --trials 5000 --format json=2.json
+  railproof spread --merge 1.json 2.json`,
 		Args: cobra.MinimumNArgs(1),
+		ValidArgsFunction: func(c *cobra.Command, args []string, typed string) ([]string, cobra.ShellCompDirective) {
+			switch {
+			case o.merge:
+				return completeFiles(".json")(c, args, typed)
+			case len(args) > 0:
+				return nil, cobra.ShellCompDirectiveNoFileComp
+			}
+			return completeFiles(netlistEndings...)(c, args, typed)
+		},
 		RunE: func(c *cobra.Command, args []string) error {
 			if o.merge {
 				return runMerge(c, s, &o, args)
@@ -103,9 +111,13 @@ func runSpread(ctx context.Context, s *streams, o *spreadOptions, file string) e
 	var chosen []int
 	var bar *progress
 	trials.Begin = func(sampled *study.Spread) error {
+		if err := o.spare(targets); err != nil {
+			return err
+		}
 		var err error
-		chosen, err = report.SelectStresses(sampled, o.stresses)
-		bar = newProgress(s, o.trials, "trials")
+		if chosen, err = report.SelectStresses(sampled, o.stresses); err == nil {
+			bar = newProgress(s, o.trials, "trials")
+		}
 		return err
 	}
 	trials.Done = func() { bar.step() }
@@ -130,7 +142,7 @@ func runSpread(ctx context.Context, s *streams, o *spreadOptions, file string) e
 }
 
 // runOnly are the flags of a run that --merge cannot change.
-var runOnly = []string{"trials", "seed", "first", "distribution", "duty", "policy", "parts", "include", "jobs"}
+var runOnly = []string{"trials", "seed", "first", "distribution", "duty", "no-shared", "policy", "parts", "include", "jobs"}
 
 func runMerge(c *cobra.Command, s *streams, o *spreadOptions, files []string) error {
 	for _, name := range runOnly {
