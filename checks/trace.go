@@ -181,7 +181,7 @@ func readLoads(c *netlist.Circuit, plan *study.Plan, words []string) ([]float64,
 		}
 		position, err := loadLevel(level)
 		if err != nil {
-			return nil, fmt.Errorf("--load %q; expected light, full or a percentage from 0 %% to 100 %%, or one of these as NAME=...", word)
+			return nil, fmt.Errorf("--load %q; expected light, full or a percentage from 0 %% to 100 %%, or one of these behind NAME=", word)
 		}
 		found := false
 		var names []string

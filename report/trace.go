@@ -82,6 +82,9 @@ func (t *TraceSheet) when() string {
 	if t.Trace.Held {
 		words += ", regulator outputs held at their set voltage"
 	}
+	if t.Trace.Phase > 0 {
+		words += fmt.Sprintf(", switched on at %.4g degrees of the period", 360*t.Trace.Phase)
+	}
 	return printable(words)
 }
 

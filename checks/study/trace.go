@@ -51,6 +51,7 @@ type Waveform struct {
 type Trace struct {
 	Condition Condition
 	Held      bool      // regulator outputs are held at their set voltage, to show missing headroom
+	Phase     float64   // of a cold start: where in the period it begins, as a part of it
 	Period    float64   // s; 0: all sources constant
 	Times     []float64 // s, into the period, or from switch-on
 	Waveforms []Waveform
@@ -99,7 +100,7 @@ func (c Condition) Setting() (set Setting, ok bool) {
 
 // Trace solves one setting, or integrates its cold start, and follows signals over a window.
 func (p *Plan) Trace(ctx context.Context, set Setting, signals []Signal, w Window) *Trace {
-	t := &Trace{Condition: p.condition(&set), Held: set.Held, Period: p.period}
+	t := &Trace{Condition: p.condition(&set), Held: set.Held, Phase: set.Phase, Period: p.period}
 	var out *outcome
 	var islands []solver.Island
 	if set.Cold {

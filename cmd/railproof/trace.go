@@ -41,7 +41,7 @@ func newTrace(s *streams) *cobra.Command {
 Without names: what reservoirs, filters and regulators of each rail deliver.
 
 The condition is nominal line and full load unless --line and --load say otherwise, with the air at the high end of
-its range and no part off its drawn value. --nominal takes the netlist exactly as written, without its duty sheet;
+its range and no part off its drawn value. --nominal takes the netlist exactly as written, without what its duty sheet varies;
 --stress D1=peak-reverse-voltage the condition in which that stress is worst, tolerances included: the quantities are
 those of ` + "`railproof stress`" + `, and without names the part itself is traced.
 
@@ -62,7 +62,7 @@ no solution: the error stream says why, and the others are written.`,
 	o.sourceFlags.add(c)
 	o.outputFlags.add(c, report.TraceFormats())
 	f := c.Flags()
-	f.StringVar(&o.line, "line", "nominal", "the supply line: low, nominal or high")
+	f.StringVar(&o.line, "line", "nominal", "`END` of the supply line: low, nominal or high")
 	f.StringArrayVar(&o.loads, "load", nil, "`LEVEL` of all loads, light, full or a percentage, or NAME=LEVEL of one, repeatable (default full)")
 	f.BoolVar(&o.nominal, "nominal", false, "the netlist exactly as written")
 	f.StringVar(&o.stress, "stress", "", "the condition in which a stress is worst, as `ELEMENT=QUANTITY`")
