@@ -65,6 +65,9 @@ func runSize(ctx context.Context, s *streams, o *sizeOptions, file string) error
 		}
 		return exitStatus(report.ExitBadInput)
 	}
+	if err := o.spare(targets); err != nil {
+		return err
+	}
 	r := report.NewSizeReport(result, sizes, version, now)
 	if err := deliver(s, targets, func(w io.Writer, format string, style report.Style) error { return r.Write(w, format, style) }); err != nil {
 		return err

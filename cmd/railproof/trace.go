@@ -114,6 +114,9 @@ func runTrace(ctx context.Context, s *streams, o *traceOptions, c *cobra.Command
 		}
 		return exitStatus(report.ExitBadInput)
 	}
+	if err := o.spare(targets); err != nil {
+		return err
+	}
 	return writeTrace(s, targets, traced)
 }
 

@@ -19,8 +19,8 @@ import (
 // settleTime is how long files must be quiet before a run: editors write in several steps.
 const settleTime = 100 * time.Millisecond
 
-// clearScreen takes the cursor home and clears the screen with what has scrolled off it.
-const clearScreen = "\x1b[H\x1b[2J\x1b[3J"
+// clearScreen takes the cursor home and clears the screen; what has scrolled off it stays.
+const clearScreen = "\x1b[H\x1b[2J"
 
 // watch repeats a run whenever a file it read is saved, until the context ends, and returns the outcome of the last
 // whole run. Faults of the input are told, and watching goes on.
