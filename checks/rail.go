@@ -65,15 +65,19 @@ func (p *Pass) judgeRail(r *netlist.Rail, least, most *study.Stress) (low, high 
 		return &Rating{Symbol: "rail", Value: v, Unit: quantity.Volt, Origin: origin, Confidence: "stated"}
 	}
 	const absent = "the voltage of this node was not solved"
+	lowRemedy, highRemedy := "more headroom, a larger reservoir, or a tighter regulator", "a tighter regulator, a least load, or a lower winding voltage"
+	if r.Range.High <= 0 { // a negative rail
+		lowRemedy, highRemedy = highRemedy, lowRemedy
+	}
 	low = p.judgeMinimum(lower{
 		stress: least, rating: end(r.Range.Low), symbol: "rail", unit: quantity.Volt, lost: math.Inf(-1), below: Critical, absent: absent,
-		remedy: "more headroom, a larger reservoir, or a tighter regulator",
+		remedy: lowRemedy,
 	})
 	if most == nil {
 		return withSlack(low), p.unsolvedStress(Finding{Rating: end(r.Range.High)}, absent)
 	}
 	high = p.judgePlain(upper{
-		stress: most, rating: end(r.Range.High), symbol: "rail", unit: quantity.Volt, remedy: "a tighter regulator, a least load, or a lower winding voltage",
+		stress: most, rating: end(r.Range.High), symbol: "rail", unit: quantity.Volt, remedy: highRemedy,
 	})
 	return withSlack(low), withSlack(high)
 }

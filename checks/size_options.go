@@ -37,7 +37,7 @@ var valueOptions = map[string]func(z *sizer, f *Finding, id netlist.ElementID) [
 func (z *sizer) adjustments(f *Finding) []adjustment {
 	id, part := z.supply.Circuit.Find(f.Element)
 	if !part {
-		if f.Check == railRipple.Name || f.Check == railVoltage.Name && f.Floor {
+		if f.Check == railRipple.Name || f.Check == railVoltage.Name && tooLow(f) {
 			return z.railReservoir(f.Element)
 		}
 		return nil
@@ -48,6 +48,9 @@ func (z *sizer) adjustments(f *Finding) []adjustment {
 	}
 	return slices.DeleteFunc(list, func(a adjustment) bool { return len(a.values) == 0 })
 }
+
+// tooLow reports whether a rail is too near to zero, as a reservoir may mend: of a negative rail that is its upper end.
+func tooLow(f *Finding) bool { return f.Limit != nil && f.Floor == (f.Limit.Value > 0) }
 
 // reservoirUp offers a larger reservoir of the rail that an element is in.
 func (z *sizer) reservoirUp(id netlist.ElementID) []adjustment {

@@ -25,7 +25,7 @@ func remedied(ctx context.Context, p *prepared, jobs int, t *study.Table, findin
 	for k := range findings {
 		f := &findings[k]
 		check, _ := Named(f.Check)
-		if f.Verdict == Violated && f.Floor && slices.Contains(screenedChecks, check) && len(list) < mostScreened {
+		if f.Verdict == Violated && slices.Contains(screenedChecks, check) && len(list) < mostScreened {
 			list = append(list, f)
 		}
 	}

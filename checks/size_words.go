@@ -49,7 +49,7 @@ func (z *sizer) missed(f *Finding, a *adjustment, last *Finding) miss {
 		return miss{words: join("no standard "+string(a.symbol)+" reaches the "+quantity.Format(roundUp(needed), a.unit, 3)+" that are needed", f.Remedy)}
 	case unmoved(f, last):
 		return miss{words: what + ": whatever its value, " + shortage(last)}
-	case a.symbol == "C" && f.Floor && last.Stress.Unit == quantity.Volt:
+	case a.symbol == "C" && f.Check != railRipple.Name && last.Stress.Unit == quantity.Volt:
 		return miss{words: fmt.Sprintf("%s: with %s the crest at %s is short by %s: a higher winding voltage, or less current", what,
 			quantity.Format(furthest, a.unit, 3), lineWords(last), distance(last))}
 	}

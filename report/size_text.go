@@ -125,8 +125,13 @@ func (l *ledger) size(f *foldedSize) {
 // remedyLines puts a remedy into words: the change and what is found then, what it makes worse, what it mends.
 func remedyLines(m *checks.Remedy, name func(string) string) []sizeLine {
 	lines := []sizeLine{{"size", remedyChange(m, name)}, {"then", thenWords(m)}}
-	for k := range m.Worse {
-		lines = append(lines, sizeLine{"but", effectWords(&m.Worse[k])})
+	for k := 0; k < len(m.Worse); {
+		effect := effectWords(&m.Worse[k])
+		names := []string{name(m.Worse[k].Element)}
+		for k++; k < len(m.Worse) && effectWords(&m.Worse[k]) == effect; k++ {
+			names = append(names, name(m.Worse[k].Element))
+		}
+		lines = append(lines, sizeLine{"but", strings.Join(foldNames(names), " ") + " " + effect})
 	}
 	if len(m.Mends) > 0 {
 		lines = append(lines, sizeLine{"mends", strings.Join(mendWords(m.Mends), ", ")})
@@ -165,11 +170,11 @@ func thenWords(m *checks.Remedy) string {
 	return text
 }
 
-// effectWords is a finding that a remedy makes worse: "V1 winding current: 1.2 A of 1 A, critical".
+// effectWords is a finding that a remedy makes worse, its part aside: "winding current: 1.2 A of 1 A, critical".
 func effectWords(f *checks.Finding) string {
 	title, _ := titleOf(f.Check)
 	x := Finding{Finding: *f}
-	text := f.Element + " " + title + ": "
+	text := title + ": "
 	switch {
 	case f.Verdict == checks.Unproven:
 		return text + "unproven, " + f.Reason

@@ -2,6 +2,7 @@ package main
 
 import (
 	"context"
+	"fmt"
 	"io"
 
 	"github.com/spf13/cobra"
@@ -56,8 +57,11 @@ func runSize(ctx context.Context, s *streams, o *sizeOptions, file string) error
 	options := o.options(file)
 	options.Now = now
 	result, sizes, diagnostics, err := checks.Size(ctx, options)
-	if err != nil {
+	switch {
+	case err != nil:
 		return err
+	case ctx.Err() != nil:
+		return fmt.Errorf("interrupted")
 	}
 	if len(diagnostics) > 0 {
 		for _, d := range diagnostics {
