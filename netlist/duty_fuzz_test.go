@@ -30,6 +30,11 @@ func FuzzInterpretDuty(f *testing.F) {
 		if len(again.Ratings) != len(first.Ratings) || remarksOf(again) != remarksOf(first) {
 			t.Fatal("read differently the second time")
 		}
+		// What is no mistake in a netlist's own sheet is none in the shared one.
+		_, shared := interpretDuty(build(t, dutyCircuit), statements{sheets: sheets{FromSharedSheet: lines}})
+		if len(faults) == 0 && len(shared) > 0 {
+			t.Fatalf("a fault of the shared sheet alone: %v", shared[0])
+		}
 	})
 }
 

@@ -62,7 +62,7 @@ func startWatch(t *testing.T, terminal bool, args ...string) *watched {
 	ctx, cancel := context.WithCancel(context.Background())
 	w := &watched{newPage(), newPage(), cancel, make(chan int, 1)}
 	s := streams{out: w.out, err: w.err, outTerm: terminal, environment: func(string) (string, bool) { return "", false }}
-	go func() { w.status <- run(ctx, append([]string{"check", "--watch", "--color", "never"}, args...), s) }()
+	go func() { w.status <- run(ctx, append([]string{"check", "--watch", "--proven", "--color", "never"}, args...), s) }()
 	t.Cleanup(cancel)
 	return w
 }
@@ -105,7 +105,8 @@ func TestWatch(t *testing.T) {
 		t.Fatal(err)
 	}
 	put(t, ".git", "")
-	put(t, "railproof.duty", "ambient 0C..41C\n")
+	put(t, "railproof.duty", "ambient 0C..41C\npolicy house.csv\n")
+	put(t, "house.csv", "quantity,factor,source,confidence\nresistor-power,0.5,our own rule,stated\n")
 	put(t, "boards/a.cir", watchedSupply)
 	put(t, "boards/part.inc", "R2 b 0 500 P70=1\n")
 	w := startWatch(t, false, filepath.FromSlash("boards/a.cir"))
@@ -118,7 +119,9 @@ func TestWatch(t *testing.T) {
 	}{
 		{put, "boards/a.cir", strings.Replace(watchedSupply, "Divider", "Second", 1), w.out, "Second"},
 		{replace, "boards/a.cir", strings.Replace(watchedSupply, "Divider", "Third", 1), w.out, "Third"},
-		{replace, "railproof.duty", "ambient 0C..42C\n", w.out, "0..42 degC"},
+		{replace, "railproof.duty", "ambient 0C..42C\npolicy house.csv\n", w.out, "0..42 degC"},
+		{replace, "house.csv", "quantity,factor\nresistor-power,5\n", w.err, "house.csv:2:"},
+		{replace, "house.csv", "quantity,factor,source,confidence\nresistor-power,0.51,our own rule,stated\n", w.out, "510 mW"},
 		{put, "boards/a.duty", "ambient 0C..43C\n", w.out, "0..43 degC"},
 		{replace, "boards/part.inc", "R3 b 0 500 P70=1\n", w.out, "R3"},
 		{put, "boards/part.inc", "R4 b 0 500\nR5 b\n", w.err, filepath.FromSlash("boards/part.inc:2:")},
