@@ -149,7 +149,7 @@ func (s *Spread) document() *jsonSpread {
 	}
 	for _, v := range s.Study.Varied {
 		j := jsonVaried{Kind: v.Kind, Name: v.Name, Symbol: v.Symbol}
-		if v.Kind == study.VariedTolerance {
+		if v.Kind == study.VariedTolerance || v.Kind == study.VariedAmbient {
 			low, high := number(v.Low), number(v.High)
 			j.Low, j.High = &low, &high
 		}

@@ -33,18 +33,23 @@ func (s *Spread) trialWords() string {
 	for _, r := range s.Study.Trials {
 		ranges = append(ranges, fmt.Sprintf("%d..%d", r.First, r.Last))
 	}
-	loads, tolerances := 0, 0
+	loads, tolerances, ambient := 0, 0, false
 	for _, v := range s.Study.Varied {
 		switch v.Kind {
 		case study.VariedLoad:
 			loads++
 		case study.VariedTolerance:
 			tolerances++
+		case study.VariedAmbient:
+			ambient = true
 		}
 	}
 	words := "line"
 	if loads > 0 {
 		words += ", " + counted(loads, "load")
+	}
+	if ambient {
+		words += ", ambient"
 	}
 	if tolerances > 0 {
 		words += ", " + counted(tolerances, "tolerance")
@@ -87,8 +92,10 @@ func (s *Spread) positionWords(trial uint64) []string {
 			words = append(words, fmt.Sprintf("line at %.1f %% of its range", 100*at))
 		case study.VariedLoad:
 			words = append(words, fmt.Sprintf("%s at %.1f %%", v.Name, 100*at))
+		case study.VariedAmbient:
+			words = append(words, fmt.Sprintf("%s %.1f degC", v.Name, v.Low+at*(v.High-v.Low)))
 		default:
-			words = append(words, fmt.Sprintf("%s %s %+.2f %%", v.Name, v.Symbol, 100*deviation(v, at)))
+			words = append(words, fmt.Sprintf("%s %+.2f %%", v.Name, 100*deviation(v, at)))
 		}
 	}
 	return words

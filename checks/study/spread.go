@@ -5,6 +5,7 @@ import (
 	"encoding/binary"
 	"math"
 	"math/rand/v2"
+	"slices"
 	"strconv"
 )
 
@@ -15,7 +16,7 @@ import (
 // Distribution says how a tolerance is spread between its ends.
 type Distribution string
 
-// The distributions. Line and loads are uniform under both: their ranges are no tolerances.
+// The distributions. Line, loads and ambient are uniform under both: their ranges are no tolerances.
 const (
 	Uniform Distribution = "uniform"
 	Normal  Distribution = "normal" // the ends at 3 sigma, and cut off there
@@ -41,14 +42,15 @@ const (
 	VariedLine      VariedKind = "line"      // position 0 (low) to 1 (high)
 	VariedLoad      VariedKind = "load"      // position 0 (light) to 1 (full)
 	VariedTolerance VariedKind = "tolerance" // position -1 (low end) to 1 (high end)
+	VariedAmbient   VariedKind = "ambient"   // position 0 (low) to 1 (high); it stands among the tolerances
 )
 
 // Varied is one circumstance that a spread varies.
 type Varied struct {
 	Kind      VariedKind
-	Name      string  // of the element; "line"
+	Name      string  // "line", "RL", "C1", "U1 VOUT"
 	Symbol    string  // of the toleranced quantity
-	Low, High float64 // relative ends of a tolerance
+	Low, High float64 // relative ends of a tolerance; of the ambient, degC
 }
 
 // Sampled is a stress of a spread and its bound, the worst case.
@@ -118,11 +120,27 @@ func (s *Spread) Positions(trial uint64) []float64 {
 // trial is the condition at the positions of what is varied.
 func (p *Plan) trial(positions []float64) Setting {
 	loads := len(p.loads)
-	set := Setting{Line: LineBetween, LineAt: positions[0], Ambient: p.Ambient[1], Shift: positions[1+loads:]}
+	set := Setting{Line: LineBetween, LineAt: positions[0], Ambient: p.Ambient[1], Shift: slices.Clone(positions[1+loads:])}
 	if loads > 0 {
 		set.Loads = positions[1 : 1+loads]
 	}
+	if k, ok := p.index[statedKey{supplyWide, symbolAmbient}]; ok {
+		set.Shift[k] = p.ambientShift(set.Shift[k])
+	}
 	return set
+}
+
+// ambientShift turns a position of the ambient from 0 (low) to 1 (high) into the shift of its parameter.
+func (p *Plan) ambientShift(at float64) float64 {
+	middle := p.temperature(&Setting{})
+	t := p.Ambient[0] + at*(p.Ambient[1]-p.Ambient[0])
+	switch {
+	case t < middle:
+		return -(middle - t) / (middle - p.Ambient[0])
+	case t > middle:
+		return (t - middle) / (p.Ambient[1] - middle)
+	}
+	return 0
 }
 
 // varied lists what a spread varies.
@@ -131,12 +149,12 @@ func (p *Plan) varied() []Varied {
 	for _, l := range p.loads {
 		list = append(list, Varied{Kind: VariedLoad, Name: p.supply.Circuit.Elements[l.element].Name})
 	}
-	for _, q := range p.Parameters {
-		name := ""
-		if q.Element >= 0 {
-			name = p.supply.Circuit.Elements[q.Element].Name
+	for k, q := range p.Parameters {
+		kind := VariedTolerance
+		if q.Symbol == symbolAmbient {
+			kind = VariedAmbient
 		}
-		list = append(list, Varied{VariedTolerance, name, string(q.Symbol), q.Low, q.High})
+		list = append(list, Varied{kind, p.ParameterName(k), string(q.Symbol), q.Low, q.High})
 	}
 	return list
 }

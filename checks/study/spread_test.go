@@ -77,6 +77,28 @@ func TestDrawsDiffer(t *testing.T) {
 	}
 }
 
+// The ambient is uniform from its low to its high end, 0..40 degC round the 27 degC of the netlist.
+func TestAmbientOfTrial(t *testing.T) {
+	c, d, faults := netlist.Parse("half.cir", []byte("half wave\nV1 a 0 SIN(0 10 50)\nD1 a b DX\nC1 b 0 100u\nR1 b 0 1k\n.model DX D\n"), nil, parts.Default())
+	if len(faults) > 0 {
+		t.Fatal(faults)
+	}
+	p := NewPlan(NewSupply(c, d, parts.Default()))
+	varied := p.varied()
+	k := slices.IndexFunc(varied, func(v Varied) bool { return v.Kind == VariedAmbient })
+	if k < 0 || varied[k].Low != 0 || varied[k].High != 40 {
+		t.Fatalf("%+v", varied)
+	}
+	for at, want := range map[float64]float64{0: 0, 0.25: 10, 0.675: 27, 0.8: 32, 1: 40} {
+		positions := make([]float64, len(varied))
+		positions[k] = at
+		set := p.trial(positions)
+		if got := p.temperature(&set); math.Abs(got-want) > 1e-9 || positions[k] != at {
+			t.Errorf("at %g: %g degC, want %g", at, got, want)
+		}
+	}
+}
+
 // divider is 10 V over two resistors of 500 ohm, line and resistors with the tolerances of common practice.
 func divider(t *testing.T) *Table {
 	t.Helper()

@@ -5,19 +5,12 @@ import (
 	"math"
 )
 
-// trials solves the conditions of a spread, each from the periodic state of the nominal one, so that a trial does
-// not depend on the others.
+// trials solves the conditions of a spread, each from nothing, so that a trial does not depend on the others.
 type trials struct {
 	plan   *Plan
 	spread *Spread
 	column map[tableKey]int
-	passes []warmPass
-}
-
-// warmPass is one solution a trial needs: the real one, and with regulators that of their held outputs.
-type warmPass struct {
-	held bool
-	warm states
+	passes []bool // the solutions a trial needs, held or not: the real one, and with regulators that of their held outputs
 }
 
 // noRail is the ripple factor above which a node is no rail but an alternating voltage: its mean passes through
@@ -27,26 +20,19 @@ const noRail = 10
 // newTrials solves the nominal condition and lists the stresses that are sampled, in the order of the table.
 func newTrials(ctx context.Context, t *Table, s *Spread) *trials {
 	p := t.Plan
-	n := &trials{plan: p, spread: s, column: map[tableKey]int{}, passes: []warmPass{{}}}
+	n := &trials{plan: p, spread: s, column: map[tableKey]int{}, passes: []bool{false}}
 	if p.held() {
-		n.passes = append(n.passes, warmPass{held: true})
+		n.passes = append(n.passes, true)
 	}
 	loads := make([]float64, len(p.loads))
 	for k := range loads {
 		loads[k] = 1
 	}
 	nominal := map[tableKey]float64{}
-	for k := range n.passes {
-		pass := &n.passes[k]
-		out := p.solve(ctx, Setting{Line: LineNominal, Loads: loads, Ambient: p.Ambient[1], Held: pass.held}, nil)
-		pass.warm = states{}
-		for i := range out.islands {
-			if solution := out.islands[i].solution; solution != nil {
-				pass.warm[i] = solution.States
-			}
-		}
+	for _, held := range n.passes {
+		out := p.solve(ctx, Setting{Line: LineNominal, Loads: loads, Ambient: p.Ambient[1], Held: held}, nil)
 		p.extract(out, func(st Stress) {
-			if p.counts(pass.held, st.Quantity) {
+			if p.counts(held, st.Quantity) {
 				nominal[tableKey{st.Element, st.Quantity}] = found(&st)
 			}
 		})
@@ -87,11 +73,11 @@ func (n *trials) solve(ctx context.Context, trial uint64) (row []float64, beyond
 		read[k] = Stress{Element: stresses[k].Bound.Element, Quantity: stresses[k].Bound.Quantity, Value: math.NaN(), Unproven: "no value was found"}
 	}
 	positions := n.spread.Positions(trial)
-	for _, pass := range n.passes {
+	for _, held := range n.passes {
 		set := n.plan.trial(positions)
-		set.Held = pass.held
-		n.plan.extract(n.plan.solve(ctx, set, pass.warm), func(st Stress) {
-			if k, ok := n.column[tableKey{st.Element, st.Quantity}]; ok && n.plan.counts(pass.held, st.Quantity) {
+		set.Held = held
+		n.plan.extract(n.plan.solve(ctx, set, nil), func(st Stress) {
+			if k, ok := n.column[tableKey{st.Element, st.Quantity}]; ok && n.plan.counts(held, st.Quantity) {
 				read[k] = st
 			}
 		})

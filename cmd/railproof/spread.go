@@ -33,10 +33,9 @@ func newSpread(s *streams) *cobra.Command {
 	c := &cobra.Command{
 		Use:   "spread FILE | spread --merge PART.json...",
 		Short: "Draw line, loads and tolerances at random, and hold the stresses against their worst case",
-		Long: `spread solves the steady state of a netlist many times, with the line, the loads and every tolerance drawn at
-random within the ends that the worst case takes, and shows how each stress is distributed below its worst-case
-bound. The ambient stays at its upper end. Switch-on, line off and shorted outputs are in the bounds, but no trial
-has them.
+		Long: `spread solves the steady state of a netlist many times, with the line, the loads, the ambient and every tolerance
+drawn at random within the ends that the worst case takes, and shows how each stress is distributed below its
+worst-case bound. Switch-on, line off and shorted outputs are in the bounds, but no trial has them.
 
 A trial depends on the seed and its own number alone. So a study can be cut into pieces, for several machines or
 one after the other, and put together again; the whole is, byte for byte, what one run over all trials writes.
@@ -74,7 +73,7 @@ proven bound or a trial without a value, or a part of the circuit is unsolved.`,
 	c.Flags().IntVarP(&o.trials, "trials", "n", 1000, "how many trials to solve")
 	c.Flags().Uint64Var(&o.seed, "seed", 1, "the seed of the random numbers")
 	c.Flags().Uint64Var(&o.first, "first", 1, "the `NUMBER` of the first trial")
-	c.Flags().StringVar(&o.distribution, "distribution", string(study.Uniform), "of the tolerances: uniform, or normal with the ends at 3 sigma and cut off there; line and loads stay uniform")
+	c.Flags().StringVar(&o.distribution, "distribution", string(study.Uniform), "of the tolerances: uniform, or normal with the ends at 3 sigma and cut off there; line, loads and ambient stay uniform")
 	c.Flags().StringArrayVar(&o.stresses, "stress", nil, "a stress to show, `ELEMENT=QUANTITY`, repeatable")
 	c.Flags().BoolVar(&o.merge, "merge", false, "join JSON spreads of separate trials of one study")
 	completeWords(c, "distribution", string(study.Uniform), string(study.Normal))
