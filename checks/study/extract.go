@@ -89,7 +89,7 @@ func (p *Plan) extract(out *outcome, emit func(Stress)) {
 		c.put(RipplePeakToPeak, quantity.Volt, v, swing)
 		c.put(RippleFactor, quantity.One, v, func(st solver.Stats) (float64, float64) {
 			ac, _ := alternating(st)
-			if math.Abs(st.Mean) < 1e-9 {
+			if math.Abs(st.Mean) < 1e-9+1e-6*ac { // of an alternating voltage there is none
 				return 0, math.NaN()
 			}
 			return ac / math.Abs(st.Mean), math.NaN()

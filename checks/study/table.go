@@ -122,6 +122,7 @@ func Worst(ctx context.Context, s *Supply, jobs int) *Table {
 		out.base = k
 		t.take(out)
 	}
+	base = append(base, t.interior(ctx, base, jobs)...)
 	t.tolerances(ctx, base, jobs)
 	p.coldStarts(ctx, jobs, t)
 	p.lineOffs(ctx, jobs, t)
@@ -129,39 +130,6 @@ func Worst(ctx context.Context, s *Supply, jobs int) *Table {
 	t.order(s.Circuit)
 	t.block()
 	return t
-}
-
-// coldPhases is how many start phases of a period are tried.
-const coldPhases = 8
-
-// coldStarts adds the switch-on from empty at high line, full and light load, at several phases.
-func (p *Plan) coldStarts(ctx context.Context, jobs int, t *Table) {
-	var settings []Setting
-	for phase := range coldPhases {
-		for _, load := range []float64{1, 0} {
-			if load == 0 && phase%2 == 1 {
-				continue // the light load changes little: half the phases do
-			}
-			loads := make([]float64, len(p.loads))
-			for k := range loads {
-				loads[k] = load
-			}
-			settings = append(settings, Setting{Line: LineHigh, Loads: loads, Ambient: p.Ambient[1], Phase: float64(phase) / coldPhases})
-			if len(p.loads) == 0 {
-				break
-			}
-		}
-	}
-	results := make([][]Stress, len(settings))
-	inParallel(len(settings), jobs, func(k int) {
-		p.coldStart(ctx, settings[k], false, func(s Stress) { results[k] = append(results[k], s) })
-	})
-	for _, list := range results {
-		t.Solved++
-		for _, s := range list {
-			t.merge(s)
-		}
-	}
 }
 
 // order sorts the stresses by element in netlist order, then nodes, keeping the order of quantities.
@@ -326,6 +294,9 @@ func (t *Table) addUnsolved(u UnsolvedIsland) {
 	t.Unsolved = append(t.Unsolved, u)
 }
 
+// fewLoads is up to how many loads every combination of light and full is solved.
+const fewLoads = 4
+
 // baseSettings are line low and high times every combination of loads light and full (all light and all full
 // beyond four loads), nominal line full load, and the same with regulators held for their headroom.
 func (p *Plan) baseSettings() []Setting {
@@ -334,7 +305,7 @@ func (p *Plan) baseSettings() []Setting {
 	switch {
 	case n == 0:
 		combinations = [][]float64{nil}
-	case n <= 4:
+	case n <= fewLoads:
 		for bits := range 1 << n {
 			loads := make([]float64, n)
 			for k := range loads {
