@@ -32,7 +32,7 @@ func ColdStart(ctx context.Context, n *Network, start float64, steps, periods in
 		return err
 	}
 	sys.initial(m.x)
-	copy(m.stage.v, spark.stage.v)
+	m.stage.bias(spark.stage.v)
 	for p := range periods {
 		tr := newTrajectory(n, float64(p)*span, m.step, steps+1)
 		if p == 0 {

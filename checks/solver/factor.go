@@ -171,10 +171,13 @@ func (m dense) addTo(y, x []float64) {
 		blas64.Gemv(blas.NoTrans, 1, m.general(), blas64.Vector{N: m.cols, Data: x, Inc: 1}, 1, blas64.Vector{N: m.rows, Data: y, Inc: 1})
 		return
 	}
+	n, data := len(x), m.data
 	for r := range y {
 		sum := 0.0
-		for c, v := range m.row(r) {
-			sum += v * x[c]
+		row := data[:n:n]
+		data = data[n:]
+		for c, v := range x {
+			sum += row[c] * v
 		}
 		y[r] += sum
 	}

@@ -169,7 +169,7 @@ func (a *march) cutStep(t float64, track bool) error {
 		}
 		a.euler = newStage(r)
 	}
-	copy(a.euler.v, a.stage.v)
+	a.euler.bias(a.stage.v)
 	cut := false
 	for k := range cutSteps {
 		at := t + float64(k+1)*short
@@ -210,7 +210,7 @@ func (a *march) cutStep(t float64, track bool) error {
 			multiply(a.flow, j, a.work)
 		}
 	}
-	copy(a.stage.v, a.euler.v)
+	a.stage.bias(a.euler.v)
 	return nil
 }
 

@@ -26,7 +26,7 @@ func Release(ctx context.Context, n *Network, first float64, steps, octaves int,
 		}
 		copy(m.x, x)
 		if bias != nil {
-			copy(m.stage.v, bias)
+			m.stage.bias(bias)
 		}
 		// A first step a million times shorter shows the solution at the start of the octave.
 		spark, err := newMarch(sys, m.step*1e-6)
@@ -34,7 +34,7 @@ func Release(ctx context.Context, n *Network, first float64, steps, octaves int,
 			return err
 		}
 		copy(spark.x, x)
-		copy(spark.stage.v, m.stage.v)
+		spark.stage.bias(m.stage.v)
 		if err := spark.advance(start, false); err != nil {
 			return fmt.Errorf("after line off: %w", err)
 		}

@@ -105,6 +105,12 @@ func (s *search) settle(ctx context.Context, x []float64, plain int) (*Trajector
 			size = math.Max(size, math.Abs(step[k])/(s.scale[k]*absoluteState+relativeState*math.Abs(x[k])))
 			x[k] += step[k]
 		}
+		if size < 1 && norm >= 1 {
+			// What Newton's method calls neutral still moves: nothing conducts, and a load empties a reservoir.
+			copy(x, s.m.x)
+			plain = 1
+			continue
+		}
 		if record && (size < s.enough || size < 1 && before < 1) {
 			return kept, nil
 		}

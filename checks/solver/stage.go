@@ -28,6 +28,7 @@ type stage struct {
 	r *reduced
 
 	v     []float64 // port voltages, the solution of the last stage
+	fresh bool      // w and slope belong to v
 	w     []float64 // port outputs beyond the stand-in
 	i, g  []float64 // port outputs and, law by law, their derivatives
 	slope dense     // dw/dv, block diagonal
@@ -60,10 +61,24 @@ func newStage(r *reduced) *stage {
 	}
 }
 
+// bias sets the port voltages from which the next search starts.
+func (st *stage) bias(v []float64) {
+	copy(st.v, v)
+	st.fresh = false
+}
+
 // evaluate computes w and its derivatives at port voltages v.
 func (st *stage) evaluate(v []float64, t float64) {
 	d := len(v)
-	for _, l := range st.r.sys.laws {
+	for k := range st.r.sys.laws {
+		l := &st.r.sys.laws[k]
+		if l.count == 1 { // a junction: the same without the loops
+			p := l.first
+			guess := st.r.sys.ports[p].guess
+			l.law.Evaluate(v[p:p+1], t, st.i[:1], st.g[:1])
+			st.w[p], st.slope.data[p*d+p] = st.i[0]-guess*v[p], st.g[0]-guess
+			continue
+		}
 		i, g := st.i[:l.count], st.g[:l.count*l.count]
 		l.law.Evaluate(v[l.first:l.first+l.count], t, i, g)
 		for a := range l.count {
@@ -142,7 +157,7 @@ func (st *stage) solve(x, u []float64, t float64) error {
 	for j := range st.v {
 		st.v[j] = 0
 	}
-	st.jacValid = false
+	st.jacValid, st.fresh = false, false
 	return st.attempt(x, u, t, 0)
 }
 
@@ -156,15 +171,18 @@ func (st *stage) attempt(x, u []float64, t float64, dampFrom int) error {
 	if len(st.v) == 0 {
 		return nil
 	}
-	st.evaluate(st.v, t)
+	if !st.fresh || st.r.sys.timed {
+		st.evaluate(st.v, t)
+	}
+	st.fresh = false
 	for iteration := range maxNewton {
 		// Residual of v = open + k w at the present v.
 		for j := range st.dv {
 			st.dv[j] = st.open[j] - st.v[j]
 		}
 		st.r.k.addTo(st.dv, st.w)
-		// A Jacobian that is off by a part in a thousand still contracts by that factor.
-		tolerance := 1e-3
+		// A Jacobian that is off by a hundredth still contracts by that factor.
+		tolerance := 1e-2
 		if iteration > 8 {
 			tolerance = 0
 		}
@@ -221,7 +239,12 @@ func (st *stage) attempt(x, u []float64, t float64, dampFrom int) error {
 				break
 			}
 		}
-		if step := largest(st.dv); done || step < roundingStep || iteration > patience && step < settledStep {
+		if done {
+			st.fresh = true
+			return nil
+		}
+		if step := largest(st.dv); step < roundingStep || iteration > patience && step < settledStep {
+			st.fresh = true
 			return nil
 		}
 	}

@@ -24,6 +24,7 @@ type system struct {
 	ports    []port
 	laws     []lawSlot
 	maxPorts int
+	timed    bool // a law depends on the time
 	// lossless lists the inductors that ideal sources alone drive: a constant current in them is undetermined.
 	lossless []int
 	// overshoots: the network has inductors or regulators, see march.cutsOff.
@@ -59,8 +60,11 @@ func newSystem(n *Network) (*system, error) {
 			s.sources = append(s.sources, Device(k))
 		case nonlinear:
 			s.laws = append(s.laws, lawSlot{d.law, len(s.ports), len(d.ports)})
-			if _, ok := d.law.(*regulator); ok {
+			switch d.law.(type) {
+			case *regulator:
 				s.overshoots = true
+			case functionLaw:
+				s.timed = true
 			}
 			s.ports = append(s.ports, d.ports...)
 			s.maxPorts = max(s.maxPorts, len(d.ports))
