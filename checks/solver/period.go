@@ -80,7 +80,7 @@ func (a *march) advance(t float64, track bool) error {
 	if err := a.twoStages(t, track); err != nil {
 		return err
 	}
-	if guard && (a.sys.overshoots || a.leaped) && a.cutsOff(a.stage) {
+	if guard && a.cutsOff(a.stage) {
 		copy(a.x, a.before)
 		if track {
 			copy(a.flow.data, a.flowBefore)
@@ -145,8 +145,9 @@ func (a *march) twoStages(t float64, track bool) error {
 // has overshot, and the inductance answers with a voltage spike that is not in the circuit; where a regulator
 // reaches its set voltage the output capacitor has overshot, and nothing draws the excess back.
 func (a *march) cutsOff(st *stage) bool {
+	every := a.leaped || len(a.sys.inductors) > 0
 	for j, before := range a.currentBefore {
-		if math.Abs(before) < 1e-9 {
+		if math.Abs(before) < 1e-9 || !every && !a.sys.regulating[j] {
 			continue
 		}
 		if now := st.w[j] + a.sys.ports[j].guess*st.v[j]; math.Abs(now) < 1e-3*math.Abs(before) {

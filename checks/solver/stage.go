@@ -9,13 +9,17 @@ import (
 // ErrNewton says that the nonlinear equations of one time step could not be solved.
 var ErrNewton = errors.New("the nonlinear equations of a time step did not converge")
 
+// slack is the relative difference of a slope from the factorised one that is left: Newton's method for a stage, and for
+// the period with the derivatives of its stages, still contracts by about that factor an iteration.
+const slack = 1e-2
+
 const (
 	maxNewton = 200 // iterations of one stage before it is given up
 	// relativeCurrent and absoluteCurrent bound the error of the port currents against the last
 	// linearisation, absoluteVoltage what that error may do to the port voltages.
 	relativeCurrent = 1e-9
 	absoluteCurrent = 1e-18 // A
-	absoluteVoltage = 1e-11 // V
+	absoluteVoltage = 1e-8  // V
 	// settledStep is a Newton step, V, that is not worth damping, and that ends a search which rounding keeps
 	// from the bounds above: it moves a junction current by less than a millionth.
 	settledStep  = 1e-8
@@ -98,7 +102,8 @@ func (st *stage) stale(tolerance float64) bool {
 		return true
 	}
 	d := len(st.v)
-	for _, l := range st.r.sys.laws {
+	for n := range st.r.sys.laws {
+		l := &st.r.sys.laws[n]
 		for p := l.first; p < l.first+l.count; p++ {
 			for q := l.first; q < l.first+l.count; q++ {
 				a, b := st.slope.data[p*d+q], st.jacSlope[p*d+q]
@@ -117,27 +122,31 @@ func (st *stage) stale(tolerance float64) bool {
 
 func (st *stage) factorise() error {
 	d := len(st.v)
-	k := st.r.k.data
-	a := st.jac.lu
-	for row := range d {
-		out := a[row*d : row*d+d]
-		for c := range out {
-			out[c] = 0
-		}
-		out[row] = 1
-		for _, l := range st.r.sys.laws {
-			for p := l.first; p < l.first+l.count; p++ {
-				kv := k[row*d+p]
-				if kv == 0 {
-					continue
-				}
+	k, a, slope := st.r.k.data, st.jac.lu, st.slope.data
+	for n := range st.r.sys.laws {
+		l := &st.r.sys.laws[n]
+		if l.count == 1 {
+			p := l.first
+			g := -slope[p*d+p]
+			for at := p; at < d*d; at += d {
+				a[at] = k[at] * g
+			}
+		} else {
+			for row := 0; row < d*d; row += d {
 				for c := l.first; c < l.first+l.count; c++ {
-					out[c] -= kv * st.slope.data[p*d+c]
+					sum := 0.0
+					for p := l.first; p < l.first+l.count; p++ {
+						sum -= k[row+p] * slope[p*d+c]
+					}
+					a[row+c] = sum
 				}
 			}
 		}
 	}
-	copy(st.jacSlope, st.slope.data)
+	for at := 0; at < d*d; at += d + 1 {
+		a[at]++
+	}
+	copy(st.jacSlope, slope)
 	st.jacValid, st.flowOK = false, false
 	if err := st.jac.factorise(); err != nil {
 		return err
@@ -181,8 +190,7 @@ func (st *stage) attempt(x, u []float64, t float64, dampFrom int) error {
 			st.dv[j] = st.open[j] - st.v[j]
 		}
 		st.r.k.addTo(st.dv, st.w)
-		// A Jacobian that is off by a hundredth still contracts by that factor.
-		tolerance := 1e-2
+		tolerance := slack
 		if iteration > 8 {
 			tolerance = 0
 		}
@@ -320,7 +328,7 @@ func (st *stage) unknowns(out, x, u []float64) {
 
 // transition returns the derivative of the states after the stage by the predicted states, m x m.
 func (st *stage) transition() (dense, error) {
-	if st.stale(1e-6) {
+	if st.stale(slack) {
 		if err := st.factorise(); err != nil {
 			return dense{}, err
 		}

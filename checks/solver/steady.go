@@ -14,6 +14,8 @@ type Options struct {
 	// Start holds the states at the start of the period of a neighbouring solution (Solution.States), from
 	// which the search may start; nil or of another length: ignored.
 	Start []float64
+	// Tolerances end the refinement; the zero value stands for Exact.
+	Tolerances Tolerances
 	// OneGrid solves on the first grid alone: Coarse is then Fine, and nothing says how accurate it is.
 	OneGrid bool
 }
@@ -24,18 +26,29 @@ const (
 	// cuts their current off: what lies between two samples at a jump is known to one step only.
 	inductiveSteps  = 1024
 	defaultMaxSteps = 8192
-	// VoltageTolerance and CurrentTolerance are the relative changes between two grids below which a
-	// solution counts as accurate: of voltages and mean values, and of peak and RMS currents.
-	VoltageTolerance = 1e-3
-	CurrentTolerance = 5e-3
-	// PowerTolerance bounds the mean power into capacitors and inductors, which is zero in the periodic
-	// steady state, against the apparent power of the sources.
-	PowerTolerance = 1e-4
-	powerFloor     = 1e-9 // W; below this the power balance is not judged
-	voltageFloor   = 1e-6 // V
-	currentFloor   = 1e-9 // A
+	powerFloor      = 1e-9 // W; below this the power balance is not judged
+	voltageFloor    = 1e-6 // V
+	currentFloor    = 1e-9 // A
 	// currentShare: changes of a current below this part of the largest current of the network do not count.
 	currentShare = 2e-5
+)
+
+// Tolerances are the relative changes between two grids below which a solution counts as accurate. The rule is of second
+// order, so that the finer grid is nearer to the truth than to the coarser one, by a factor of about three.
+type Tolerances struct {
+	Voltage float64 // of voltages and mean currents
+	Current float64 // of peak and RMS currents
+	Power   float64 // of mean powers, which go with the square of the currents
+	// Balance bounds the mean power into capacitors and inductors, which is zero in the periodic steady state,
+	// against the apparent power of the sources.
+	Balance float64
+}
+
+// Exact are the tolerances of a netlist exactly as written, Working those of the many conditions of a check, in which
+// the difference of two grids counts against the part.
+var (
+	Exact   = Tolerances{Voltage: 1e-3, Current: 5e-3, Power: 1e-3, Balance: 1e-4}
+	Working = Tolerances{Voltage: 2e-3, Current: 1e-2, Power: 4e-3, Balance: 2.5e-4}
 )
 
 // ErrInaccurate says that two grids still differ by more than the tolerance at the largest number of steps.
@@ -47,7 +60,7 @@ type Solution struct {
 	States       []float64   // at the start of the period
 	Periods      int         // integrated in all
 	Iterations   int         // of the port equations, in all
-	Imbalance    float64     // |mean power into C and L| / apparent power of the sources; see PowerTolerance
+	Imbalance    float64     // |mean power into C and L| / apparent power of the sources; see Tolerances
 }
 
 // Measure evaluates a statistic on both grids: the value on the fine one and the difference to the coarse
@@ -71,6 +84,9 @@ func SteadyState(ctx context.Context, n *Network, o Options) (*Solution, error) 
 	}
 	if o.MaxSteps == 0 {
 		o.MaxSteps = defaultMaxSteps
+	}
+	if o.Tolerances == (Tolerances{}) {
+		o.Tolerances = Exact
 	}
 	sys, err := newSystem(n)
 	if err != nil {
@@ -117,8 +133,8 @@ func SteadyState(ctx context.Context, n *Network, o Options) (*Solution, error) 
 		}
 		sol.States = append(sol.States[:0], x...)
 		sol.Imbalance = imbalance(n, sol.Fine)
-		differs = sol.disagreement(n)
-		if sol.Imbalance <= PowerTolerance && differs == "" {
+		differs = sol.disagreement(n, &o.Tolerances)
+		if sol.Imbalance <= o.Tolerances.Balance && differs == "" {
 			return sol, nil
 		}
 	}
@@ -168,7 +184,7 @@ func (s *system) centre(m *march, tr *Trajectory) bool {
 
 // disagreement compares the branch voltages and currents and the node voltages of the two grids; it names the
 // first quantity that differs by more than the tolerance, "" if none does.
-func (s *Solution) disagreement(n *Network) string {
+func (s *Solution) disagreement(n *Network, allowed *Tolerances) string {
 	largest := 0.0
 	for d := range n.devices {
 		for k := range n.devices[d].branches {
@@ -192,19 +208,19 @@ func (s *Solution) disagreement(n *Network) string {
 				// whose mean current and power are zero by periodicity; its RMS current is.
 				onCharge bool
 			}{
-				{"largest voltage", v1.Max.Value, v0.Max.Value, VoltageTolerance*size + voltageFloor, false},
-				{"smallest voltage", v1.Min.Value, v0.Min.Value, VoltageTolerance*size + voltageFloor, false},
-				{"mean voltage", v1.Mean, v0.Mean, VoltageTolerance*size + voltageFloor, false},
-				{"largest current", i1.Max.Value, i0.Max.Value, CurrentTolerance*peak + floor, true},
-				{"smallest current", i1.Min.Value, i0.Min.Value, CurrentTolerance*peak + floor, true},
-				{"RMS current", i1.RMS, i0.RMS, CurrentTolerance*i1.RMS + floor, false},
-				{"mean current", i1.Mean, i0.Mean, VoltageTolerance*i1.RMS + floor, true},
-				{"mean power", p1, p0, VoltageTolerance*v1.RMS*i1.RMS + powerFloor, true},
+				{"largest voltage", v1.Max.Value, v0.Max.Value, allowed.Voltage*size + voltageFloor, false},
+				{"smallest voltage", v1.Min.Value, v0.Min.Value, allowed.Voltage*size + voltageFloor, false},
+				{"mean voltage", v1.Mean, v0.Mean, allowed.Voltage*size + voltageFloor, false},
+				{"largest current", i1.Max.Value, i0.Max.Value, allowed.Current*peak + floor, true},
+				{"smallest current", i1.Min.Value, i0.Min.Value, allowed.Current*peak + floor, true},
+				{"RMS current", i1.RMS, i0.RMS, allowed.Current*i1.RMS + floor, false},
+				{"mean current", i1.Mean, i0.Mean, allowed.Voltage*i1.RMS + floor, true},
+				{"mean power", p1, p0, allowed.Power*v1.RMS*i1.RMS + powerFloor, true},
 			}
 			if n.devices[d].kind == capacitor {
 				// The crest and the trough themselves are wanted, and no kink may hide more of them.
 				for _, e := range [][2]Extreme{{v1.Max, v0.Max}, {v1.Min, v0.Min}} {
-					tolerance := VoltageTolerance*(math.Abs(e[0].Value)+0.1*size) + voltageFloor
+					tolerance := allowed.Voltage*(math.Abs(e[0].Value)+0.1*size) + voltageFloor
 					if differ(e[0].Value, e[1].Value, tolerance) || e[0].Doubt > tolerance {
 						return fmt.Sprintf("extreme voltage of device %d: %.6g, then %.6g, within %.2g", d, e[1].Value, e[0].Value, e[0].Doubt)
 					}
@@ -223,7 +239,7 @@ func (s *Solution) disagreement(n *Network) string {
 	for k := 1; k < n.nodes; k++ {
 		fine := s.Fine.Summary(func(j int) float64 { return s.Fine.Nodes[k][j] })
 		coarse := s.Coarse.Summary(func(j int) float64 { return s.Coarse.Nodes[k][j] })
-		if differ(fine.Ripple(), coarse.Ripple(), VoltageTolerance*fine.Ripple()+VoltageTolerance*1e-3*fine.RMS+voltageFloor) {
+		if differ(fine.Ripple(), coarse.Ripple(), allowed.Voltage*(fine.Ripple()+1e-3*fine.RMS)+voltageFloor) {
 			return fmt.Sprintf("ripple of node %d: %.6g V, then %.6g V", k, coarse.Ripple(), fine.Ripple())
 		}
 	}

@@ -27,8 +27,8 @@ type system struct {
 	timed    bool // a law depends on the time
 	// lossless lists the inductors that ideal sources alone drive: a constant current in them is undetermined.
 	lossless []int
-	// overshoots: the network has inductors or regulators, see march.cutsOff.
-	overshoots bool
+	// regulating marks the ports of regulators, see march.cutsOff.
+	regulating []bool
 }
 
 // lawSlot places a law's ports in the port vector.
@@ -54,16 +54,16 @@ func newSystem(n *Network) (*system, error) {
 			s.capacitors = append(s.capacitors, Device(k))
 		case inductor:
 			inductorIndex[Device(k)] = len(s.inductors)
-			s.overshoots = true
 			s.inductors = append(s.inductors, Device(k))
 		case voltageSource, currentSource:
 			s.sources = append(s.sources, Device(k))
 		case nonlinear:
 			s.laws = append(s.laws, lawSlot{d.law, len(s.ports), len(d.ports)})
-			switch d.law.(type) {
-			case *regulator:
-				s.overshoots = true
-			case functionLaw:
+			_, regulates := d.law.(*regulator)
+			for range d.ports {
+				s.regulating = append(s.regulating, regulates)
+			}
+			if _, ok := d.law.(functionLaw); ok {
 				s.timed = true
 			}
 			s.ports = append(s.ports, d.ports...)

@@ -11,8 +11,11 @@ import (
 )
 
 const (
-	coldSteps      = 256 // steps a period of a cold start; the error is taken from half as many
-	coldMaxPeriods = 500
+	// Steps a period of a cold start, of the netlist as written and of the many of a check; the error is taken from
+	// half as many.
+	coldSteps        = 256
+	coldWorkingSteps = 128
+	coldMaxPeriods   = 500
 	// coldSettled is the relative change of the diodes' peak currents from one period to the next below
 	// which a start counts as over.
 	coldSettled = 0.03
@@ -121,10 +124,14 @@ func (p *Plan) coldStart(ctx context.Context, set Setting, surgeOnly bool, emit 
 		if diodes == 0 && (surgeOnly || len(order) == 0) {
 			continue
 		}
-		fine, err := follow(ctx, island.Network, order, coldSteps)
+		steps := coldWorkingSteps
+		if set.Nominal {
+			steps = coldSteps
+		}
+		fine, err := follow(ctx, island.Network, order, steps)
 		coarse := fine
 		if err == nil {
-			coarse, err = follow(ctx, island.Network, order, coldSteps/2)
+			coarse, err = follow(ctx, island.Network, order, steps/2)
 		}
 		for k, local := range order {
 			id := watched[local]

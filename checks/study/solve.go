@@ -91,7 +91,7 @@ func (p *Plan) solve(ctx context.Context, set Setting, warm states) *outcome {
 	if set.Nominal {
 		return p.solveWith(ctx, set, warm, 0, solver.Options{})
 	}
-	return p.solveWith(ctx, set, warm, 1, solver.Options{Steps: workingSteps, MaxSteps: workingMaxSteps})
+	return p.solveWith(ctx, set, warm, 1, solver.Options{Steps: workingSteps, MaxSteps: workingMaxSteps, Tolerances: solver.Working})
 }
 
 // probe solves a setting on one grid, without an estimate of the numerical error: good enough to see which way a
