@@ -21,6 +21,9 @@ const (
 	// stress itself, the accuracy of one grid, before the signs are taken again.
 	additive = 0.05
 	resolved = 1e-3
+	// bent is the part by which the effects of a parameter towards its two ends may differ, each by the length of its
+	// way, before it counts as a corner: a regulator that drops out, a zener that lets go.
+	bent = 0.5
 	// maxRounds bounds how often signs are taken again.
 	maxRounds = 3
 )
@@ -133,12 +136,19 @@ func (c *corners) vertex() *vertex {
 
 // proposal is a vertex with what single changes promise there for each of its stresses.
 type proposal struct {
-	vertex    *vertex
-	promised  []float64 // by key
-	movements []float64 // by key, the sum of the magnitudes of the single changes
+	vertex   *vertex
+	promised []promise // by key
 }
 
-// doubtful keeps the stresses for which the vertex does not hold what the single changes promised.
+// promise is what the changes of single parameters let a stress become at a vertex.
+type promise struct {
+	value    float64
+	movement float64 // the sum of the magnitudes of the changes
+	corner   bool    // the effect of some parameter has one
+}
+
+// doubtful keeps the stresses for which the vertex does not hold what the single changes promised, or for which they
+// could not promise anything, a corner lying in between.
 func (p *proposal) doubtful() bool {
 	var keys []tableKey
 	for k, key := range p.vertex.keys {
@@ -146,7 +156,7 @@ func (p *proposal) doubtful() bool {
 		if !ok || math.IsNaN(s.Value) {
 			continue
 		}
-		if math.Abs(s.Value-p.promised[k]) > additive*p.movements[k]+resolved*math.Abs(s.Value)+trifle(s.Unit) {
+		if at := p.promised[k]; at.corner || math.Abs(s.Value-at.value) > additive*at.movement+resolved*math.Abs(s.Value)+trifle(s.Unit) {
 			keys = append(keys, key)
 		}
 	}
@@ -202,9 +212,10 @@ func (c *corners) next(ctx context.Context, around []*vertex, jobs int) []*propo
 				continue
 			}
 			ends := map[int]float64{}
-			promised, movement := from.found[key].Value, 0.0
+			promised, movement, corner := from.found[key].Value, 0.0, false
 			for _, k := range c.affect[home] {
 				low, high := where[at{v, c.rank[k], -1}][key], where[at{v, c.rank[k], 1}][key]
+				corner = corner || c.plan.Parameters[k].bends(now, low, high)
 				end, matters := badEnd(now, low, high)
 				switch {
 				case !matters:
@@ -222,7 +233,7 @@ func (c *corners) next(ctx context.Context, around []*vertex, jobs int) []*propo
 				movement += math.Abs(to.Value - now.Value)
 			}
 			if movement > 0 {
-				list = c.propose(list, key, ends, promised, movement)
+				list = c.propose(list, key, ends, promise{promised, movement, corner})
 			}
 		}
 	}
@@ -263,7 +274,7 @@ func (c *corners) isAt(v *vertex, column []int, end float64) bool {
 }
 
 // propose adds a stress to a vertex that its ends do not contradict, or to a new one.
-func (c *corners) propose(list []*proposal, key tableKey, ends map[int]float64, promised, movement float64) []*proposal {
+func (c *corners) propose(list []*proposal, key tableKey, ends map[int]float64, promised promise) []*proposal {
 next:
 	for _, p := range list {
 		for k, end := range ends {
@@ -271,21 +282,20 @@ next:
 				continue next
 			}
 		}
-		p.add(key, ends, promised, movement)
+		p.add(key, ends, promised)
 		return list
 	}
 	p := &proposal{vertex: c.vertex()}
-	p.add(key, ends, promised, movement)
+	p.add(key, ends, promised)
 	return append(list, p)
 }
 
-func (p *proposal) add(key tableKey, ends map[int]float64, promised, movement float64) {
+func (p *proposal) add(key tableKey, ends map[int]float64, promised promise) {
 	for k, end := range ends {
 		p.vertex.shift[k], p.vertex.fixed[k] = end, true
 	}
 	p.vertex.keys = append(p.vertex.keys, key)
 	p.promised = append(p.promised, promised)
-	p.movements = append(p.movements, movement)
 }
 
 // badEnd says at which end of a parameter a stress is worst: -1, 1, or 0 if where it is now is the worst; matters is
@@ -309,6 +319,16 @@ func badEnd(at, low, high *Stress) (end float64, matters bool) {
 		return 1, true
 	}
 	return 0, l < -threshold || h < -threshold
+}
+
+// bends reports whether the effect of a parameter on a stress has a corner between its ends.
+func (p Parameter) bends(at, low, high *Stress) bool {
+	if low == nil || high == nil || p.Low >= 0 || p.High <= 0 {
+		return false
+	}
+	below, above := (at.Value-low.Value)/-p.Low, (high.Value-at.Value)/p.High
+	largest := math.Max(math.Abs(at.Value-low.Value), math.Abs(high.Value-at.Value))
+	return largest > 5*resolved*math.Abs(at.Value)+trifle(at.Unit) && math.Abs(below-above) > bent*math.Max(math.Abs(below), math.Abs(above))
 }
 
 // trifle is a change too small to count beside any rating of a supply: a tenth of a millivolt, a microampere, a
