@@ -33,14 +33,14 @@ var railRipple = &Check{
 	Stress:  "peak-to-peak ripple; the ripple factor (RMS of the alternating part / mean) is noted", Rating: "the stated ripple",
 	Worst:        "low line, full load",
 	Formula:      "reservoir: about I/(f C); full-wave ripple factor 1/(4 sqrt(3) f C R), f the line frequency",
-	Assumptions:  "behind a regulator the least ripple rejection of its row",
+	Assumptions:  "behind a regulator its solved ripple and the part of the ripple at its input that it lets through: the least ripple rejection PSRRmin, else half the typical one (6 dB less, common practice); each at its worst",
 	SeverityRule: "major above the stated ripple",
 	Source:       "ripple factor of a full-wave reservoir: standard handbook value (from memory)",
 	Remedy:       "a larger reservoir, a second filter, or a regulator with more ripple rejection",
 	run: func(p *Pass) {
 		p.eachRail(func(r *netlist.Rail, node string) {
 			if r.Ripple != nil {
-				p.reportRail(r, node, p.judgeRailRipple(r, p.get(node, study.RipplePeakToPeak), p.get(node, study.RippleFactor)))
+				p.reportRail(r, node, p.judgeRailRipple(r, node))
 			}
 		})
 	},
@@ -96,20 +96,4 @@ func withSlack(f Finding) Finding {
 	f.Verdict, f.Severity, f.Remedy, f.Margin = Proven, "", "", 0
 	f.Note = join(f.Note, "at its limit")
 	return f
-}
-
-func (p *Pass) judgeRailRipple(r *netlist.Rail, swing, factor *study.Stress) Finding {
-	rating := &Rating{Symbol: "ripple", Value: *r.Ripple, Unit: quantity.Volt, Confidence: "stated",
-		Origin: "rail " + p.Circuit().Nodes[r.Node].Name + " ripple=" + quantity.Format(*r.Ripple, quantity.Volt, 4)}
-	if swing == nil {
-		return p.unsolvedStress(Finding{Rating: rating}, "the voltage of this node was not solved")
-	}
-	note := ""
-	if found(factor) {
-		note = "ripple factor " + quantity.Percent(factor.Value, 3)
-	}
-	return p.judgePlain(upper{
-		stress: swing, rating: rating, symbol: "ripple", unit: quantity.Volt, note: note, critical: Major,
-		remedy: "a larger reservoir, a second filter, or a regulator with more ripple rejection",
-	})
 }

@@ -92,6 +92,7 @@ var meanings = []Meaning{
 	{Symbol: "IOmin", Unit: quantity.Ampere, Kinds: KindRegulator, Description: "lowest load current at which it regulates"},
 	{Symbol: "IQ", Unit: quantity.Ampere, Kinds: KindRegulator, Description: "quiescent current"},
 	{Symbol: "Rout", Unit: quantity.Ohm, Kinds: KindRegulator, Description: "output resistance"},
+	{Symbol: "PSRRmin", Unit: quantity.One, Kinds: KindRegulator, Description: "least ripple rejection, input over output: 1000 for 60 dB"},
 	{Symbol: "CIN", Unit: quantity.Farad, Kinds: KindRegulator, Description: "input capacitance asked for"},
 	{Symbol: "COUT", Unit: quantity.Farad, Kinds: KindRegulator, Range: true, Description: "output capacitance asked for"},
 	{Symbol: "ESRmin", Unit: quantity.Ohm, Kinds: KindRegulator, Description: "least series resistance of the output capacitor"},

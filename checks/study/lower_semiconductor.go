@@ -169,12 +169,10 @@ func (s *Supply) regulatorLaw(id netlist.ElementID, e *netlist.Element, d *netli
 		sink = dividerCurrent / math.Abs(vout.Value())
 	}
 	limit := 0.0
-	if set.Short != nil {
-		p, ok := s.Property(id, "Ilim")
-		if !ok {
-			return solver.Regulator{}, "its current limit is unknown (rate " + e.Name + " Ilim=)"
-		}
+	if p, ok := s.Property(id, "Ilim"); ok && (set.Short != nil || set.Cold && !set.Nominal) {
 		limit = p.Value()
+	} else if set.Short != nil {
+		return solver.Regulator{}, "its current limit is unknown (rate " + e.Name + " Ilim=)"
 	}
 	sign := float64(d.Polarity)
 	if sign == 0 {

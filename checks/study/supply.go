@@ -12,9 +12,10 @@ type Supply struct {
 	Duty    *netlist.Duty
 	Table   *parts.Table
 
-	rows    []*parts.Row // per element, nil if unknown
-	origins []string     // per element: how the row was found
-	stated  map[statedKey][]Property
+	rows     []*parts.Row // per element, nil if unknown
+	origins  []string     // per element: how the row was found
+	stated   map[statedKey][]Property
+	modelled map[statedKey]Property // by the model card, the last that counts
 }
 
 type statedKey struct {
@@ -68,7 +69,12 @@ func NewSupply(c *netlist.Circuit, d *netlist.Duty, t *parts.Table) *Supply {
 			s.state(r.Element, r, "stated")
 		}
 	}
+	s.modelled = map[statedKey]Property{}
 	for k := range c.Elements {
+		ratings, _ := c.ModelRatings(netlist.ElementID(k))
+		for _, r := range ratings {
+			s.modelled[statedKey{netlist.ElementID(k), r.Symbol}] = property(r, "stated")
+		}
 		for _, r := range netlist.FieldRatings(c.Elements[k]) {
 			s.state(netlist.ElementID(k), r, "stated")
 		}
@@ -83,10 +89,14 @@ func NewSupply(c *netlist.Circuit, d *netlist.Duty, t *parts.Table) *Supply {
 
 func (s *Supply) state(id netlist.ElementID, r netlist.Rating, confidence string) {
 	key := statedKey{id, r.Symbol}
-	s.stated[key] = append(s.stated[key], Property{
+	s.stated[key] = append(s.stated[key], property(r, confidence))
+}
+
+func property(r netlist.Rating, confidence string) Property {
+	return Property{
 		Symbol: r.Symbol, Low: r.Value.Low, High: r.Value.High, Unit: r.Value.Unit, Text: r.Text,
 		Origin: r.Written, Confidence: confidence,
-	})
+	}
 }
 
 // leg returns the row that holds for one element: of a bridge drawn as four diodes, the row of one leg.
@@ -125,19 +135,21 @@ func (s *Supply) recognise(e *netlist.Element) (*parts.Row, bool) {
 // Row returns the parts row of an element, nil if it is not known.
 func (s *Supply) Row(id netlist.ElementID) *parts.Row { return s.rows[id] }
 
-// Property finds a rating of an element: stated in the duty sheet, on its card, or in the parts table,
-// in that order. ok is false if it is nowhere.
+// Property finds a rating of an element: stated in the duty sheet, on its card, in the parts table, or on its model
+// card, in that order. ok is false if it is nowhere.
 func (s *Supply) Property(id netlist.ElementID, symbol netlist.Symbol) (Property, bool) {
 	if list := s.stated[statedKey{id, symbol}]; len(list) > 0 {
 		return list[0], true
 	}
 	row := s.rows[id]
 	if row == nil {
-		return Property{}, false
+		p, ok := s.modelled[statedKey{id, symbol}]
+		return p, ok
 	}
 	v, ok := row.Value(symbol)
 	if !ok {
-		return Property{}, false
+		p, ok := s.modelled[statedKey{id, symbol}]
+		return p, ok
 	}
 	return Property{
 		Symbol: symbol, Low: v.Number, High: v.Number, Unit: v.Unit,
