@@ -62,7 +62,9 @@ func startWatch(t *testing.T, terminal bool, args ...string) *watched {
 	ctx, cancel := context.WithCancel(context.Background())
 	w := &watched{newPage(), newPage(), cancel, make(chan int, 1)}
 	s := streams{out: w.out, err: w.err, outTerm: terminal, environment: func(string) (string, bool) { return "", false }}
-	go func() { w.status <- run(ctx, append([]string{"check", "--watch", "--proven", "--color", "never"}, args...), s) }()
+	go func() {
+		w.status <- run(ctx, append([]string{"check", "--watch", "--proven", "--color", "never"}, args...), s)
+	}()
 	t.Cleanup(cancel)
 	return w
 }
