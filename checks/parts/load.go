@@ -92,16 +92,11 @@ func readRow(record records.Record, known []column, titles map[string]string, st
 	case netlist.RoleRectifier, netlist.RoleZener, netlist.RoleShunt:
 		row.PinsDoubtful = true
 	}
-	switch record.Text(columnPolarity) {
-	case "", "positive":
-		if role == netlist.RoleRegulator || role == netlist.RoleAdjustable || role == netlist.RoleShunt {
-			row.Polarity = netlist.Positive
-		}
-	case "negative":
-		row.Polarity = netlist.Negative
-	default:
-		fault(columnPolarity, fmt.Sprintf("polarity %q", record.Text(columnPolarity)), "positive or negative")
+	polarity, expected := polarityOf(role, record.Text(columnPolarity))
+	if expected != "" {
+		fault(columnPolarity, fmt.Sprintf("polarity %q", record.Text(columnPolarity)), expected)
 	}
+	row.Polarity = polarity
 
 	sources := attribution(record.Text(columnSource))
 	confidences := attribution(record.Text(columnConfidence))
@@ -179,10 +174,39 @@ func readRow(record records.Record, known []column, titles map[string]string, st
 	return row, nil
 }
 
+// polarityOf reads the polarity column: of regulators positive or negative, of bipolar transistors npn or pnp;
+// a transistor without one has ratings but no known law. expected is not empty for another word.
+func polarityOf(role netlist.Role, text string) (polarity netlist.Polarity, expected string) {
+	switch text {
+	case "npn", "pnp":
+		if role != netlist.RoleTransistor {
+			return 0, "positive or negative"
+		}
+		if text == "pnp" {
+			return netlist.Negative, ""
+		}
+		return netlist.Positive, ""
+	case "", "positive", "negative":
+		switch {
+		case role == netlist.RoleTransistor && text != "":
+			return 0, "npn or pnp"
+		case text == "negative":
+			return netlist.Negative, ""
+		case role == netlist.RoleRegulator || role == netlist.RoleAdjustable || role == netlist.RoleShunt:
+			return netlist.Positive, ""
+		}
+		return 0, ""
+	}
+	if role == netlist.RoleTransistor {
+		return 0, "npn or pnp"
+	}
+	return 0, "positive or negative"
+}
+
 // contradictions finds values of one row that cannot hold together.
 func (r *Row) contradictions(record records.Record) []syntax.Diagnostic {
 	var problems []syntax.Diagnostic
-	ordered := [][]netlist.Symbol{{VZmin, VZ, VZmax}, {VOUTmin, VOUT, VOUTmax}, {VREFmin, VREF, VREFmax}, {VDOtyp, VDO}, {IQtyp, IQ}, {Tj, TjAbs}, {ESRmin, ESRmax}, {PSRRmin, PSRR}, {VOUT, VImin, VI}}
+	ordered := [][]netlist.Symbol{{VZmin, VZ, VZmax}, {VOUTmin, VOUT, VOUTmax}, {VREFmin, VREF, VREFmax}, {VDOtyp, VDO}, {IQtyp, IQ}, {Tj, TjAbs}, {ESRmin, ESRmax}, {PSRRmin, PSRR}, {VOUT, VImin, VI}, {HFEmin, HFE, HFEmax}, {VCEO, VCBO}, {IC, ICM}}
 	for _, symbols := range ordered {
 		last, lastSymbol := math.Inf(-1), netlist.Symbol("")
 		for _, symbol := range symbols {

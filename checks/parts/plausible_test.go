@@ -59,7 +59,7 @@ func TestBuiltInTablesAreClean(t *testing.T) {
 			}
 		}
 	}
-	for kind, least := range map[string]int{"rectifier": 50, "bridge": 100, "zener": 270, "fixed": 70, "adjustable": 8, "shunt": 3} {
+	for kind, least := range map[string]int{"rectifier": 50, "bridge": 100, "zener": 270, "fixed": 70, "adjustable": 8, "shunt": 3, "transistor": 160, "darlington": 50} {
 		if count[kind] < least {
 			t.Errorf("%d rows of kind %s, want at least %d", count[kind], kind, least)
 		}

@@ -63,6 +63,9 @@ func (t *Table) Find(typeName string) (*Row, bool) {
 	if canonical, ok := t.numbers.find(name); ok {
 		return t.Lookup(canonical)
 	}
+	if canonical := t.transistorNamed(name); canonical != "" {
+		return t.Lookup(canonical)
+	}
 	return nil, false
 }
 

@@ -39,6 +39,13 @@ func TestFindAcceptsTradeNames(t *testing.T) {
 		"TL431": "431", "TL431A": "431A", "TL431ACLP": "431A", "TL431BIDBZR": "431B", "TL431CLP": "431", "KA431AZ": "431A",
 		"LM1117-3.3": "LM1117-3.3", "LM1117MPX-5.0": "LM1117-5", "LM1117T-ADJ": "LM1117-ADJ", "AMS1117-3.3": "1117-3.3", "LM1117_3V3": "LM1117-3.3", "LD1117V33": "",
 		"LM1086CT-3.3": "1086-3.3", "LM1085IT-12": "1085-12", "LM2940CT-12": "2940-12", "LM2940-5.0": "2940-5", "LP2950CZ-5.0": "2950-5", "LM2931Z-5.0": "2931-5",
+		// transistors
+		"BC547": "BC547", "BC547B": "BC547B", "bc547c": "BC547C", "QBC547": "BC547", "QBC547B": "BC547B", "Q_BC547": "BC547", "Q_NPN_BC547": "BC547", "BC547BTA": "BC547B", "BC547TA": "BC547", "BC546BU": "BC546",
+		"BC547_TO92": "BC547", "BC557B-AP": "BC557B", "BC560C": "BC560C", "BC337-25": "BC337-25", "BC33725": "BC337-25", "BC327-40TA": "BC327-40", "BC337": "BC337", "BC847BLT1G": "BC847B", "BC847B,215": "BC847B", "BC857C-7-F": "BC857C",
+		"BD139": "BD139", "BD139-16": "BD139-16", "BD13910": "BD139-10", "BD140G": "BD140", "XBD139": "BD139", "BC640-10": "BC640-10", "BD237": "BD237", "BD243C": "BD243C", "BD244B": "BD244B", "BD911": "BD911", "BDX53C": "BDX53C",
+		"2N3055": "2N3055", "Q2N3055": "2N3055", "2n3055g": "2N3055", "2N2222": "2N2222", "2N2222A": "2N2222A", "Q2N2222A": "2N2222A", "PN2222A": "PN2222A", "P2N2222A": "PN2222A", "PN2222ATA": "PN2222A", "2N3904": "2N3904", "2N3904TA": "2N3904", "2N3904-TAP": "2N3904",
+		"2N3906BU": "2N3906", "MMBT3904": "MMBT3904", "PMBT3904": "MMBT3904", "SMBT3906": "MMBT3906", "MMBT3904LT1G": "MMBT3904", "MMBT3904-7-F": "MMBT3904", "2N5551": "2N5551", "2N3773": "2N3773",
+		"TIP31": "TIP31", "TIP31C": "TIP31C", "TIP31CG": "TIP31C", "tip31c_TO220": "TIP31C", "QTIP42C": "TIP42C", "TIP120": "TIP120", "TIP127TU": "TIP127", "TIP3055": "TIP3055", "TIP2955G": "TIP2955",
 	}
 	for _, name := range sortedKeys(accepted) {
 		want := accepted[name]
@@ -66,7 +73,8 @@ func TestFindRefusesOtherNames(t *testing.T) {
 		"M1", "M7", "M4", "W1", "W100", "W011", "DS1M", "S1", "S1C", "DW04", "KBP308", "KBP3070", "GBU8", "GBU8Z", "DB108", "2KBP3",
 		"1N4727", "1N4765", "1N4734B", "1N5220B", "1N5282B", "1N5389B", "1N745", "1N760", "BZX84", "BZX84C", "BZX84C0V5", "BZX85C999",
 		"ZENER", "ZENER_2", "ZENER_5", "ZENER_1", "ZENER_0", "ZENER_999V", "ZENER_14", "ZMM", "ZPD0.7", "MMSZ5299B", "MMSZ5C", "Z5", "Z12", "ZD5", "12V", "5V1",
-		"2N3055", "TIP41", "BC547", strings.Repeat("1N4007", 20),
+		"2N3056", "2N2222B", "2N3055X2", "2N3055-X4", "TIP31D", "TIP41E", "TIP", "TIP3", "BC547D", "BC5478", "BC337-6", "BC337-10", "BC1470", "BC847BS", "BC847PN", "BD139C", "BD139-40", "BC", "BD13",
+		"IP31", "C547", "N3904", "QNPN", "Q2N", "NPN", "MMBT3", "MMBT39041", "MJ29555", "IRF9540", "IRF540N", "BS170", "BC548X", strings.Repeat("1N4007", 20),
 	}
 	for _, name := range refused {
 		if row, ok := Default().Find(name); ok {
@@ -94,6 +102,8 @@ func TestRecogniseGivesRolePolarityAndPins(t *testing.T) {
 		{"TL431", want{netlist.RoleShunt, netlist.Positive, []netlist.Pin{ref, netlist.PinAnode, netlist.PinCathode}}},
 		{"KBP307", want{netlist.RoleBridge, 0, []netlist.Pin{netlist.PinAC1, netlist.PinAC2, netlist.PinPlus, netlist.PinMinus}}},
 		{"1N4007", want{netlist.RoleRectifier, 0, []netlist.Pin{netlist.PinAnode, netlist.PinCathode}}},
+		{"BC547B", want{netlist.RoleTransistor, netlist.Positive, nil}},
+		{"TIP42C", want{netlist.RoleTransistor, netlist.Negative, nil}},
 		{"ZENER_12", want{netlist.RoleZener, 0, []netlist.Pin{netlist.PinAnode, netlist.PinCathode}}},
 	} {
 		part, ok := Default().Recognise(c.name)

@@ -7,6 +7,7 @@ package parts
 
 import (
 	"fmt"
+	"math"
 	"strings"
 
 	"railproof/netlist"
@@ -38,9 +39,9 @@ type CaseValue struct {
 // Row is one part of the table.
 type Row struct {
 	Type     string // canonical: "7812", "1N4734A", "317"
-	Kind     string // rectifier, fast, signal, schottky, zener, bridge, fixed, adjustable, shunt or transistor
+	Kind     string // rectifier, fast, signal, schottky, zener, bridge, fixed, adjustable, shunt, transistor or darlington
 	Role     netlist.Role
-	Polarity netlist.Polarity // of a regulator; voltages are magnitudes
+	Polarity netlist.Polarity // of a regulator; of a bipolar transistor Positive for NPN; ratings are magnitudes
 	// Pins is the customary order of terminals on a netlist line.
 	Pins []netlist.Pin
 	// PinsDoubtful is set where netlists do not agree on that order: diodes and zeners drawn as a
@@ -157,6 +158,7 @@ var kinds = []struct {
 	{"adjustable", netlist.RoleAdjustable, []netlist.Pin{netlist.PinIn, netlist.PinReference, netlist.PinOut}},
 	{"shunt", netlist.RoleShunt, []netlist.Pin{netlist.PinReference, netlist.PinAnode, netlist.PinCathode}},
 	{"transistor", netlist.RoleTransistor, nil},
+	{"darlington", netlist.RoleTransistor, nil},
 }
 
 func roleOf(kind string) (netlist.Role, bool) {
@@ -205,6 +207,17 @@ func (r *Row) complete() {
 			r.set(IZM, CaseValue{Value: Value{
 				Number: power.Number / volts.Number, Unit: quantity.Ampere,
 				Source: "calculated PD/VZmax; " + power.Source, Confidence: power.Confidence, Condition: power.Condition,
+			}})
+		}
+	}
+	if _, known := r.Value(HFE); !known {
+		least, ok1 := r.Value(HFEmin)
+		most, ok2 := r.Value(HFEmax)
+		if ok1 && ok2 {
+			// Gains spread by factors, so the middle is the geometric mean.
+			r.set(HFE, CaseValue{Value: Value{
+				Number: math.Sqrt(least.Number * most.Number), Unit: quantity.One,
+				Source: "calculated sqrt(hFEmin hFEmax); " + least.Source, Confidence: least.Confidence, Condition: least.Condition,
 			}})
 		}
 	}

@@ -85,14 +85,18 @@ const (
 	IKAmin  netlist.Symbol = "IKAmin"  // cathode current from which it regulates
 	ZKA     netlist.Symbol = "ZKA"     // highest dynamic impedance
 
-	// Transistors: no rows are built in, a user's table may have them.
-	VCEO netlist.Symbol = "VCEO"
-	VCBO netlist.Symbol = "VCBO"
-	VEBO netlist.Symbol = "VEBO"
-	IC   netlist.Symbol = "IC"
-	VDS  netlist.Symbol = "VDS"
-	VGS  netlist.Symbol = "VGS"
-	ID   netlist.Symbol = "ID"
+	// Transistors. Ratings of PNP types are magnitudes. No field-effect transistor is built in.
+	VCEO   netlist.Symbol = "VCEO"
+	VCBO   netlist.Symbol = "VCBO"
+	VEBO   netlist.Symbol = "VEBO"
+	IC     netlist.Symbol = "IC"  // continuous collector current
+	ICM    netlist.Symbol = "ICM" // peak collector current
+	HFEmin netlist.Symbol = "hFEmin"
+	HFE    netlist.Symbol = "hFE" // typical static current gain; of a Darlington the product
+	HFEmax netlist.Symbol = "hFEmax"
+	VDS    netlist.Symbol = "VDS"
+	VGS    netlist.Symbol = "VGS"
+	ID     netlist.Symbol = "ID"
 )
 
 // column is one word of the tables' vocabulary.
@@ -181,6 +185,10 @@ var vocabulary = []column{
 	{symbol: VCBO, unit: quantity.Volt, low: 5, high: 2000},
 	{symbol: VEBO, unit: quantity.Volt, low: 1, high: 50},
 	{symbol: IC, unit: quantity.Ampere, low: 1e-3, high: 200},
+	{symbol: ICM, unit: quantity.Ampere, low: 1e-3, high: 400},
+	{symbol: HFEmin, unit: quantity.One, low: 3, high: 1e5},
+	{symbol: HFE, unit: quantity.One, low: 3, high: 1e5},
+	{symbol: HFEmax, unit: quantity.One, low: 3, high: 1e6},
 	{symbol: VDS, unit: quantity.Volt, low: 5, high: 2000},
 	{symbol: VGS, unit: quantity.Volt, low: 2, high: 100},
 	{symbol: ID, unit: quantity.Ampere, low: 1e-3, high: 500},

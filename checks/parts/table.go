@@ -16,10 +16,10 @@ import (
 var data embed.FS
 
 // revision of the built-in tables; it grows whenever a value changes.
-const revision = 1
+const revision = 2
 
 // partFiles in the order in which their rows are listed.
-var partFiles = []string{"rectifiers.csv", "bridges.csv", "zeners.csv", "regulators.csv"}
+var partFiles = []string{"rectifiers.csv", "bridges.csv", "zeners.csv", "regulators.csv", "transistors.csv"}
 
 // Table is a set of part rows. It is not changed after it is made and may be shared.
 type Table struct {
@@ -27,7 +27,9 @@ type Table struct {
 	user    []*Row          // of the user's file, in its order; they win
 	index   map[string]*Row // by folded type name, user rows winning
 	numbers numbers         // of the built-in rectifiers and bridges
-	version string
+	// transistors are the type numbers of the built-in ones.
+	transistors map[string]bool
+	version     string
 }
 
 // Default is the built-in table.
@@ -56,7 +58,7 @@ func readBuiltIn() (*Table, []syntax.Diagnostic) {
 			t.rows = append(t.rows, row)
 		}
 	}
-	t.numbers = numbersOf(t.rows)
+	t.numbers, t.transistors = numbersOf(t.rows), transistorsOf(t.rows)
 	return t, problems
 }
 
@@ -102,7 +104,7 @@ func (t *Table) Load(file string, text []byte) (*Table, error) {
 	if err := records.Join(problems); err != nil {
 		return nil, err
 	}
-	merged := &Table{rows: t.rows, numbers: t.numbers, index: map[string]*Row{}}
+	merged := &Table{rows: t.rows, numbers: t.numbers, transistors: t.transistors, index: map[string]*Row{}}
 	for _, row := range t.rows {
 		merged.index[fold(row.Type)] = row
 	}
@@ -157,6 +159,9 @@ func (t *Table) Lookup(typeName string) (*Row, bool) {
 		return row, true
 	}
 	if row, ok := t.graded(fold(typeName)); ok {
+		return row, true
+	}
+	if row, ok := t.ofGainGroup(fold(typeName)); ok {
 		return row, true
 	}
 	return genericZener(fold(typeName))
