@@ -13,6 +13,12 @@ type Law interface {
 	Limit(v, old []float64) bool
 }
 
+// Sharer is a law with a narrow range that Newton's steps would leap over and back: Share is the part of the step from
+// old to v, of all ports of the network together, that ends inside it; 1 where nothing is leapt over.
+type Sharer interface {
+	Share(v, old []float64) float64
+}
+
 // gmin is the conductance across every junction, S (SPICE convention).
 const gmin = 1e-12
 

@@ -108,6 +108,27 @@ func (r *regulator) Limit(v, old []float64) bool {
 	return moved
 }
 
+// Share lets no step leap over the narrow range in which a current-limited output regulates, between the flat ranges of
+// the full and of no current.
+func (r *regulator) Share(v, old []float64) float64 {
+	if r.CurrentLimit == 0 {
+		return 1
+	}
+	width := r.ROut * r.CurrentLimit
+	above := func(v []float64) float64 {
+		target := r.Set
+		if !r.Held {
+			target, _, _ = smoothMin(r.Set, r.Sign*v[0]-r.Dropout, r.Corner)
+		}
+		return r.Sign*v[1] - target + 0.5*width
+	}
+	before, after := above(old), above(v)
+	if before*after >= 0 || math.Abs(before) < width || math.Abs(after) < width {
+		return 1
+	}
+	return before / (before - after)
+}
+
 // ShuntReference is an adjustable shunt reference: it draws cathode current as far as its reference input
 // exceeds Set, with transconductance Gain, down to a smallest cathode voltage.
 type ShuntReference struct {

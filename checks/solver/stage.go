@@ -23,6 +23,7 @@ const (
 	// settledStep is a Newton step, V, that is not worth damping, and that ends a search which rounding keeps
 	// from the bounds above: it moves a junction current by less than a millionth.
 	settledStep  = 1e-8
+	settledShare = 1e-9  // of the largest port voltage, the same beside hundreds of volts
 	patience     = 20    // iterations before settledStep is enough
 	roundingStep = 1e-12 // V, a step that is enough at any time
 )
@@ -206,8 +207,9 @@ func (st *stage) attempt(x, u []float64, t float64, dampFrom int) error {
 				return ErrNewton
 			}
 		}
-		limited := false
-		for _, l := range st.r.sys.laws {
+		limited := st.share()
+		for n := range st.r.sys.laws {
+			l := &st.r.sys.laws[n]
 			if l.law.Limit(st.next[l.first:l.first+l.count], st.v[l.first:l.first+l.count]) {
 				limited = true
 			}
@@ -251,12 +253,30 @@ func (st *stage) attempt(x, u []float64, t float64, dampFrom int) error {
 			st.fresh = true
 			return nil
 		}
-		if step := largest(st.dv); step < roundingStep || iteration > patience && step < settledStep {
+		if step := largest(st.dv); step < roundingStep || iteration > patience && step < settledStep+settledShare*largest(st.v) {
 			st.fresh = true
 			return nil
 		}
 	}
 	return fmt.Errorf("%w (last step %.2g V)", ErrNewton, largest(st.dv))
+}
+
+// share shortens the step dv, and with it next, to what the laws with narrow ranges allow; it reports whether it did.
+func (st *stage) share() bool {
+	part := 1.0
+	for n := range st.r.sys.laws {
+		if l := &st.r.sys.laws[n]; l.sharer != nil {
+			part = math.Min(part, l.sharer.Share(st.next[l.first:l.first+l.count], st.v[l.first:l.first+l.count]))
+		}
+	}
+	if part >= 1 {
+		return false
+	}
+	for j := range st.next {
+		st.dv[j] *= part
+		st.next[j] = st.v[j] + st.dv[j]
+	}
+	return true
 }
 
 // dampFrom is the iteration from which a step must shorten the next one, or is halved until it does: two sharp

@@ -33,9 +33,10 @@ type system struct {
 
 // lawSlot places a law's ports in the port vector.
 type lawSlot struct {
-	law   Law
-	first int
-	count int
+	law    Law
+	sharer Sharer // the law, if it is one
+	first  int
+	count  int
 }
 
 func newSystem(n *Network) (*system, error) {
@@ -58,7 +59,10 @@ func newSystem(n *Network) (*system, error) {
 		case voltageSource, currentSource:
 			s.sources = append(s.sources, Device(k))
 		case nonlinear:
-			s.laws = append(s.laws, lawSlot{d.law, len(s.ports), len(d.ports)})
+			s.laws = append(s.laws, lawSlot{law: d.law, first: len(s.ports), count: len(d.ports)})
+			if sharer, ok := d.law.(Sharer); ok {
+				s.laws[len(s.laws)-1].sharer = sharer
+			}
 			_, regulates := d.law.(*regulator)
 			for range d.ports {
 				s.regulating = append(s.regulating, regulates)

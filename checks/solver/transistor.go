@@ -32,19 +32,26 @@ func (n *Network) AddBipolar(collector, base, emitter Node, q Bipolar) Device {
 
 type bipolar struct{ Bipolar }
 
+// exponential is a junction with gmin across it.
 func exponential(is, v, scale float64) (current, slope float64) {
+	current, slope = junction(is, v, scale)
+	return current + gmin*v, slope + gmin
+}
+
+// junction is IS (exp(v/scale) - 1) and its slope.
+func junction(is, v, scale float64) (current, slope float64) {
 	if x := v / scale; x > negligible {
 		e := is * math.Exp(x)
-		return e - is + gmin*v, e/scale + gmin
+		return e - is, e / scale
 	}
-	return -is + gmin*v, gmin
+	return -is, 0
 }
 
 func (q *bipolar) Evaluate(v []float64, _ float64, i, g []float64) {
 	vce, vbe := q.Sign*v[0], q.Sign*v[1]
 	vbc := vbe - vce
-	forward, gf := exponential(q.IS, vbe, q.NF*q.VT)
-	reverse, gr := exponential(q.IS, vbc, q.NR*q.VT)
+	forward, gf := junction(q.IS, vbe, q.NF*q.VT)
+	reverse, gr := junction(q.IS, vbc, q.NR*q.VT)
 	charge, dcharge := 1.0, 0.0 // 1/qb and its derivative by vbc
 	if q.VAF > 0 {
 		charge, dcharge = 1-vbc/q.VAF, -1/q.VAF
@@ -53,12 +60,13 @@ func (q *bipolar) Evaluate(v []float64, _ float64, i, g []float64) {
 		}
 	}
 	transport := (forward - reverse) * charge
-	collector := transport - reverse/q.BR
-	base := forward/q.BF + reverse/q.BR
+	// gmin lies across the junctions, not from collector to emitter: an open emitter follows the base.
+	collector := transport - reverse/q.BR - gmin*vbc
+	base := forward/q.BF + reverse/q.BR + gmin*(vbe+vbc)
 	// Derivatives by (vbe, vbc).
 	cbe := gf * charge
-	cbc := -gr*charge + (forward-reverse)*dcharge - gr/q.BR
-	bbe, bbc := gf/q.BF, gr/q.BR
+	cbc := -gr*charge + (forward-reverse)*dcharge - gr/q.BR - gmin
+	bbe, bbc := gf/q.BF+gmin, gr/q.BR+gmin
 	i[0], i[1] = q.Sign*collector, q.Sign*base
 	// vbc = vbe - vce.
 	g[0], g[1] = -cbc, cbe+cbc
