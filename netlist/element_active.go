@@ -124,7 +124,7 @@ func (x *expander) transistor(lv *level, c *elementCard) {
 		}
 	}
 	t.Area *= x.copies(lv, c)
-	x.add(lv, c, nodes, t, typeName)
+	x.add(lv, c, nodes, t, x.typeOf(typeName, c))
 }
 
 func (x *expander) fet(lv *level, c *elementCard) {
@@ -149,8 +149,6 @@ func (x *expander) fet(lv *level, c *elementCard) {
 		}
 		f.Model = m.fet()
 		f.Width, f.Length = m.or("w", 0), m.or("l", 0)
-	} else {
-		x.remark(RemarkAssumption, c.line.Start(), lv.prefix+c.shown, "no model for "+typeName+": taken as an N channel with VTO 0 V, KP 2e-5 A/V² (defaults of an empty model card)")
 	}
 	for _, key := range []string{"w", "l"} {
 		if v, ok := c.assigned(key); ok {

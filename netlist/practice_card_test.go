@@ -107,7 +107,7 @@ func TestPracticeOfElements(t *testing.T) {
 		{"Q with substrate and a type that reads like a number", in("Q1 c b e 0 2N9999"), is("Q1(c b e 0)=2N9999?"), ""},
 		{"Q with area", in("Q1 c b e QX 2\n.model QX PNP(BF=50)"), is("Q1(c b e)=QX[-1,BF=50]"), ""},
 		{"M", in("M1 d g s 0 NX W=1u L=1u\n.model NX NMOS"), is("M1(d g s 0)=NX[+1]"), ""},
-		{"M of three nodes", in("M1 d g s IRF1"), is("M1(d g s s)=IRF1?"), "assumed: no model for IRF1: taken as an N channel"},
+		{"M of three nodes", in("M1 d g s IRF1"), is("M1(d g s s)=IRF1?"), ""},
 		{"M of another kind", in("M1 d g s NX\n.model NX VDMOS(Rg=3)"), is("M1(d g s s)=unknown"), ""},
 		{"S with ON", in("S1 a 0 p 0 sw ON\n.model SW SW(VT=2)"), is("S1(a 0 p 0)=SW[VT=2,on=true]"), ""},
 		{"S with OFF", in("S1 a 0 p 0 SW OFF\n.model SW VSWITCH(VON=3 VOFF=1)"), is("S1(a 0 p 0)=SW[VT=2,on=false]"), ""},

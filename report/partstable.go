@@ -64,7 +64,11 @@ func pinWord(p netlist.Pin, role netlist.Role) string {
 // WritePart writes a row of the parts table: every value with its condition, source and how sure it is.
 func WritePart(w io.Writer, row *parts.Row, colour bool) error {
 	l := &ledger{palette: newPalette(colour)}
-	l.line(l.strong.Sprint(printable(row.Type)) + "  " + printable(row.Kind) + "  (" + printable(row.Origin) + ")")
+	kind := row.Kind
+	if row.Role == netlist.RoleTransistor && row.Polarity != 0 {
+		kind = parts.PolarityWord(row.Polarity) + " " + kind
+	}
+	l.line(l.strong.Sprint(printable(row.Type)) + "  " + printable(kind) + "  (" + printable(row.Origin) + ")")
 	if len(row.Pins) > 0 {
 		var pins []string
 		for _, p := range row.Pins {
@@ -95,6 +99,10 @@ func WritePart(w io.Writer, row *parts.Row, colour bool) error {
 		l.line("")
 		l.hang("  law   ", "        ", fmt.Sprintf("I = %.3g A (exp(V/(%.3g VT)) - 1), RS %s; %s",
 			row.Model.IS, row.Model.N, quantity.Format(row.Model.RS, quantity.Ohm, 3), row.Model.Quality))
+	}
+	if law := row.Bipolar(); law != nil {
+		l.line("")
+		l.hang("  law   ", "        ", law.Quality)
 	}
 	_, err := io.WriteString(w, l.out.String())
 	return err

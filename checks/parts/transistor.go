@@ -17,10 +17,10 @@ type BipolarLaw struct {
 	IS       float64          // A
 	BF       float64          // current gain
 	NF       float64          // 1; of a Darlington 2
-	// GainLow and GainHigh are the ends of the gain relative to BF, 0 where they are not known.
-	GainLow, GainHigh float64
-	Quality           string // how it was found, in words
-	Confidence        string // of the gain
+	// LeastGain and MostGain are the ends of the gain, 0 where they are not known.
+	LeastGain, MostGain float64
+	Quality             string // how it was found, in words
+	Confidence          string // of the gain
 }
 
 // The base-emitter voltage of a silicon transistor in V, at the fraction of its rated collector current at which it
@@ -37,7 +37,7 @@ func (r *Row) Bipolar() *BipolarLaw {
 		return nil
 	}
 	least, okLeast := r.Value(HFEmin)
-	most, okMost := r.Value(HFEmax)
+	most, _ := r.Value(HFEmax)
 	gain, okGain := r.Value(HFE)
 	if !okGain {
 		gain, okGain = least, okLeast
@@ -51,13 +51,12 @@ func (r *Row) Bipolar() *BipolarLaw {
 		law.NF, junctions = 2, "two junctions, VBE"
 	}
 	law.IS = baseEmitterFraction * rated.Number / math.Exp(baseEmitterVoltage/ThermalVoltage)
-	if okLeast {
-		law.GainLow = least.Number/gain.Number - 1
+	law.LeastGain, law.MostGain = least.Number, most.Number
+	symbol := HFE
+	if okLeast && gain.Number == least.Number {
+		symbol = HFEmin
 	}
-	if okMost {
-		law.GainHigh = most.Number/gain.Number - 1
-	}
-	law.Quality = fmt.Sprintf("%s with BF %.3g (hFE) and %s %.3g V at %s (common practice)", PolarityWord(r.Polarity), law.BF, junctions,
+	law.Quality = fmt.Sprintf("%s with BF %.4g (%s) and %s %.3g V at %s (common practice)", PolarityWord(r.Polarity), law.BF, symbol, junctions,
 		law.NF*baseEmitterVoltage, quantity.Format(baseEmitterFraction*rated.Number, quantity.Ampere, 3))
 	return law
 }

@@ -109,11 +109,11 @@ func TestBipolarLaw(t *testing.T) {
 	if math.Abs(law.BF-300) > 0.01 || math.Abs(law.IS/1.471e-14-1) > 0.005 || law.NF != 1 || law.Polarity != netlist.Positive {
 		t.Errorf("BC547B: %+v", law)
 	}
-	if math.Abs(law.GainLow-(200./300-1)) > 1e-9 || math.Abs(law.GainHigh-0.5) > 1e-9 || law.Confidence != Memory {
-		t.Errorf("BC547B: gain %+.3g..%+.3g, %s", law.GainLow, law.GainHigh, law.Confidence)
+	if law.LeastGain != 200 || law.MostGain != 450 || law.Confidence != Memory {
+		t.Errorf("BC547B: gain %g..%g, %s", law.LeastGain, law.MostGain, law.Confidence)
 	}
 	pair := mustFind(t, "TIP127").Bipolar()
-	if pair.BF != 1000 || pair.Polarity != netlist.Negative {
+	if pair.BF != 1000 || pair.LeastGain != 1000 || pair.MostGain != 0 || !strings.Contains(pair.Quality, "hFEmin") || pair.Polarity != netlist.Negative {
 		t.Errorf("TIP127: %+v", pair)
 	}
 	if v := pair.NF * ThermalVoltage * math.Log(0.5/pair.IS); math.Abs(v-1.4) > 1e-9 {

@@ -34,12 +34,12 @@ type bipolar struct{ Bipolar }
 
 // exponential is a junction with gmin across it.
 func exponential(is, v, scale float64) (current, slope float64) {
-	current, slope = junction(is, v, scale)
+	current, slope = shockley(is, v, scale)
 	return current + gmin*v, slope + gmin
 }
 
-// junction is IS (exp(v/scale) - 1) and its slope.
-func junction(is, v, scale float64) (current, slope float64) {
+// shockley is IS (exp(v/scale) - 1) and its slope.
+func shockley(is, v, scale float64) (current, slope float64) {
 	if x := v / scale; x > negligible {
 		e := is * math.Exp(x)
 		return e - is, e / scale
@@ -50,8 +50,8 @@ func junction(is, v, scale float64) (current, slope float64) {
 func (q *bipolar) Evaluate(v []float64, _ float64, i, g []float64) {
 	vce, vbe := q.Sign*v[0], q.Sign*v[1]
 	vbc := vbe - vce
-	forward, gf := junction(q.IS, vbe, q.NF*q.VT)
-	reverse, gr := junction(q.IS, vbc, q.NR*q.VT)
+	forward, gf := shockley(q.IS, vbe, q.NF*q.VT)
+	reverse, gr := shockley(q.IS, vbc, q.NR*q.VT)
 	charge, dcharge := 1.0, 0.0 // 1/qb and its derivative by vbc
 	if q.VAF > 0 {
 		charge, dcharge = 1-vbc/q.VAF, -1/q.VAF

@@ -59,8 +59,12 @@ func (p *Plan) Assumptions() []Assumption {
 				list = append(list, Assumption{e.Name, "no model for " + word(e.TypeName) + ": forward law by default (IS 1e-14 A, N 1)", "from memory"})
 			}
 		case netlist.Transistor:
-			if d.Model == nil {
-				list = append(list, Assumption{e.Name, "no model for " + word(e.TypeName) + ": NPN with IS 1e-16 A, BF 100", "defaults of an empty model card"})
+			if a, ok := p.supply.transistorAssumption(netlist.ElementID(k), &d); ok {
+				list = append(list, a)
+			}
+		case netlist.Fet:
+			if d.Model != nil && d.Model.Bare {
+				list = append(list, Assumption{e.Name, "by the defaults of an empty model card (VTO 0 V, KP 2e-5 A/V²)", "model " + d.Model.Name})
 			}
 		}
 	}

@@ -35,7 +35,7 @@ func (c *collector) checkStresses(id netlist.ElementID, e *netlist.Element, dev 
 		c.put(DCCurrent, quantity.Ampere, i, func(st solver.Stats) (float64, float64) { return math.Abs(st.Mean), math.NaN() })
 	case netlist.Transistor:
 		sign := 1.0
-		if d.Model != nil && d.Model.Polarity < 0 {
+		if c.plan.supply.bipolarPolarity(id, &d) < 0 {
 			sign = -1
 		}
 		c.put(MaxVEB, quantity.Volt, scaled(-sign, c.voltage(dev, 1)), positive)

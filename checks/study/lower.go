@@ -126,13 +126,23 @@ func (low *lowered) add(s *Supply, id netlist.ElementID, e *netlist.Element, set
 	case netlist.Diode:
 		dev = n.AddDiode(at(0), at(1), s.diode(id, &d, set, plan))
 	case netlist.Transistor:
-		dev = n.AddBipolar(at(0), at(1), at(2), s.bipolar(&d, shift(symbolGain), plan.temperature(set)))
+		law, why := s.bipolar(id, &d, shift(symbolGain), plan.temperature(set))
+		if why != "" {
+			low.block(n, e, why)
+			return nil
+		}
+		dev = n.AddBipolar(at(0), at(1), at(2), law)
 	case netlist.Fet:
 		bulk := at(3)
 		if len(e.Nodes) < 4 {
 			bulk = at(2)
 		}
-		dev = n.AddFet(at(0), at(1), at(2), bulk, s.fet(&d))
+		law, why := s.fet(id, &d)
+		if why != "" {
+			low.block(n, e, why)
+			return nil
+		}
+		dev = n.AddFet(at(0), at(1), at(2), bulk, law)
 	case netlist.Switch:
 		if d.Model == nil {
 			low.block(n, e, "no .model for the switch")

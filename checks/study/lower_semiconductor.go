@@ -67,39 +67,6 @@ func (s *Supply) zenerVoltage(id netlist.ElementID) (float64, bool) {
 	return 0, false
 }
 
-// bipolar returns the law of a transistor with its current gain multiplied by a factor, its junctions at a temperature.
-func (s *Supply) bipolar(d *netlist.Transistor, gain, celsius float64) solver.Bipolar {
-	vt := solver.ThermalVoltage(celsius)
-	q := solver.Bipolar{Sign: 1, IS: 1e-16, BF: 100, BR: 1, NF: 1, NR: 1, VT: vt}
-	if m := d.Model; m != nil {
-		q = solver.Bipolar{
-			Sign: float64(m.Polarity), IS: m.IS, BF: m.BF, BR: m.BR, NF: m.NF, NR: m.NR,
-			VAF: m.VAF, RB: m.RB, RC: m.RC, RE: m.RE, VT: vt,
-		}
-	}
-	q.IS = saturation(q.IS, q.NF, s.Circuit.Temperature, celsius)
-	q.BF *= gain
-	if area := d.Area; area > 0 && area != 1 {
-		q.IS *= area
-		q.RB, q.RC, q.RE = q.RB/area, q.RC/area, q.RE/area
-	}
-	return q
-}
-
-func (s *Supply) fet(d *netlist.Fet) solver.Fet {
-	f := solver.Fet{Sign: 1, KP: 2e-5}
-	if m := d.Model; m != nil {
-		f = solver.Fet{
-			Sign: float64(m.Polarity), VTO: m.VTO, KP: m.KP, Lambda: m.Lambda, Gamma: m.Gamma, Phi: m.Phi,
-			RD: m.RD, RS: m.RS,
-		}
-	}
-	if d.Width > 0 && d.Length > 0 {
-		f.KP *= d.Width / d.Length
-	}
-	return f
-}
-
 // regulator adds a regulator, or says why it cannot.
 func (low *lowered) regulator(s *Supply, id netlist.ElementID, e *netlist.Element, d *netlist.Regulator, set *Setting, plan *Plan) (solver.Device, string) {
 	n := low.net

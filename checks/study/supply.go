@@ -126,8 +126,10 @@ func (s *Supply) recognise(e *netlist.Element) (*parts.Row, bool) {
 		return nil, false
 	case netlist.Regulator:
 		return row, row.Role == netlist.RoleRegulator || row.Role == netlist.RoleAdjustable || row.Role == netlist.RoleShunt
-	case netlist.Transistor, netlist.Fet:
+	case netlist.Transistor:
 		return row, row.Role == netlist.RoleTransistor
+	case netlist.Fet:
+		return row, row.Role == netlist.RoleTransistor && row.Polarity == 0 // npn and pnp are bipolar
 	}
 	return nil, false
 }

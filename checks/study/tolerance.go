@@ -153,7 +153,9 @@ func (p *Plan) elementTolerances(id netlist.ElementID, e *netlist.Element) {
 		}
 		add("VZ", low, high, origin)
 	case netlist.Transistor:
-		if d.Model != nil && !d.Model.Bare {
+		if law := s.tableLaw(id, &d); law != nil {
+			p.gainTolerance(id, law)
+		} else if d.Model != nil && !d.Model.Bare {
 			add(symbolGain, -gainLow, gainHigh, byPractice)
 		}
 	case netlist.VoltageSource:
