@@ -2,6 +2,7 @@ package netlist
 
 import (
 	"fmt"
+	"regexp"
 	"strings"
 
 	"railproof/netlist/quantity"
@@ -43,8 +44,16 @@ func (x *expander) diode(lv *level, c *elementCard) {
 		}
 	}
 	d.Area *= x.copies(lv, c)
-	x.add(lv, c, nodes, d, x.typeOf(typeName, c))
+	typeName = x.typeOf(typeName, c)
+	if voltageName.MatchString(typeName) && x.recognised("ZENER_"+typeName) && (d.Model == nil || d.Model.BV == 0) {
+		x.remark(RemarkAssumption, c.line.Start(), lv.prefix+c.shown, "a diode named "+typeName+" is taken as a zener of that voltage")
+		typeName = "ZENER_" + typeName
+	}
+	x.add(lv, c, nodes, d, typeName)
 }
+
+// voltageName is the name of a diode that is nothing but a voltage: 5V1, 12V, 5.1V.
+var voltageName = regexp.MustCompile(`^\d{1,3}(?:[vV]\d{0,2}|\.\d{1,2}[vV])$`)
 
 // typeOf is the name by which ratings are looked up: the element's own type field if the model is a
 // catch-all, else the model name.

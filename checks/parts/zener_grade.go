@@ -69,10 +69,19 @@ func gradeName(letter string) string {
 	return letter
 }
 
-var genericForm = regexp.MustCompile(`^ZENER(\d{1,3}(?:V\d{1,2})?)([ABCD]?)$`)
+var genericForm = regexp.MustCompile(`^ZENER(\d{1,3}(?:V\d{1,2})?)([ABCDM]?)$`)
+
+// genericGrade is the tolerance of a zener known by its voltage: the Pro Electron letters, and M of IEC 60062.
+func genericGrade(letter string) (width float64, ok bool) {
+	if letter == "M" {
+		return 0.20, true
+	}
+	width, ok = europeanGrade[letter]
+	return width, ok
+}
 
 // genericZener makes the row of a zener of which only the voltage is known, and the tolerance where a
-// Pro Electron letter gives it. It has no power, current or temperature rating.
+// letter of its type gives it. It has no power, current or temperature rating.
 func genericZener(name string) (*Row, bool) {
 	m := genericForm.FindStringSubmatch(name)
 	if m == nil {
@@ -87,7 +96,7 @@ func genericZener(name string) (*Row, bool) {
 		Note: "only the voltage is known, from the type name", Origin: "type name",
 	}
 	row.set(VZ, CaseValue{Value: Value{Number: volts, Unit: quantity.Volt, Source: "type name", Confidence: Stated}})
-	if width, ok := europeanGrade[m[2]]; ok {
+	if width, ok := genericGrade(m[2]); ok {
 		condition := fmt.Sprintf("grade %s, %g %%", m[2], width*100)
 		row.set(VZmin, CaseValue{Value: Value{Number: volts * (1 - width), Unit: quantity.Volt, Source: fromMemory, Confidence: Memory, Condition: condition}})
 		row.set(VZmax, CaseValue{Value: Value{Number: volts * (1 + width), Unit: quantity.Volt, Source: fromMemory, Confidence: Memory, Condition: condition}})

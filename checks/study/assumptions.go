@@ -47,6 +47,12 @@ func (p *Plan) Assumptions() []Assumption {
 				list = append(list, Assumption{e.Name, "does not repeat: its steady state is that of its final value, " + quantity.Format(level, quantity.Volt, 4), "its waveform"})
 			}
 		case netlist.Diode:
+			if a, ok := p.supply.zenerAssumption(netlist.ElementID(k), &d); ok {
+				list = append(list, a)
+			}
+			if p.supply.unknownBreakdown(netlist.ElementID(k), &d) != "" {
+				continue
+			}
 			if d.Model != nil && !d.Model.Bare {
 				continue
 			}

@@ -124,6 +124,10 @@ func (low *lowered) add(s *Supply, id netlist.ElementID, e *netlist.Element, set
 			}
 		}
 	case netlist.Diode:
+		if why := s.unknownBreakdown(id, &d); why != "" {
+			low.block(n, e, why)
+			return nil
+		}
 		dev = n.AddDiode(at(0), at(1), s.diode(id, &d, set, plan))
 	case netlist.Transistor:
 		law, why := s.bipolar(id, &d, shift(symbolGain), plan.temperature(set))
