@@ -1,6 +1,9 @@
 package study
 
 import (
+	"regexp"
+	"strings"
+
 	"railproof/checks/parts"
 	"railproof/checks/solver"
 	"railproof/netlist"
@@ -15,13 +18,27 @@ func (s *Supply) tableLaw(id netlist.ElementID, d *netlist.Transistor) *parts.Bi
 	return nil
 }
 
-// bipolarPolarity is that of the model card, else of the parts table; 0 if nothing states it.
+// polarityName is a type name that says no more than the polarity: NPN, QPNP, Q_NPN_BCE.
+var polarityName = regexp.MustCompile(`(?i)^(?:Q_?)?(NPN|PNP)(?:[^A-Z].*)?$`)
+
+// emptyCard is the model card of which nothing is written but the polarity: the defaults of the card.
+func emptyCard(p netlist.Polarity) *netlist.TransistorModel {
+	return &netlist.TransistorModel{Polarity: p, IS: 1e-16, BF: 100, BR: 1, NF: 1, NR: 1, Bare: true}
+}
+
+// bipolarPolarity is that of the model card, else of the parts table, else of the type name; 0 if nothing states it.
 func (s *Supply) bipolarPolarity(id netlist.ElementID, d *netlist.Transistor) netlist.Polarity {
 	if d.Model != nil {
 		return d.Model.Polarity
 	}
 	if law := s.tableLaw(id, d); law != nil {
 		return law.Polarity
+	}
+	if m := polarityName.FindStringSubmatch(s.Circuit.Elements[id].TypeName); m != nil {
+		if strings.EqualFold(m[1], "PNP") {
+			return netlist.Negative
+		}
+		return netlist.Positive
 	}
 	return 0
 }
@@ -41,6 +58,9 @@ func (s *Supply) bipolar(id netlist.ElementID, d *netlist.Transistor, gain, cels
 		q.IS, q.BF, q.NF = saturation(law.IS, 1, s.Circuit.Temperature, celsius), law.BF, law.NF
 	} else {
 		m := d.Model
+		if m == nil {
+			m = emptyCard(polarity)
+		}
 		q.IS, q.BF, q.BR, q.NF, q.NR = saturation(m.IS, m.NF, s.Circuit.Temperature, celsius), m.BF, m.BR, m.NF, m.NR
 		q.VAF, q.RB, q.RC, q.RE = m.VAF, m.RB, m.RC, m.RE
 	}
@@ -81,6 +101,8 @@ func (s *Supply) transistorAssumption(id netlist.ElementID, d *netlist.Transisto
 		return Assumption{e.Name, "model " + d.Model.Name + " states no more than " + parts.PolarityWord(d.Model.Polarity) + ": gain and VBE of the table", s.origins[id] + memoryMark(law.Confidence)}, true
 	case d.Model != nil && d.Model.Bare:
 		return Assumption{e.Name, parts.PolarityWord(d.Model.Polarity) + " by the defaults of an empty model card (IS 1e-16 A, BF 100)", "model " + d.Model.Name}, true
+	case d.Model == nil && s.bipolarPolarity(id, d) != 0:
+		return Assumption{e.Name, parts.PolarityWord(s.bipolarPolarity(id, d)) + " by the name " + e.TypeName + ", with the defaults of an empty model card (IS 1e-16 A, BF 100)", "type name"}, true
 	case d.Model != nil && row != nil && row.Polarity != 0 && row.Polarity != d.Model.Polarity:
 		return Assumption{e.Name, parts.PolarityWord(d.Model.Polarity) + " by its model card, though " + row.Type + " is " + parts.PolarityWord(row.Polarity), "model " + d.Model.Name}, true
 	}

@@ -95,6 +95,17 @@ func TestUnknownTransistorBlocksItsIsland(t *testing.T) {
 	}
 }
 
+// A name that says nothing but the polarity is taken at its word: with IS 1e-16 A, VBE = 25.9 mV x ln(9.2 mA/1e-16 A) = 0.83 V.
+func TestPolarityInTheName(t *testing.T) {
+	for name, sign := range map[string]string{"NPN": "", "QNPN": "", "Q_NPN_BCE": "", "pnp": "-", "Q_PNP": "-"} {
+		s := namedSupply(t, "x\nV1 in 0 "+sign+"20\nVB b 0 "+sign+"10\nQ1 in b out "+name+"\nRL out 0 1k\n")
+		within(t, Nominal(context.Background(), s, false), "RL", PeakVoltage, 9.17, 0.002)
+		if text := assumptionsOf(NewPlan(s), "Q1"); !strings.Contains(text, "by the name "+name) {
+			t.Errorf("%s: assumed %q", name, text)
+		}
+	}
+}
+
 // The gain spreads over the published ends: BC547B 200..450 about 300, -33 %..+50 %; of a TIP122 only the least, 1000,
 // is known.
 func TestGainSpread(t *testing.T) {
