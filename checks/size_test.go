@@ -95,6 +95,9 @@ func TestSizeZenerResistor(t *testing.T) {
 // next crest: C = I t/dV = 1.85 to 2.33 mF, over 0.8 for its age 2.3 to 2.9 mF: 3.3 mF of E6. At high line the diodes
 // then carry w C V sin(theta) = 314/s x 4 mF x 21.8 V x 0.3 = 8 A, and 4 to 5 A at 1 mF; they are rated for 7 A.
 func TestSizeReservoir(t *testing.T) {
+	if testing.Short() {
+		t.Skip("takes long; held by the full run")
+	}
 	list := sizesOf(t, `V1  a   b   SIN(0 20 50)
 RW  a   c   0.005
 D1  c   raw DI
@@ -170,6 +173,9 @@ func TestSizeBleeder(t *testing.T) {
 // L = R/(3 w) = 2000/942 = 2.12 H, by a tolerance of a fifth and a frequency 1 % lower 2.68 H; the harmonics beyond the
 // second ask for a little more: 2.7 H or 3.3 H of E12.
 func TestSizeChoke(t *testing.T) {
+	if testing.Short() {
+		t.Skip("takes long; held by the full run")
+	}
 	s := sizeOf(t, sizes(t, filepath.Join(demos, "choke-inductance", "fail.cir")), "choke-inductance", "L1")
 	within(t, s, "L", 2.7, 3.3)
 }

@@ -22,6 +22,9 @@ func wavesOf(t *testing.T, file string, waves bool) *Result {
 
 // The extreme of each curve is the stress that was judged, and it lies beyond the limit where the finding says so.
 func TestWavesShowWhatWasJudged(t *testing.T) {
+	if testing.Short() {
+		t.Skip("takes long; held by the full run")
+	}
 	shown := map[study.Quantity]int{}
 	for _, file := range []string{"../testdata/failing.cir", "../testdata/workshop-supply.cir"} {
 		for _, f := range wavesOf(t, file, true).Findings {
@@ -61,6 +64,9 @@ func TestWavesShowWhatWasJudged(t *testing.T) {
 
 // Without being asked, no curve is followed.
 func TestNoWavesUnlessAsked(t *testing.T) {
+	if testing.Short() {
+		t.Skip("takes long; held by the full run")
+	}
 	for _, f := range wavesOf(t, "../testdata/failing.cir", false).Findings {
 		if f.Wave != nil {
 			t.Fatalf("%s %s carries a curve", f.Element, f.Check)

@@ -22,6 +22,9 @@ func supplyOf(t *testing.T, deck, duty string) *Supply {
 // Whatever condition was the worst of a stress - steady, cold, line off, an output shorted - solving it again on
 // the same supply gives the stress again.
 func TestAgainIsTheSame(t *testing.T) {
+	if testing.Short() {
+		t.Skip("takes long; held by the full run")
+	}
 	s := supplyOf(t, `V1 a 0 SIN(0 20 50)
 RW a b 0.5
 D1 b raw 1N4004

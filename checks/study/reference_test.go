@@ -66,6 +66,9 @@ func tolerance(quantity string) (relative, absolute float64) {
 // Every stress of every reference circuit within 0.2 % for voltages, means and powers and 0.5 % for peaks
 // and RMS currents, or 1 mV, 10 uA, 10 uW near zero.
 func TestReferences(t *testing.T) {
+	if testing.Short() {
+		t.Skip("takes long; held by the full run")
+	}
 	for name, r := range readReferences(t) {
 		t.Run(name, func(t *testing.T) {
 			c, d, faults, err := netlist.Read(netlist.Source{File: filepath.Join("../../testdata/reference", r.Circuit), Library: parts.Default()})

@@ -87,6 +87,9 @@ func worstBy(all []comparison, group func(comparison) string) (names []string, w
 
 // The page is what a fresh run finds: the same circuits and rows, and no worst difference grown.
 func TestValidationPage(t *testing.T) {
+	if testing.Short() {
+		t.Skip("takes long; held by the full run")
+	}
 	all, titles := validate(t)
 	var b strings.Builder
 	fmt.Fprintf(&b, `# Validation of the engine

@@ -15,6 +15,9 @@ const vertexTolerance = 2e-3
 // Every vertex of the tolerances, both ends of up to eight parameters in every combination, around every base condition:
 // none is worse than what the search of signs found.
 func TestEveryVertex(t *testing.T) {
+	if testing.Short() {
+		t.Skip("takes long; held by the full run")
+	}
 	for _, file := range []string{"tube-display", "workshop-supply", "checks/zener-regulation/fail", "checks/regulator-headroom/fail"} {
 		t.Run(file, func(t *testing.T) {
 			c, d, faults, err := netlist.Read(netlist.Source{File: "../../testdata/" + file + ".cir", Library: parts.Default()})

@@ -18,6 +18,9 @@ var shown = regexp.MustCompile("(?s)<!-- output of: railproof ([^\n]*?)(, first 
 
 // The outputs shown in the README are what the program prints.
 func TestReadmeShowsRealOutput(t *testing.T) {
+	if testing.Short() {
+		t.Skip("takes long; held by the full run")
+	}
 	root := filepath.Join("..", "..")
 	program := filepath.Join(t.TempDir(), "railproof")
 	if out, err := exec.Command("go", "build", "-o", program, ".").CombinedOutput(); err != nil {
