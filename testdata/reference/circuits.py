@@ -3,7 +3,8 @@
 import importlib
 from dataclasses import dataclass, field
 
-CHAPTERS = ("rectifiers", "variants", "filters", "transformers", "shunts", "regulators", "coldstarts", "direct", "corners")
+CHAPTERS = ("rectifiers", "variants", "filters", "transformers", "shunts", "regulators", "coldstarts", "direct", "corners",
+            "stabilizers", "extremes", "switchons")
 LIST = []
 
 

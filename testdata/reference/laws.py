@@ -3,7 +3,7 @@
 Every law returns (current, slope). Voltages in V, currents in A, slopes in S.
 """
 
-from math import exp, log1p
+from math import exp, log1p, sqrt
 
 BOLTZMANN = 1.380649e-23  # J/K, exact (SI 2019)
 CHARGE = 1.602176634e-19  # C, exact (SI 2019)
@@ -91,14 +91,13 @@ def bipolar(vbe, vbc, IS, BF, BR):
     return f - r - r / BR, f / BF + r / BR
 
 
-def channel(vgs, vds, VTO, KP):
-    """Drain current of an n-channel MOSFET, level 1 (Shichman and Hodges 1968), for vds >= 0, LAMBDA = 0."""
-    over = vgs - VTO
+def channel(vgs, vds, VTO, KP, LAMBDA=0.0, GAMMA=0.0, PHI=0.6, vbs=0.0):
+    """Drain current of an n-channel MOSFET, level 1 (Shichman and Hodges 1968), for vds >= 0 and vbs <= PHI."""
+    over = vgs - VTO - GAMMA * (sqrt(PHI - vbs) - sqrt(PHI))
     if over <= 0:
         return GMIN * vds
-    if vds < over:
-        return KP * (over - vds / 2) * vds + GMIN * vds
-    return KP / 2 * over * over + GMIN * vds
+    low = min(vds, over)
+    return KP * (over - low / 2) * low * (1 + LAMBDA * vds) + GMIN * vds
 
 
 def root(residual, low, high):

@@ -30,8 +30,7 @@ def read(cards):
             models[name]["polarity"] = kind
         elif line.startswith("*: rate"):
             fields = line.split()
-            rates[fields[2]] = {k: float(v.rstrip("VA")) if not v.endswith("mA") else float(v[:-2]) / 1e3
-                                for k, v in (p.split("=") for p in fields[3:])}
+            rates[fields[2]] = {k: number(re.sub("(Ohm|[VA])$", "", v)) for k, v in (p.split("=") for p in fields[3:])}
         elif line[0].isalpha():
             fields = line.split()
             elements[fields[0]] = fields[1:]
@@ -48,6 +47,24 @@ def wave(fields, t):
         return p[0] + p[1] * np.sin(2 * np.pi * p[2] * t + np.pi / 180 * p[5])
     corners = np.cumsum([0, p[3], p[5], p[4]])
     return np.interp((t - p[2]) % p[6], corners, [p[0], p[1], p[1], p[0]])
+
+
+def pins(fields, rate, nodes):
+    """Voltages in and out over the ground or adjust pin, as magnitudes, the sign, and the set voltage."""
+    vset = rate["VOUT"] if "VOUT" in rate else rate["VREF"]
+    sign = -1 if fields[3].startswith("79") or vset < 0 else 1
+    ground = nodes[fields[1]]
+    return sign * (nodes[fields[0]] - ground), sign * (nodes[fields[2]] - ground), sign, abs(vset)
+
+
+def drain(fields, m, nodes):
+    """Level 1 drain current for vds >= 0 with body effect and channel-length modulation; bulk is the fourth node."""
+    d, g, s, b = (nodes[n] for n in fields[:4])
+    size = {k: number(v) for k, v in (p.split("=") for p in fields[5:])}
+    vds, gamma, phi = d - s, m.get("GAMMA", 0), m.get("PHI", 0.6)
+    over = np.maximum(g - s - m["VTO"] - gamma * (np.sqrt(phi - np.minimum(b - s, phi)) - phi ** 0.5), 0)
+    low = np.minimum(vds, over)
+    return m["KP"] * size["W"] / size["L"] * (over - low / 2) * low * (1 + m.get("LAMBDA", 0) * vds) + GMIN * vds
 
 
 def residual(cards, t, nodes, currents):
@@ -79,21 +96,32 @@ def residual(cards, t, nodes, currents):
             continue
         if kind == "M":
             leg(f[0], currents[e]), leg(f[2], -currents[e])
+            fault(e, currents[e], drain(f, models[f[4]], nodes))
+            continue
+        if kind == "X" and "VDO" not in rates[e]:  # shunt reference: cathode, reference, anode
+            i, vref = currents[e], nodes[f[1]] - nodes[f[2]]
+            leg(f[0], i), leg(f[2], -i)
+            on = i > 1e-12
+            fault(e, np.where(on, vref, np.maximum(vref, rates[e]["VREF"])), np.full(len(t), rates[e]["VREF"]))
             continue
         if kind == "X":
             into, out = currents[e + ".in"], currents[e + ".out"]
             leg(f[0], into), leg(f[2], out), leg(f[1], -into - out)
-            sign = -1 if f[3].startswith("79") else 1
             rate = rates[e]
-            vin, vout = sign * (nodes[f[0]] - nodes[f[1]]), sign * (nodes[f[2]] - nodes[f[1]])
-            fault(e + " IQ", sign * (into + out), np.full(len(t), rate["IQ"]))
+            vin, vout, sign, vset = pins(f, rate, nodes)
+            fault(e + " IQ", sign * (into + out), np.full(len(t), rate.get("IQ", rate.get("IADJ"))))
             blocked = np.abs(out) < 1e-9  # output held above its target by a capacitor
-            fault(e + " law", np.where(blocked, 0, vout), np.where(blocked, 0, np.minimum(rate["VOUT"], vin - rate["VDO"])))
+            target = np.minimum(vset, vin - rate["VDO"]) + sign * rate.get("Rout", 0) * out
+            fault(e + " law", np.where(blocked, 0, vout), np.where(blocked, 0, target))
             continue
         i, v = currents[e], nodes[f[0]] - nodes[f[1]]
         leg(f[0], i), leg(f[1], -i)
         if kind == "R":
             fault(e, i * number(f[2]), v)
+        elif kind == "S":
+            m = models[f[4]]
+            closed = nodes[f[2]] - nodes[f[3]] > m["VT"]
+            fault(e, i, v / np.where(closed, m["RON"], m["ROFF"]))
         elif kind == "I":
             fault(e, i, wave(f[2:], t))
         elif kind == "V":
@@ -156,11 +184,17 @@ def stresses(cards, t, nodes, currents):
         if kind == "K":
             continue
         if kind == "X":
-            sign = -1 if f[3].startswith("79") else 1
-            vin, vout = sign * (nodes[f[0]] - nodes[f[1]]), sign * (nodes[f[2]] - nodes[f[1]])
+            if "VDO" not in rates[e]:
+                v, i = nodes[f[0]] - nodes[f[2]], currents[e]
+                add(e, "mean-power", mean(t, v * i), "W")
+                add(e, "max-input-voltage", highest(t, v), "V")
+                add(e, "max-output-current", highest(t, i), "A")
+                add(e, "min-current", low(i), "A")
+                continue
+            vin, vout, sign, vset = pins(f, rates[e], nodes)
             iin, iout = sign * currents[e + ".in"], -sign * currents[e + ".out"]
             add(e, "min-differential", low(vin - vout), "V")
-            add(e, "min-headroom", low(vin) - rates[e]["VOUT"] - rates[e]["VDO"], "V")
+            add(e, "min-headroom", low(vin) - vset - rates[e]["VDO"], "V")
             add(e, "max-input-voltage", highest(t, vin), "V")
             add(e, "mean-power", mean(t, vin * iin - vout * iout), "W")
             add(e, "max-output-current", highest(t, iout), "A")
@@ -189,7 +223,7 @@ def stresses(cards, t, nodes, currents):
             add(e, "min-voltage", low(v), "V")
             add(e, "mean-voltage", mean(t, v), "V")
             add(e, "ripple-current-rms", rms(i), "A")
-        elif kind == "R":
+        elif kind in "RS":
             add(e, "mean-power", mean(t, v * i), "W")
             add(e, "peak-voltage", highest(t, np.abs(v)), "V")
             add(e, "rms-current", rms(i), "A")
@@ -213,7 +247,7 @@ def stresses(cards, t, nodes, currents):
 
 def terminals(element, fields):
     """Names of the nodes among the fields of a card."""
-    return fields[:{"Q": 3, "M": 4, "X": 3, "K": 0, "E": 4, "G": 4}.get(element[0], 2)]
+    return fields[:{"Q": 3, "M": 4, "X": 3, "K": 0, "E": 4, "G": 4, "S": 4}.get(element[0], 2)]
 
 
 def surges(cards, t, currents, T):

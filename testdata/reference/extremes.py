@@ -1,0 +1,1 @@
+"""Deep ripple, long and short time constants, ladders, several supplies, switched sources."""

@@ -1,0 +1,1 @@
+"""Further transients from rest: opposite rails, doublers, chokes, regulators, inrush limiters."""
