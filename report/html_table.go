@@ -3,6 +3,7 @@ package report
 import (
 	"math"
 	"strconv"
+	"strings"
 )
 
 // pageRow is one line of the stress table; the keys are what its columns sort by.
@@ -10,6 +11,7 @@ type pageRow struct {
 	Order                                  int
 	Class, Label, Name, Check              string
 	Stress, Limit, Margin, When, From      string
+	With                                   string // the ends of the tolerances, beside When
 	StressKey, LimitKey, MarginKey, UseKey string
 	VerdictKey                             int
 	Bar                                    bar
@@ -25,7 +27,8 @@ func newPageRow(order int, f *Finding) pageRow {
 	}
 	if f.Stress != nil {
 		row.Stress, row.StressKey = figure(f.Stress.Value, f.Stress.Unit), plainNumber(f.Stress.Value)
-		row.When = printable(whenWords(f.Stress))
+		row.When = printable(joinWith(f.Stress.Condition.Name, momentWords(f.Stress), ", "))
+		row.With = printable(strings.Join(f.Stress.Condition.Also, ", "))
 	}
 	if f.Limit != nil && f.Stress != nil {
 		row.Stress, row.Limit = pair(f.Stress.Value, f.Limit.Value, f.Stress.Unit)
