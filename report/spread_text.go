@@ -12,7 +12,7 @@ import (
 // WriteText writes the spread for people: a block with a chart for each stress that was asked for.
 func (s *Spread) WriteText(w io.Writer, colour bool) error {
 	l := &ledger{palette: newPalette(colour)}
-	l.head(&File{Name: s.File, Title: ownTitle(s.Title), Circumstances: s.Circumstances})
+	l.circumstances(&File{Name: s.File, Title: ownTitle(s.Title), Circumstances: s.Circumstances})
 	l.line("")
 	l.hang("", "", s.trialWords())
 	l.hang("", "", "steady states only: what a bound holds of switch-on, line off or a shorted output is not sampled")

@@ -62,7 +62,18 @@ func (l *ledger) file(f *File, proven bool) {
 	l.listTables(f)
 }
 
+// head names the file, its circumstances and its rails.
 func (l *ledger) head(f *File) {
+	l.circumstances(f)
+	for _, rail := range f.RailMap {
+		l.hang("rail  ", "      ", rail)
+	}
+	if len(f.RailMap) == 0 {
+		l.hang("rail  ", "      ", "no usual arrangement recognised; the checks do not depend on it")
+	}
+}
+
+func (l *ledger) circumstances(f *File) {
 	name, title := printable(f.Name), printable(f.Title)
 	if title == "" {
 		title = "(no title)"
@@ -75,12 +86,6 @@ func (l *ledger) head(f *File) {
 	}
 	c := f.Circumstances
 	l.line(strings.Join(l.fill([]string{"line " + c.Line, "load " + c.Load, "ambient " + c.Ambient, "policy " + c.Policy}, "   "), "\n"))
-	for _, rail := range f.RailMap {
-		l.hang("rail  ", "      ", rail)
-	}
-	if len(f.RailMap) == 0 {
-		l.hang("rail  ", "      ", "no usual arrangement recognised; the checks do not depend on it")
-	}
 }
 
 func (l *ledger) totals(t Totals) {
