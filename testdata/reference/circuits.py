@@ -22,6 +22,7 @@ class Circuit:
     plain: int = 2  # periods integrated before the search for the steady state
     steps: int = 1000  # least number in a period of the waveform
     instants: int = 20000  # at which a circuit without states is solved; few for direct sources
+    breaks: tuple = ()  # s into the period: where a source bends or a switch acts
     second: tuple = ("Radau", 1e-8)  # the method that checks, and its tolerance
     closed_form: dict = field(default_factory=dict)  # (element, quantity): value known without integration
 

@@ -48,11 +48,12 @@ def steady(c, verbose):
             t, nodes, currents = period.sampled(equations, np.linspace(0, c.period, samples + 1), np.empty((0, samples + 1)))
             out += measure.stresses(cards, t, nodes, currents)
         return rows, difference(rows, rows2), measure.residual(cards, t, nodes, currents)
-    t, nodes, currents = period.waveform(equations, x, 0, c.period, "LSODA", tight, c.period / c.steps)
+    t, nodes, currents = period.waveform(equations, x, 0, c.period, "LSODA", tight, c.period / c.steps, breaks=c.breaks)
     rows = measure.stresses(cards, t, nodes, currents)
     method, rtol = second
     x2, _ = period.settle(f, x, c.period, rtol=rtol, method=method, slope=slope, verbose=verbose)
-    t2, nodes2, currents2 = period.waveform(equations, x2, 0, c.period, method, rtol, c.period / (2 * c.steps))
+    t2, nodes2, currents2 = period.waveform(equations, x2, 0, c.period, method, rtol, c.period / (2 * c.steps),
+                                             breaks=c.breaks)
     rows2 = measure.stresses(cards, t2, nodes2, currents2)
     return rows, difference(rows, rows2), measure.residual(cards, t, nodes, currents)
 

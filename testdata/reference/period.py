@@ -50,20 +50,24 @@ def settle(f, x, T, rtol=1e-10, method="LSODA", slope=None, plain=2, verbose=Fal
     raise ArithmeticError("no periodic steady state: gap %g" % gap)
 
 
-def waveform(equations, x, start, stop, method, rtol, step, parts=4):
+def waveform(equations, x, start, stop, method, rtol, step, parts=4, breaks=()):
     """Times, node voltages and element currents over the span.
 
     Sampled at the integrator's own steps, each cut into four (an even number of) equal parts, so that the samples
-    crowd where the solution bends or jumps and Simpson's rule applies to each pair of parts.
+    crowd where the solution bends or jumps and Simpson's rule applies to each pair of parts. Breaks are instants at
+    which a source bends or a switch acts: the integration is taken up anew at each.
     """
     f = lambda t, y: equations(t, y)[0]
-    result = integrate(f, x, start, stop, method, rtol, dense=True, step=step)
-    lengths = np.diff(result.t)
-    t = (result.t[:-1, None] + lengths[:, None] * np.arange(parts) / parts).ravel()
-    t = np.append(t, stop)
-    y = result.sol(t)
-    y[:, ::parts] = result.y
-    return sampled(equations, t, y)
+    times, states = [np.array([start])], [np.array(x, float)[:, None]]
+    for begin, end in zip((start, *breaks), (*breaks, stop)):
+        result = integrate(f, states[-1][:, -1], begin, end, method, rtol, dense=True, step=step)
+        t = (result.t[:-1, None] + np.diff(result.t)[:, None] * np.arange(parts) / parts).ravel()
+        t = np.append(t, end)
+        y = result.sol(t)
+        y[:, ::parts] = result.y
+        times.append(t[1:])
+        states.append(y[:, 1:])
+    return sampled(equations, np.concatenate(times), np.concatenate(states, axis=1))
 
 
 def sampled(equations, t, y):

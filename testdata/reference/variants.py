@@ -179,16 +179,15 @@ def half_wave_negative():
     return equations
 
 
-LADDER = "\n".join(
-    ["Ioniser bias, ladder of six doubling stages", "V1 S 0 SIN(0 60 50)", "RW S N0 100"]
-    + ["C%d %s N%d 1u" % (k, "N%d" % (k - 2) if k > 2 else ("N0" if k == 1 else "0"), k) for k in range(1, 13)]
-    + ["D%d %s N%d DR" % (k, "N%d" % (k - 1) if k > 1 else "0", k) for k in range(1, 13)]
-    + ["RL N12 0 10meg", DR_CARD, ".end"])
+def ladder_cards(title, value, load):
+    return "\n".join(
+        [title, "V1 S 0 SIN(0 60 50)", "RW S N0 100"]
+        + ["C%d %s N%d %s" % (k, "N%d" % (k - 2) if k > 2 else ("N0" if k == 1 else "0"), k, value) for k in range(1, 13)]
+        + ["D%d %s N%d DR" % (k, "N%d" % (k - 1) if k > 1 else "0", k) for k in range(1, 13)]
+        + ["RL N12 0 " + load, DR_CARD, ".end"])
 
 
-@circuit("ladder-6", LADDER, [-58.0] + [-115.0] * 11,
-         second=("LSODA", 1e-9), plain=60)
-def ladder():
+def ladder(capacitance, load):
     """Push column C1 C3 .. C11 from N0, smoothing column C2 C4 .. C12 from ground, diodes D1 0-N1, D2 N1-N2, ..
 
     u[k] is the voltage of C(k+1), lower node less upper node. All push nodes move with N0 = e - RW is, where
@@ -216,15 +215,27 @@ def ladder():
             return value, slope
         a = root(residual, -70, 70)
         n = nodes(a, u)
-        i = [0.0] + [d((n[k - 1] if k > 1 else 0.0) - n[k])[0] for k in range(1, 13)] + [n[12] / 10e6]
+        i = [0.0] + [d((n[k - 1] if k > 1 else 0.0) - n[k])[0] for k in range(1, 13)] + [n[12] / load]
         c = [0.0] * 15
         for k in range(12, 0, -1):
             c[k] = c[k + 2] + i[k + 1] - i[k]
-        named = {"V1": -c[1], "RW": c[1], "RL": n[12] / 10e6}
+        named = {"V1": -c[1], "RW": c[1], "RL": n[12] / load}
         named.update({"C%d" % k: c[k] for k in range(1, 13)})
         named.update({"D%d" % k: i[k] for k in range(1, 13)})
-        return [c[k] / 1e-6 for k in range(1, 13)], {"S": e, **{"N%d" % k: n[k] for k in range(13)}}, named
+        return [c[k] / capacitance for k in range(1, 13)], {"S": e, **{"N%d" % k: n[k] for k in range(13)}}, named
     return equations
+
+
+@circuit("ladder-6", ladder_cards("Ioniser bias, ladder of six doubling stages", "1u", "10meg"), [-58.0] + [-115.0] * 11,
+         second=("LSODA", 1e-9), plain=60)
+def ladder_6():
+    return ladder(1e-6, 10e6)
+
+
+@circuit("ladder-6-loaded", ladder_cards("Ioniser bias, ladder of six doubling stages loaded to half its voltage", "4.7u", "470k"),
+         [-55.0] + [-75.0] * 11, second=("LSODA", 1e-9), plain=60)
+def ladder_6_loaded():
+    return ladder(4.7e-6, 470e3)
 
 
 @circuit("schottky-24V", """Lamp driver, bridge of low-drop diodes at 8 A surge
