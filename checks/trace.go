@@ -94,10 +94,9 @@ func Trace(ctx context.Context, o TraceOptions) (*Traced, []netlist.Diagnostic, 
 func (o *TraceOptions) setting(c *netlist.Circuit, plan *study.Plan) (study.Setting, error) {
 	set := study.Setting{Cold: o.Cold, Phase: o.Degrees / 360}
 	if o.Nominal {
-		set.Nominal, set.Ambient = true, c.Temperature
+		set.Nominal = true
 		return set, nil
 	}
-	set.Ambient = plan.Ambient[1] // as in every condition of the stress table
 	switch o.Line {
 	case "", "nominal":
 		set.Line = study.LineNominal

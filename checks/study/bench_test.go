@@ -23,8 +23,8 @@ func timingSupply(b *testing.B) (*Supply, *Plan) {
 // BenchmarkCondition solves one condition of bridge, reservoir and load to the working tolerances, from nothing and
 // from the solution of a neighbouring condition.
 func BenchmarkCondition(b *testing.B) {
-	s, p := timingSupply(b)
-	set := Setting{Line: LineHigh, Loads: make([]float64, len(p.loads)), Ambient: s.Circuit.Temperature}
+	_, p := timingSupply(b)
+	set := Setting{Line: LineHigh, Loads: make([]float64, len(p.loads))}
 	for k := range set.Loads {
 		set.Loads[k] = 1
 	}

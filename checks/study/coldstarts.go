@@ -56,7 +56,7 @@ func (p *Plan) coldSettings() []Setting {
 				for k := range loads {
 					loads[k] = load
 				}
-				settings = append(settings, Setting{Line: LineHigh, Loads: loads, Ambient: p.Ambient[1], Shift: shift, Phase: float64(phase) / coldPhases})
+				settings = append(settings, Setting{Line: LineHigh, Loads: loads, Shift: shift, Phase: float64(phase) / coldPhases})
 				if len(p.loads) == 0 {
 					break
 				}

@@ -36,7 +36,7 @@ func (p *Plan) paths() []path {
 	}
 	add := func(line LineEnd, loads func(position float64) []float64) {
 		list = append(list, func(position float64) Setting {
-			return Setting{Line: line, Loads: loads(position), Ambient: p.Ambient[1]}
+			return Setting{Line: line, Loads: loads(position)}
 		})
 	}
 	for _, line := range []LineEnd{LineLow, LineHigh} {
@@ -59,7 +59,7 @@ func (p *Plan) paths() []path {
 	}
 	for _, load := range []float64{0, 1} {
 		list = append(list, func(position float64) Setting {
-			return Setting{Line: LineBetween, LineAt: position, Loads: all(load), Ambient: p.Ambient[1]}
+			return Setting{Line: LineBetween, LineAt: position, Loads: all(load)}
 		})
 		if n == 0 {
 			break

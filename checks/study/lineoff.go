@@ -174,11 +174,11 @@ func (p *Plan) lineOffs(ctx context.Context, jobs int, t *Table) {
 		set       Setting
 		discharge bool
 	}
-	runs := []run{{Setting{Line: LineHigh, Loads: loads(0), Ambient: p.Ambient[1], Shift: slow}, true}}
+	runs := []run{{Setting{Line: LineHigh, Loads: loads(0), Shift: slow}, true}}
 	if p.held() {
-		runs = append(runs, run{Setting{Line: LineHigh, Loads: loads(0), Ambient: p.Ambient[1]}, false})
+		runs = append(runs, run{Setting{Line: LineHigh, Loads: loads(0)}, false})
 		if len(p.loads) > 0 {
-			runs = append(runs, run{Setting{Line: LineHigh, Loads: loads(1), Ambient: p.Ambient[1]}, false})
+			runs = append(runs, run{Setting{Line: LineHigh, Loads: loads(1)}, false})
 		}
 	}
 	results := make([][]Stress, len(runs))

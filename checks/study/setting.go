@@ -26,8 +26,6 @@ type Setting struct {
 	LineAt float64
 	// Loads holds for each load of the supply a position from 0 (light) to 1 (full); nil: as written.
 	Loads []float64
-	// Ambient is the air temperature in degC.
-	Ambient float64
 	// Held keeps regulators at their set voltage so that missing headroom shows (solver.Regulator.Held).
 	Held bool
 	// Shift holds for each toleranced parameter a position from -1 (low end) to 1 (high end); nil: all nominal.

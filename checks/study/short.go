@@ -16,7 +16,7 @@ func (p *Plan) outputShorts(ctx context.Context, jobs int, t *Table) {
 			loads[j] = 1
 		}
 		id := p.loads[k].element
-		outcomes[k] = p.solve(ctx, Setting{Line: LineHigh, Loads: loads, Ambient: p.Ambient[1], Short: &id}, nil)
+		outcomes[k] = p.solve(ctx, Setting{Line: LineHigh, Loads: loads, Short: &id}, nil)
 	})
 	for k, out := range outcomes {
 		t.Solved++

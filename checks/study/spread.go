@@ -120,7 +120,7 @@ func (s *Spread) Positions(trial uint64) []float64 {
 // trial is the condition at the positions of what is varied.
 func (p *Plan) trial(positions []float64) Setting {
 	loads := len(p.loads)
-	set := Setting{Line: LineBetween, LineAt: positions[0], Ambient: p.Ambient[1], Shift: slices.Clone(positions[1+loads:])}
+	set := Setting{Line: LineBetween, LineAt: positions[0], Shift: slices.Clone(positions[1+loads:])}
 	if loads > 0 {
 		set.Loads = positions[1 : 1+loads]
 	}

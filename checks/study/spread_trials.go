@@ -30,7 +30,7 @@ func newTrials(ctx context.Context, t *Table, s *Spread) *trials {
 	}
 	nominal := map[tableKey]float64{}
 	for _, held := range n.passes {
-		out := p.solve(ctx, Setting{Line: LineNominal, Loads: loads, Ambient: p.Ambient[1], Held: held}, nil)
+		out := p.solve(ctx, Setting{Line: LineNominal, Loads: loads, Held: held}, nil)
 		p.extract(out, func(st Stress) {
 			if p.counts(held, st.Quantity) {
 				nominal[tableKey{st.Element, st.Quantity}] = found(&st)

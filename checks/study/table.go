@@ -99,7 +99,7 @@ func newTable(p *Plan) *Table { return &Table{Plan: p, index: map[tableKey]int{}
 func Nominal(ctx context.Context, s *Supply, cold bool) *Table {
 	p := NewPlan(s)
 	t := newTable(p)
-	out := p.solve(ctx, Setting{Nominal: true, Line: LineAsWritten, Ambient: s.Circuit.Temperature}, nil)
+	out := p.solve(ctx, Setting{Nominal: true, Line: LineAsWritten}, nil)
 	p.extract(out, func(st Stress) {
 		st.Condition = p.condition(&out.set)
 		t.merge(st)
@@ -332,7 +332,7 @@ func (p *Plan) baseSettings() []Setting {
 		}
 		for _, line := range []LineEnd{LineLow, LineHigh} {
 			for _, loads := range combinations {
-				list = append(list, Setting{Line: line, Loads: loads, Ambient: p.Ambient[1], Held: held})
+				list = append(list, Setting{Line: line, Loads: loads, Held: held})
 			}
 		}
 	}

@@ -57,19 +57,22 @@ const (
 	forwardBelowLimit = 0.20 // by which the forward voltage may stay below the maximum that a table states
 	// Copper at 20 degC has four fifths of its resistance at 80 degC (0.393 %/K, IEC 60028); tables and statements
 	// give a warm winding.
-	coldCopper, hotCopper   = 0.20, 0.10
-	gainLow, gainHigh       = 0.5, 1.0
-	frequencyTolerance      = 0.01
-	frequencyToleranceFrom  = "EN 50160 (from memory): 50 Hz +/-1 % for 99.5 % of a year"
-	ambientFrom             = "the ambient"
-	nominalTemperatureFloor = -273.15
+	coldCopper, hotCopper  = 0.20, 0.10
+	gainLow, gainHigh      = 0.5, 1.0
+	frequencyTolerance     = 0.01
+	frequencyToleranceFrom = "EN 50160 (from memory): 50 Hz +/-1 % for 99.5 % of a year"
+	ambientFrom            = "the ambient"
 )
 
 // planTolerances lists the toleranced parameters of the supply.
 func (p *Plan) planTolerances() {
 	c := p.supply.Circuit
 	if p.period > 0 {
-		p.addParameter(Parameter{Element: supplyWide, Symbol: symbolFrequency, Low: -frequencyTolerance, High: frequencyTolerance, Origin: frequencyToleranceFrom})
+		origin := byPractice
+		if cycles := p.period * 50; math.Abs(cycles-math.Round(cycles)) < 1e-6 {
+			origin = frequencyToleranceFrom
+		}
+		p.addParameter(Parameter{Element: supplyWide, Symbol: symbolFrequency, Low: -frequencyTolerance, High: frequencyTolerance, Origin: origin})
 	}
 	if p.hasJunctions() && p.Ambient[1] > p.Ambient[0] {
 		p.addParameter(Parameter{Element: supplyWide, Symbol: symbolAmbient, Low: p.Ambient[0], High: p.Ambient[1], Origin: ambientFrom})
@@ -260,7 +263,7 @@ func (p *Plan) temperature(set *Setting) float64 {
 	middle := math.Min(math.Max(own, p.Ambient[0]), p.Ambient[1])
 	k, ok := p.index[statedKey{supplyWide, symbolAmbient}]
 	if !ok || set.Shift == nil {
-		return math.Max(middle, nominalTemperatureFloor)
+		return middle
 	}
 	position := set.Shift[k]
 	if position < 0 {

@@ -29,7 +29,7 @@ func traceText(t *testing.T, text string, cold bool, w Window, names ...string) 
 		signals = append(signals, Signal{Element: id, Kind: SignalKind(kind)})
 	}
 	p := NewPlan(NewSupply(c, d, parts.Default()))
-	tr := p.Trace(context.Background(), Setting{Nominal: true, Cold: cold, Ambient: c.Temperature}, signals, w)
+	tr := p.Trace(context.Background(), Setting{Nominal: true, Cold: cold}, signals, w)
 	for _, wave := range tr.Waveforms {
 		if wave.Unproven != "" || len(wave.Values) != len(tr.Times) || len(tr.Times) < 2 {
 			t.Fatalf("%s: %q, %d values at %d times", wave.Name, wave.Unproven, len(wave.Values), len(tr.Times))
