@@ -183,3 +183,23 @@ def bridge_hum_pickup():
         ic = f + r - p / 47
         return ([ic / 1000e-6], {**bridge_nodes(e, w, p), "OUT": p}, {**bridge_currents(f, r), "C1": ic, "RL": p / 47})
     return equations
+
+
+@circuit("constant-power-load", f"""Converter input: a load of constant power behind a bridge
+V1 S B SIN(0 28 50)
+RW S A 0.7
+{BRIDGE_CARDS}
+C1 OUT 0 2200u
+B1 OUT 0 I=15/max(V(OUT),5)
+{DR_CARD}
+.end""", [25.0])
+def constant_power_load():
+    """C p' = f + r - 15 W/p."""
+    b = Bridge(Diode(**DR))
+
+    def equations(t, x):
+        p = x[0]
+        nodes, currents, j = front(t, p, 28, 0.7, b)
+        i = 15 / max(p, 5)
+        return [(j - i) / 2200e-6], {**nodes, "OUT": p}, {**currents, "C1": j - i, "B1": i}
+    return equations

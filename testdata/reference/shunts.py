@@ -168,23 +168,26 @@ def series_pass():
     return equations
 
 
-@circuit("series-pass-darlington", f"""Solder station rail, zener and two followers in cascade
-V1 S B SIN(0 26 50)
-RW S A 0.4
+def darlington_cards(title, peak, winding, capacitance, feed, load):
+    return f"""{title}
+V1 S B SIN(0 {peak} 50)
+RW S A {winding}
 {BRIDGE_CARDS.replace("OUT", "P")}
-C1 P 0 4700u
-RB P Z 1.5k
+C1 P 0 {capacitance}
+RB P Z {feed}
 DZ 0 Z DZ12
 Q1 P Z M QN
 Q2 P M OUT QN
 RM M OUT 220
 C2 OUT 0 22u
-RL OUT 0 10
+RL OUT 0 {load}
 {DR_CARD}
 {DZ12_CARD}
 {QN_CARD}
-.end""", [22.0, 10.7])
-def series_pass_darlington():
+.end"""
+
+
+def darlington(peak, winding, capacitance, feed, load):
     """Nested: for a base voltage b the inner node m meets ie1(b-m) = ib2(m-o) + (m-o)/RM; then b as before."""
     br, z = Bridge(Diode(**DR)), Diode(**DZ12)
 
@@ -204,19 +207,25 @@ def series_pass_darlington():
         def base(b):
             def away(b):
                 m = inner(b, o, p)
-                return bipolar(b - m, b - p, **QN)[1] - z(-b)[0] - (p - b) / 1500
+                return bipolar(b - m, b - p, **QN)[1] - z(-b)[0] - (p - b) / feed
             value = away(b)
             return value, (away(b + 1e-6) - value) / 1e-6
         b = root(base, o, o + 2)
         m = inner(b, o, p)
         (c1, b1), (c2, b2) = bipolar(b - m, b - p, **QN), bipolar(m - o, m - p, **QN)
-        nodes, currents, j = front(t, p, 26, 0.4, br)
-        ir, im = (p - b) / 1500, (m - o) / 220
-        i1, i2 = j - ir - c1 - c2, c2 + b2 + im - o / 10
-        return ([i1 / 4700e-6, i2 / 22e-6], {**nodes, "P": p, "Z": b, "M": m, "OUT": o},
+        nodes, currents, j = front(t, p, peak, winding, br)
+        ir, im = (p - b) / feed, (m - o) / 220
+        i1, i2 = j - ir - c1 - c2, c2 + b2 + im - o / load
+        return ([i1 / capacitance, i2 / 22e-6], {**nodes, "P": p, "Z": b, "M": m, "OUT": o},
                 {**currents, "C1": i1, "RB": ir, "DZ": z(-b)[0], "Q1.c": c1, "Q1.b": b1, "Q2.c": c2, "Q2.b": b2,
-                 "RM": im, "C2": i2, "RL": o / 10})
+                 "RM": im, "C2": i2, "RL": o / load})
     return equations
+
+
+@circuit("series-pass-darlington", darlington_cards("Solder station rail, zener and two followers in cascade",
+                                                    26, 0.4, "4700u", "1.5k", 10), [22.0, 10.7])
+def series_pass_darlington():
+    return darlington(26, 0.4, 4700e-6, 1500, 10)
 
 
 @circuit("series-pass-dropping-out", f"""Tape deck rail on a weak winding: the follower saturates at the trough
@@ -255,24 +264,27 @@ def series_pass_dropping_out():
     return equations
 
 
-@circuit("series-pass-complementary", f"""Lamp dimmer rail, feedback pair of an NPN driver and a PNP pass transistor
-V1 S B SIN(0 25 50)
-RW S A 0.6
+def complementary_cards(title, peak, winding, capacitance, feed, load):
+    return f"""{title}
+V1 S B SIN(0 {peak} 50)
+RW S A {winding}
 {BRIDGE_CARDS.replace("OUT", "P")}
-C1 P 0 3300u
-RB P Z 1k
+C1 P 0 {capacitance}
+RB P Z {feed}
 DZ 0 Z DZ12
 Q1 K Z OUT QN
 RK P K 470
 Q2 OUT K P QP
 C2 OUT 0 22u
-RL OUT 0 18
+RL OUT 0 {load}
 {DR_CARD}
 {DZ12_CARD}
 {QN_CARD}
 .model QP PNP(IS=20f BF=45 BR=2)
-.end""", [21.0, 11.4])
-def series_pass_complementary():
+.end"""
+
+
+def complementary(peak, winding, capacitance, feed, load):
     """Base b of the driver meets (p-b)/RB + z(-b) = ib1; its collector k meets ic1 = (p-k)/RK + ib2(p-k)."""
     br, z = Bridge(Diode(**DR)), Diode(**DZ12)
     qp = dict(IS=20e-15, BF=45, BR=2)
@@ -291,20 +303,26 @@ def series_pass_complementary():
         def base(b):
             def away(b):
                 k = collector(b, o, p)
-                return bipolar(b - o, b - k, **QN)[1] - z(-b)[0] - (p - b) / 1000
+                return bipolar(b - o, b - k, **QN)[1] - z(-b)[0] - (p - b) / feed
             value = away(b)
             return value, (away(b + 1e-6) - value) / 1e-6
         b = root(base, o - 0.5, o + 0.8)
         k = collector(b, o, p)
         (c1, b1), (c2, b2) = bipolar(b - o, b - k, **QN), bipolar(p - k, o - k, **qp)
-        nodes, currents, j = front(t, p, 25, 0.6, br)
-        ir, ik = (p - b) / 1000, (p - k) / 470
+        nodes, currents, j = front(t, p, peak, winding, br)
+        ir, ik = (p - b) / feed, (p - k) / 470
         i1 = j - ir - ik - c2 - b2
-        i2 = c1 + b1 + c2 - o / 18
-        return ([i1 / 3300e-6, i2 / 22e-6], {**nodes, "P": p, "Z": b, "K": k, "OUT": o},
+        i2 = c1 + b1 + c2 - o / load
+        return ([i1 / capacitance, i2 / 22e-6], {**nodes, "P": p, "Z": b, "K": k, "OUT": o},
                 {**currents, "C1": i1, "RB": ir, "DZ": z(-b)[0], "Q1.c": c1, "Q1.b": b1, "Q2.c": -c2, "Q2.b": -b2,
-                 "RK": ik, "C2": i2, "RL": o / 18})
+                 "RK": ik, "C2": i2, "RL": o / load})
     return equations
+
+
+@circuit("series-pass-complementary", complementary_cards("Lamp dimmer rail, feedback pair of an NPN driver and a PNP pass transistor",
+                                                          25, 0.6, "3300u", "1k", 18), [21.0, 11.4])
+def series_pass_complementary():
+    return complementary(25, 0.6, 3300e-6, 1000, 18)
 
 
 @circuit("source-follower", f"""Quiet rail: field-effect follower on a filtered zener
@@ -361,24 +379,4 @@ def behavioural_rectifier():
         ic = i - v / 47
         return ([ic / 1000e-6], {"S": e, "X": abs(e), "A": a, "OUT": v},
                 {"V1": -e / 1000, "R1": e / 1000, "B1": -i, "RW": i, "D1": i, "C1": ic, "RL": v / 47})
-    return equations
-
-
-@circuit("constant-power-load", f"""Converter input: a load of constant power behind a bridge
-V1 S B SIN(0 28 50)
-RW S A 0.7
-{BRIDGE_CARDS}
-C1 OUT 0 2200u
-B1 OUT 0 I=15/max(V(OUT),5)
-{DR_CARD}
-.end""", [25.0])
-def constant_power_load():
-    """C p' = f + r - 15 W/p."""
-    b = Bridge(Diode(**DR))
-
-    def equations(t, x):
-        p = x[0]
-        nodes, currents, j = front(t, p, 28, 0.7, b)
-        i = 15 / max(p, 5)
-        return [(j - i) / 2200e-6], {**nodes, "OUT": p}, {**currents, "C1": j - i, "B1": i}
     return equations

@@ -3,10 +3,10 @@
 from math import sin
 
 from circuits import circuit
-from laws import Bridge, Diode, bipolar, channel, root
+from laws import Bridge, Diode, channel, root
 from rectifiers import DR, DR_CARD, W50, fed_diode
 from regulators import cards
-from shunts import DZ12, DZ12_CARD, QN, QN_CARD, front
+from shunts import DZ12, DZ12_CARD, complementary, complementary_cards, darlington, darlington_cards, front
 from variants import BRIDGE_CARDS
 
 
@@ -182,3 +182,15 @@ def source_follower_body():
         return ([c1 / 680e-6, c2 / 22e-6], {**nodes, "P": p, "G": g, "OUT": o},
                 {**currents, "C1": c1, "R1": ir, "DZ": z(-g)[0], "M1": i, "C2": c2, "RL": o / 30})
     return equations
+
+
+@circuit("darlington-dropping-out", darlington_cards("Solder station rail whose reservoir is too small: two followers in cascade drop out",
+                                                     22, 0.4, "1000u", "1k", 10), [17.0, 10.5])
+def darlington_dropping_out():
+    return darlington(22, 0.4, 1000e-6, 1000, 10)
+
+
+@circuit("complementary-dropping-out", complementary_cards("Lamp dimmer rail whose reservoir is too small: the feedback pair saturates",
+                                                           18, 0.6, "680u", "470", 18), [14.0, 11.0])
+def complementary_dropping_out():
+    return complementary(18, 0.6, 680e-6, 470, 18)
