@@ -4,7 +4,7 @@ import importlib
 from dataclasses import dataclass, field
 
 CHAPTERS = ("rectifiers", "variants", "filters", "transformers", "shunts", "regulators", "coldstarts", "direct", "corners",
-            "stabilizers", "extremes", "switchons")
+            "stabilizers", "extremes", "switched", "switchons")
 LIST = []
 
 
