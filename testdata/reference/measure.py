@@ -109,8 +109,7 @@ def residual(cards, t, nodes, currents):
             leg(f[0], into), leg(f[2], out), leg(f[1], -into - out)
             rate = rates[e]
             vin, vout, sign, vset = pins(f, rate, nodes)
-            quiescent = rate.get("IQ", rate.get("IADJ"))
-            fault(e + " IQ", np.where(vin > 1, sign * (into + out), quiescent), np.full(len(t), quiescent))
+            fault(e + " IQ", sign * (into + out), np.full(len(t), rate.get("IQ", rate.get("IADJ"))))
             blocked = np.abs(out) < 1e-9  # output held above its target by a capacitor
             target = np.minimum(vset, vin - rate["VDO"]) + sign * rate.get("Rout", 0) * out
             fault(e + " law", np.where(blocked, 0, vout), np.where(blocked, 0, target))

@@ -1,6 +1,6 @@
 """Further transients from rest: opposite rails, doublers, chokes, regulators, inrush limiters."""
 
-from math import hypot, sin
+from math import sin
 
 from circuits import circuit
 from coldstarts import bridge, bridge_cards
@@ -89,7 +89,7 @@ RL OUT 0 24"""), [0.0, 0.0], mode="cold-start", cycles=10)
 def cold_regulator():
     """Io = (min(12, p-2) - o)/Rout or zero, C1 p' = f + r - IQ - Io, C2 o' = Io - o/RL.
 
-    IQ fades below 50 mV at the input, where it has no effect: 5 mA for some microseconds.
+    IQ is drawn from the first instant, by the law; below 50 mV the solver lets it fade.
     """
     b = Bridge(Diode(**DR))
 
@@ -97,10 +97,9 @@ def cold_regulator():
         p, o = x
         nodes, currents, j = front(t, p, 22, 0.8, b)
         io = max(0.0, (min(12.0, p - 2) - o) / 0.2)
-        iq = 5e-3 * p / hypot(p, 0.05)
-        c1, c2 = j - iq - io, io - o / 24
+        c1, c2 = j - 5e-3 - io, io - o / 24
         return ([c1 / 1000e-6, c2 / 1000e-6], {**nodes, "IN": p, "OUT": o},
-                {**currents, "C1": c1, "X1.in": io + iq, "X1.out": -io, "C2": c2, "RL": o / 24})
+                {**currents, "C1": c1, "X1.in": io + 5e-3, "X1.out": -io, "C2": c2, "RL": o / 24})
     return equations
 
 
