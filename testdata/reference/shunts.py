@@ -3,7 +3,7 @@
 from math import sin
 
 from circuits import circuit
-from laws import Bridge, Diode, bipolar, channel, root
+from laws import Bridge, Diode, bipolar, channel, root, solve2
 from rectifiers import DR, DR_CARD, W50, fed_diode
 from variants import BRIDGE_CARDS, bridge_currents, bridge_nodes
 
@@ -289,25 +289,19 @@ def complementary(peak, winding, capacitance, feed, load):
     br, z = Bridge(Diode(**DR)), Diode(**DZ12)
     qp = dict(IS=20e-15, BF=45, BR=2)
 
-    def collector(b, o, p):
-        def residual(k):
-            def away(k):
-                return bipolar(b - o, b - k, **QN)[0] - (p - k) / 470 - bipolar(p - k, o - k, **qp)[1]
-            value = away(k)
-            return value, (away(k + 1e-7) - value) / 1e-7
-        return root(residual, p - 1.2, p)
+    last = [12.0, 20.0]
 
     def equations(t, x):
         p, o = x
 
-        def base(b):
-            def away(b):
-                k = collector(b, o, p)
-                return bipolar(b - o, b - k, **QN)[1] - z(-b)[0] - (p - b) / feed
-            value = away(b)
-            return value, (away(b + 1e-6) - value) / 1e-6
-        b = root(base, o - 0.5, o + 0.8)
-        k = collector(b, o, p)
+        def away(b, k):
+            (c1, b1), (c2, b2) = bipolar(b - o, b - k, **QN), bipolar(p - k, o - k, **qp)
+            return b1 - z(-b)[0] - (p - b) / feed, c1 - (p - k) / 470 - b2
+
+        def residual(b, k):
+            r, rb, rk = away(b, k), away(b + 1e-7, k), away(b, k + 1e-7)
+            return *r, ((rb[0] - r[0]) / 1e-7, (rk[0] - r[0]) / 1e-7), ((rb[1] - r[1]) / 1e-7, (rk[1] - r[1]) / 1e-7)
+        last[:] = b, k = solve2(residual, *last, limit=0.05)
         (c1, b1), (c2, b2) = bipolar(b - o, b - k, **QN), bipolar(p - k, o - k, **qp)
         nodes, currents, j = front(t, p, peak, winding, br)
         ir, ik = (p - b) / feed, (p - k) / 470

@@ -30,7 +30,7 @@ def low_drop_dropping_out():
 V1 S 0 SIN(0 13 50)
 RW S K 1.2
 D1 IN K DR
-C1 0 IN 330u
+C1 0 IN 220u
 X1 IN 0 OUT LOWDROP
 *: rate X1 VOUT=-8V VDO=0.4V IQ=1.5mA
 RL 0 OUT 120
@@ -45,7 +45,7 @@ def low_drop_negative():
         i, a = fed_diode(d, -e, 1.2, p)  # mirrored: a = -K
         o = min(8.0, p - 0.4)
         ic = i - 1.5e-3 - o / 120
-        return ([ic / 330e-6], {"S": e, "K": -a, "IN": -p, "OUT": -o},
+        return ([ic / 220e-6], {"S": e, "K": -a, "IN": -p, "OUT": -o},
                 {"V1": i, "RW": -i, "D1": i, "C1": ic, "X1.in": -o / 120 - 1.5e-3, "X1.out": o / 120, "RL": o / 120})
     return equations
 
