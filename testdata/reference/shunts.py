@@ -168,6 +168,14 @@ def series_pass():
     return equations
 
 
+def slopes(away):
+    """Two residuals of two voltages, with their matrix by differences."""
+    def residual(a, b):
+        r, ra, rb = away(a, b), away(a + 1e-7, b), away(a, b + 1e-7)
+        return *r, ((ra[0] - r[0]) / 1e-7, (rb[0] - r[0]) / 1e-7), ((ra[1] - r[1]) / 1e-7, (rb[1] - r[1]) / 1e-7)
+    return residual
+
+
 def darlington_cards(title, peak, winding, capacitance, feed, load):
     return f"""{title}
 V1 S B SIN(0 {peak} 50)
@@ -188,30 +196,18 @@ RL OUT 0 {load}
 
 
 def darlington(peak, winding, capacitance, feed, load):
-    """Nested: for a base voltage b the inner node m meets ie1(b-m) = ib2(m-o) + (m-o)/RM; then b as before."""
+    """Inner node m: ie1(b-m) = ib2(m-o) + (m-o)/RM; base b as before."""
     br, z = Bridge(Diode(**DR)), Diode(**DZ12)
 
-    def inner(b, o, p):
-        def residual(m):
-            def away(m):
-                c1, b1 = bipolar(b - m, b - p, **QN)
-                _, b2 = bipolar(m - o, m - p, **QN)
-                return b2 + (m - o) / 220 - c1 - b1
-            value = away(m)
-            return value, (away(m + 1e-7) - value) / 1e-7
-        return root(residual, o - 0.5, b + 0.5)
+    last = [12.0, 11.3]
 
     def equations(t, x):
         p, o = x
 
-        def base(b):
-            def away(b):
-                m = inner(b, o, p)
-                return bipolar(b - m, b - p, **QN)[1] - z(-b)[0] - (p - b) / feed
-            value = away(b)
-            return value, (away(b + 1e-6) - value) / 1e-6
-        b = root(base, o, o + 2)
-        m = inner(b, o, p)
+        def away(b, m):
+            (c1, b1), (c2, b2) = bipolar(b - m, b - p, **QN), bipolar(m - o, m - p, **QN)
+            return b1 - z(-b)[0] - (p - b) / feed, b2 + (m - o) / 220 - c1 - b1
+        last[:] = b, m = solve2(slopes(away), *last, limit=0.05)
         (c1, b1), (c2, b2) = bipolar(b - m, b - p, **QN), bipolar(m - o, m - p, **QN)
         nodes, currents, j = front(t, p, peak, winding, br)
         ir, im = (p - b) / feed, (m - o) / 220
@@ -297,11 +293,7 @@ def complementary(peak, winding, capacitance, feed, load):
         def away(b, k):
             (c1, b1), (c2, b2) = bipolar(b - o, b - k, **QN), bipolar(p - k, o - k, **qp)
             return b1 - z(-b)[0] - (p - b) / feed, c1 - (p - k) / 470 - b2
-
-        def residual(b, k):
-            r, rb, rk = away(b, k), away(b + 1e-7, k), away(b, k + 1e-7)
-            return *r, ((rb[0] - r[0]) / 1e-7, (rk[0] - r[0]) / 1e-7), ((rb[1] - r[1]) / 1e-7, (rk[1] - r[1]) / 1e-7)
-        last[:] = b, k = solve2(residual, *last, limit=0.05)
+        last[:] = b, k = solve2(slopes(away), *last, limit=0.05)
         (c1, b1), (c2, b2) = bipolar(b - o, b - k, **QN), bipolar(p - k, o - k, **qp)
         nodes, currents, j = front(t, p, peak, winding, br)
         ir, ik = (p - b) / feed, (p - k) / 470

@@ -185,9 +185,9 @@ def source_follower_body():
 
 
 @circuit("darlington-dropping-out", darlington_cards("Solder station rail whose reservoir is too small: two followers in cascade drop out",
-                                                     22, 0.4, "1000u", "1k", 10), [17.0, 10.5])
+                                                     19, 0.4, "1000u", "470", 10), [14.0, 10.3])
 def darlington_dropping_out():
-    return darlington(22, 0.4, 1000e-6, 1000, 10)
+    return darlington(19, 0.4, 1000e-6, 470, 10)
 
 
 @circuit("complementary-dropping-out", complementary_cards("Lamp dimmer rail whose reservoir is too small: the feedback pair saturates",
