@@ -163,6 +163,32 @@ func (m dense) general() blas64.General {
 	return blas64.General{Rows: m.rows, Cols: m.cols, Data: m.data, Stride: max(1, m.cols)}
 }
 
+func (m dense) clone() dense {
+	return dense{m.rows, m.cols, append([]float64(nil), m.data...)}
+}
+
+// column copies column c into v, setColumn v into column c.
+func (m dense) column(c int, v []float64) {
+	for r := range v {
+		v[r] = m.data[r*m.cols+c]
+	}
+}
+
+func (m dense) setColumn(c int, v []float64) {
+	for r, x := range v {
+		m.data[r*m.cols+c] = x
+	}
+}
+
+// columns is a copy of the columns from up to but not including to.
+func (m dense) columns(from, to int) dense {
+	out := newDense(m.rows, to-from)
+	for r := range m.rows {
+		copy(out.row(r), m.row(r)[from:to])
+	}
+	return out
+}
+
 func (m dense) row(r int) []float64 { return m.data[r*m.cols : (r+1)*m.cols] }
 
 // addTo adds m x to y.

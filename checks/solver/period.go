@@ -53,8 +53,8 @@ func newMarch(sys *system, step float64) (*march, error) {
 		unknowns: make([]float64, sys.unknowns),
 		sys:      sys, step: step, stage: newStage(r),
 		x: make([]float64, m), x1: make([]float64, m), pred: make([]float64, m),
-		u: make([]float64, len(sys.sources)), spare: make([]float64, m), spareInputs: make([]float64, len(sys.sources)), flow: newDense(m, m), work: newDense(m, m),
-		before: make([]float64, m), currentBefore: make([]float64, len(sys.ports)), flowBefore: make([]float64, m*m),
+		u: make([]float64, len(sys.sources)), spare: make([]float64, m), spareInputs: make([]float64, len(sys.sources)),
+		before: make([]float64, m), currentBefore: make([]float64, len(sys.ports)),
 	}
 	a.last, a.scale = a.stage, sys.stateScale()
 	return a, nil
@@ -219,6 +219,9 @@ func (a *march) cutStep(t float64, track bool) error {
 // unknown at every step goes into a trajectory, whose first sample is taken to be its last.
 func (a *march) period(ctx context.Context, start float64, steps int, track bool, into *Trajectory, keep bool) error {
 	if track {
+		if m := len(a.x); a.flow.data == nil {
+			a.flow, a.work, a.flowBefore = newDense(m, m), newDense(m, m), make([]float64, m*m)
+		}
 		identity(a.flow)
 	}
 	if keep {

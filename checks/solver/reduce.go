@@ -1,6 +1,17 @@
 package solver
 
-import "math"
+import (
+	"errors"
+	"fmt"
+	"math"
+)
+
+// maxUnknowns bounds one independent part of a network: its equations are dense, and their factorisation grows with the
+// third power.
+const maxUnknowns = 2000
+
+// ErrTooLarge says that an independent part of a network has too many unknowns.
+var ErrTooLarge = errors.New("too large to be solved")
 
 // reduced is the linear part of a system for one stage length, seen from its states x, inputs u and ports.
 // With w the port outputs beyond the stand-in conductances,
@@ -21,56 +32,62 @@ type reduced struct {
 // and ports.
 func (s *system) reduce(sigma float64) (*reduced, error) {
 	n, m, q, d := s.unknowns, s.states(), len(s.sources), len(s.ports)
+	if n > maxUnknowns {
+		return nil, fmt.Errorf("%w: %d unknowns in one independent part; expected at most %d", ErrTooLarge, n, maxUnknowns)
+	}
 	lu := newFactor(n)
 	s.assemble(lu.lu, sigma)
 	if err := lu.factorise(); err != nil {
 		return nil, err
 	}
+	// One column of right-hand sides for each state, input and port.
+	b, buffer := newDense(n, m+q+d), make([]float64, n)
+	rows := s.voltageRows()
+	for c := range b.cols {
+		for i := range buffer {
+			buffer[i] = 0
+		}
+		switch {
+		case c < m:
+			s.stateColumn(buffer, c, sigma)
+		case c < m+q:
+			s.inputColumn(buffer, c-m)
+		default:
+			s.portColumn(buffer, c-m-q, rows[c-m-q])
+		}
+		b.setColumn(c, buffer)
+	}
+	z := s.solveRefined(lu, sigma, b)
 	r := &reduced{
 		sys: s, sigma: sigma,
-		zx: newDense(n, m), zu: newDense(n, q), zw: newDense(n, d),
+		zx: z.columns(0, m), zu: z.columns(m, m+q), zw: z.columns(m+q, m+q+d),
 		px: newDense(d, m), pu: newDense(d, q), k: newDense(d, d),
 		sx: newDense(m, m), su: newDense(m, q), sw: newDense(m, d),
 		impedance: make([]float64, d),
 	}
-	b, unknowns, work := make([]float64, n), make([]float64, n), make([]float64, n)
-	balance := newResidual(n)
-	column := func(fill func(), z, p, x dense, c int) error {
-		for i := range b {
-			b[i] = 0
-		}
-		fill()
-		s.solveRefined(lu, sigma, b, unknowns, work, balance)
-		for i, v := range unknowns {
+	for c := range z.cols {
+		z.column(c, buffer)
+		for _, v := range buffer {
 			if math.IsNaN(v) || math.IsInf(v, 0) {
-				return ErrSingular
+				return nil, ErrSingular
 			}
-			z.row(i)[c] = v
+		}
+		p, x, at := r.px, r.sx, c
+		switch {
+		case c >= m+q:
+			p, x, at = r.k, r.sw, c-m-q
+		case c >= m:
+			p, x, at = r.pu, r.su, c-m
 		}
 		for j := range s.ports {
-			p.row(j)[c] = s.sensed(j, unknowns)
+			p.row(j)[at] = s.sensed(j, buffer)
 		}
 		for k := range x.rows {
-			x.row(k)[c] = s.stateOf(k, unknowns)
-		}
-		return nil
-	}
-	rows := s.voltageRows()
-	for c := range m {
-		if err := column(func() { s.stateColumn(b, c, sigma) }, r.zx, r.px, r.sx, c); err != nil {
-			return nil, err
+			x.row(k)[at] = s.stateOf(k, buffer)
 		}
 	}
-	for c := range q {
-		if err := column(func() { s.inputColumn(b, c) }, r.zu, r.pu, r.su, c); err != nil {
-			return nil, err
-		}
-	}
-	for c := range d {
-		if err := column(func() { s.portColumn(b, c, rows[c]) }, r.zw, r.k, r.sw, c); err != nil {
-			return nil, err
-		}
-		r.impedance[c] = math.Abs(r.k.row(c)[c])
+	for j := range s.ports {
+		r.impedance[j] = math.Abs(r.k.row(j)[j])
 	}
 	return r, nil
 }

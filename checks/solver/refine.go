@@ -97,17 +97,23 @@ func (r *residual) form(s *system, sigma float64, b, z []float64) {
 // refinements is how often a solution of the nodal equations is corrected by its residual.
 const refinements = 3
 
-// solveRefined solves A z = b with the factorised, rounded matrix and corrects the solution against the
-// exact balance of the elements. b is overwritten.
-func (s *system) solveRefined(lu *factor, sigma float64, b, z, work []float64, r *residual) {
-	copy(z, b)
-	lu.solve(z)
+// solveRefined solves A z = b for every column of b with the factorised, rounded matrix and corrects the solutions
+// against the exact balance of the elements.
+func (s *system) solveRefined(lu *factor, sigma float64, b dense) dense {
+	z, correction := b.clone(), newDense(b.rows, b.cols)
+	lu.solveAll(z)
+	balance, work, solution := newResidual(b.rows), make([]float64, b.rows), make([]float64, b.rows)
 	for range refinements {
-		copy(work, b)
-		r.form(s, sigma, work, z)
-		lu.solve(work)
-		for k, v := range work {
-			z[k] += v
+		for c := range b.cols {
+			b.column(c, work)
+			z.column(c, solution)
+			balance.form(s, sigma, work, solution)
+			correction.setColumn(c, work)
+		}
+		lu.solveAll(correction)
+		for k, v := range correction.data {
+			z.data[k] += v
 		}
 	}
+	return z
 }

@@ -4,7 +4,7 @@ import "math"
 
 // Regulator is the large-signal law of a series regulator seen from its reference pin (ground or adjust):
 //
-//	Vout = min(Set - ROut Io, Vin - Dropout),  0 <= Io <= CurrentLimit,  Iin = Io + Quiescent
+//	Vout = min(Set, Vin - Dropout) - ROut Io,  0 <= Io <= CurrentLimit,  Iin = Io + Quiescent
 //
 // with smooth corners. Sign is -1 for a negative regulator, whose voltages and currents are mirrored; Set,
 // Dropout, CurrentLimit and Quiescent are magnitudes. An adjustable type regulates out-to-adjust to Set and its
@@ -153,8 +153,12 @@ func (n *Network) AddShuntReference(cathode, reference, anode Node, s ShuntRefer
 
 type shuntReference struct{ ShuntReference }
 
+// cornerCurrent is what a shunt reference of high gain draws within the corner where it begins to conduct, A: little
+// beside the currents it works with.
+const cornerCurrent = 0.5e-3
+
 func (s *shuntReference) Evaluate(v []float64, _ float64, i, g []float64) {
-	over, dover := smoothPositive(v[1]-s.Set, 1e-4)
+	over, dover := smoothPositive(v[1]-s.Set, math.Min(1e-4, cornerCurrent/s.Gain))
 	current, slope := s.Gain*over, s.Gain*dover
 	if s.CurrentLimit > 0 {
 		m, dm, _ := smoothMin(current, s.CurrentLimit, s.CurrentLimit*1e-3)

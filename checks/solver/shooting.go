@@ -53,6 +53,9 @@ const worthKeeping = 1e5
 // settle finds the state from which a period returns to itself, starting at x (overwritten), and returns that period.
 func (s *search) settle(ctx context.Context, x []float64, plain int) (*Trajectory, error) {
 	n := len(x)
+	if n > derivativesUpTo {
+		return s.accelerate(ctx, x)
+	}
 	residual := make([]float64, n)
 	best, worse, size := math.Inf(1), 0, math.Inf(1)
 	var kept *Trajectory

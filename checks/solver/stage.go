@@ -55,14 +55,13 @@ type stage struct {
 }
 
 func newStage(r *reduced) *stage {
-	d, m := len(r.sys.ports), r.sys.states()
+	d := len(r.sys.ports)
 	p := r.sys.maxPorts
 	return &stage{
 		r: r,
 		v: make([]float64, d), w: make([]float64, d), i: make([]float64, p), g: make([]float64, p*p),
 		slope: newDense(d, d), open: make([]float64, d), dv: make([]float64, d), next: make([]float64, d), trial: make([]float64, d),
-		lin: make([]float64, d), jac: newFactor(d), jacSlope: make([]float64, d*d), flow: newDense(m, m),
-		sensitivity: newDense(d, m), outputs: newDense(d, m),
+		lin: make([]float64, d), jac: newFactor(d), jacSlope: make([]float64, d*d),
 	}
 }
 
@@ -355,6 +354,10 @@ func (st *stage) transition() (dense, error) {
 	}
 	if st.flowOK {
 		return st.flow, nil
+	}
+	if st.flow.data == nil {
+		d, m := len(st.v), st.r.sys.states()
+		st.flow, st.sensitivity, st.outputs = newDense(m, m), newDense(d, m), newDense(d, m)
 	}
 	copy(st.flow.data, st.r.sx.data)
 	// d v / d x = (I - k slope)^-1 px; d w / d x = slope of that; d x' / d x = sx + sw of that.

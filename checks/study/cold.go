@@ -124,15 +124,7 @@ func (p *Plan) coldStart(ctx context.Context, set Setting, surgeOnly bool, emit 
 		if diodes == 0 && (surgeOnly || len(order) == 0) {
 			continue
 		}
-		steps := coldWorkingSteps
-		if set.Nominal {
-			steps = coldSteps
-		}
-		fine, err := follow(ctx, island.Network, order, steps)
-		coarse := fine
-		if err == nil {
-			coarse, err = follow(ctx, island.Network, order, steps/2)
-		}
+		fine, coarse, err := settledStart(ctx, island.Network, order, set.Nominal)
 		for k, local := range order {
 			id := watched[local]
 			e := &c.Elements[id]
@@ -173,6 +165,48 @@ func (p *Plan) coldStart(ctx context.Context, set Setting, surgeOnly bool, emit 
 			}
 		}
 	}
+}
+
+// The relative change of a surge from one grid to the next below which a start counts as accurate, of the netlist as
+// written and of the many of a check, in which the change counts against the part; and how often a grid is halved.
+const (
+	coldAccuracy        = 2e-3
+	coldWorkingAccuracy = 2e-2
+	coldHalvings        = 4
+)
+
+// settledStart follows a start on two grids, halved until the surges agree.
+func settledStart(ctx context.Context, n *solver.Network, devices []solver.Device, nominal bool) (fine, coarse []surge, err error) {
+	steps, accuracy := coldWorkingSteps, coldWorkingAccuracy
+	if nominal {
+		steps, accuracy = coldSteps, coldAccuracy
+	}
+	coarse, err = follow(ctx, n, devices, steps/2)
+	if err != nil {
+		return nil, nil, err
+	}
+	for k := range coldHalvings {
+		fine, err = follow(ctx, n, devices, steps<<k)
+		if err != nil {
+			return nil, nil, err
+		}
+		if agree(fine, coarse, accuracy) || k == coldHalvings-1 {
+			break
+		}
+		coarse = fine
+	}
+	return fine, coarse, nil
+}
+
+// agree reports whether the surges of two grids differ by less than the relative accuracy, microamperes aside.
+func agree(fine, coarse []surge, accuracy float64) bool {
+	for k := range fine {
+		f, c := &fine[k], &coarse[k]
+		if math.Abs(f.peak-c.peak) > accuracy*f.peak+1e-6 || math.Abs(f.integral-c.integral) > 2*accuracy*f.integral+1e-9 {
+			return false
+		}
+	}
+	return true
 }
 
 // follow integrates a start until the diode currents have settled.

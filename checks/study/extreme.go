@@ -3,8 +3,6 @@ package study
 import (
 	"context"
 	"math"
-
-	"railproof/netlist/quantity"
 )
 
 // Extreme value analysis: every toleranced parameter at the end that is bad for the stress in question (the
@@ -51,7 +49,7 @@ func newCorners(p *Plan, t *Table, base *outcome) *corners {
 	}
 	first := len(c.columns)
 	for k, q := range p.Parameters {
-		if q.Element == supplyWide {
+		if q.Element == supplyWide || p.beyondSearch(p.islands[q.Element]) {
 			continue
 		}
 		i := p.islands[q.Element]
@@ -167,73 +165,128 @@ func (p *proposal) doubtful() bool {
 // next moves every parameter alone around each vertex and proposes the vertices that its stresses then ask for, those
 // already solved left out.
 func (c *corners) next(ctx context.Context, around []*vertex, jobs int) []*proposal {
-	type probe struct {
-		vertex, column int
-		end            float64
-	}
 	var probes []probe
 	for v, at := range around {
 		wanted := c.wanted(at)
-		for j, column := range c.columns {
-			if !wanted[j] {
-				continue
-			}
-			for _, end := range []float64{-1, 1} {
-				if !c.isAt(at, column, end) {
-					probes = append(probes, probe{v, j, end})
-				}
+		for j := range c.columns {
+			if wanted[j] {
+				probes = append(probes, probe{v, j})
 			}
 		}
 	}
-	moved := make([]readings, len(probes))
+	// Each column is boiled down to the stresses it counts for as soon as its ends are solved: the readings of every
+	// probe together would be large.
+	references := make([]readings, len(around))
+	inParallel(len(around), jobs, func(v int) {
+		if len(probes) > 0 {
+			references[v] = c.probed(ctx, around[v])
+		}
+	})
+	effects := make([][]effect, len(probes))
 	inParallel(len(probes), jobs, func(k int) {
 		p := probes[k]
-		shift := append([]float64(nil), around[p.vertex].shift...)
-		for _, q := range c.columns[p.column] {
-			shift[q] = p.end
+		var ends [2]readings
+		for e, end := range []float64{-1, 1} {
+			if !c.isAt(around[p.vertex], c.columns[p.column], end) {
+				ends[e] = c.moved(ctx, around[p.vertex], p.column, end)
+			}
 		}
-		moved[k] = readingsOf(c.plan.settle(c.plan.probe(ctx, c.shifted(shift), c.warm)))
+		effects[k] = c.effects(around[p.vertex], p.column, references[p.vertex], ends[0], ends[1])
 	})
-	type at struct{ vertex, column, end int }
-	where := map[at]readings{}
-	for k, p := range probes {
-		where[at{p.vertex, p.column, int(p.end)}] = moved[k]
+	return c.gather(around, probes, effects)
+}
+
+// probe is a column to move around a vertex.
+type probe struct{ vertex, column int }
+
+// effect is what moving a parameter does to a stress of a vertex.
+type effect struct {
+	key, parameter int
+	end            float64 // the end that is worse; 0: where it is
+	change         float64 // of the stress when moved there
+	corner         bool
+}
+
+// moved reads a vertex with one column moved to an end.
+func (c *corners) moved(ctx context.Context, at *vertex, column int, end float64) readings {
+	shift := append([]float64(nil), at.shift...)
+	for _, q := range c.columns[column] {
+		shift[q] = end
+	}
+	return readingsOf(c.plan.settle(c.plan.probe(ctx, c.shifted(shift), c.warm)))
+}
+
+// effects lists for which stresses of a vertex the parameters of a column count.
+func (c *corners) effects(at *vertex, column int, reference, low, high readings) []effect {
+	var list []effect
+	for n, key := range at.keys {
+		home, ok := c.table.home[key.element]
+		now := reference[key]
+		if !ok || home < 0 || now == nil || math.IsNaN(now.Value) {
+			continue
+		}
+		k, ok := c.in(column, home)
+		if !ok {
+			continue
+		}
+		corner := c.plan.Parameters[k].bends(now, low[key], high[key])
+		end, matters := badEnd(now, low[key], high[key])
+		switch {
+		case !matters && !corner:
+			continue
+		case !matters || end == 0:
+			list = append(list, effect{key: n, parameter: k, corner: corner})
+			continue
+		}
+		to := high[key]
+		if end < 0 {
+			to = low[key]
+		}
+		list = append(list, effect{n, k, end, to.Value - now.Value, corner})
+	}
+	return list
+}
+
+// in finds the parameter of a column that may influence an island.
+func (c *corners) in(column, island int) (int, bool) {
+	for _, k := range c.columns[column] {
+		if q := c.plan.Parameters[k]; q.Element == supplyWide || c.plan.islands[q.Element] == island {
+			return k, true
+		}
+	}
+	return 0, false
+}
+
+// gather proposes a vertex for every stress whose effects ask for another one.
+func (c *corners) gather(around []*vertex, probes []probe, effects [][]effect) []*proposal {
+	type wish struct {
+		ends map[int]float64
+		promise
 	}
 	var list []*proposal
 	for v, from := range around {
-		reference := from.found
-		if len(probes) > 0 {
-			reference = c.probed(ctx, from)
-		}
-		for _, key := range from.keys {
-			home, ok := c.table.home[key.element]
-			now := reference[key]
-			if !ok || home < 0 || now == nil || math.IsNaN(now.Value) {
+		wishes := make([]wish, len(from.keys))
+		for k, p := range probes {
+			if p.vertex != v {
 				continue
 			}
-			ends := map[int]float64{}
-			promised, movement, corner := from.found[key].Value, 0.0, false
-			for _, k := range c.affect[home] {
-				low, high := where[at{v, c.rank[k], -1}][key], where[at{v, c.rank[k], 1}][key]
-				corner = corner || c.plan.Parameters[k].bends(now, low, high)
-				end, matters := badEnd(now, low, high)
-				switch {
-				case !matters:
-					continue
-				case end == 0:
-					ends[k] = from.shift[k]
-					continue
+			for _, e := range effects[k] {
+				w := &wishes[e.key]
+				if w.ends == nil {
+					w.ends, w.value = map[int]float64{}, from.found[from.keys[e.key]].Value
 				}
-				ends[k] = end
-				to := high
-				if end < 0 {
-					to = low
+				w.corner = w.corner || e.corner
+				w.ends[e.parameter] = from.shift[e.parameter]
+				if e.end != 0 {
+					w.ends[e.parameter] = e.end
+					w.value += e.change
+					w.movement += math.Abs(e.change)
 				}
-				promised += to.Value - now.Value
-				movement += math.Abs(to.Value - now.Value)
 			}
-			if movement > 0 {
-				list = c.propose(list, key, ends, promise{promised, movement, corner})
+		}
+		for n := range wishes {
+			if w := &wishes[n]; w.movement > 0 {
+				list = c.propose(list, from.keys[n], w.ends, w.promise)
 			}
 		}
 	}
@@ -298,51 +351,6 @@ func (p *proposal) add(key tableKey, ends map[int]float64, promised promise) {
 	p.promised = append(p.promised, promised)
 }
 
-// badEnd says at which end of a parameter a stress is worst: -1, 1, or 0 if where it is now is the worst; matters is
-// false if it changes too little at either end to count.
-func badEnd(at, low, high *Stress) (end float64, matters bool) {
-	threshold := indifferent*math.Abs(at.Value) + trifle(at.Unit)
-	gain := func(s *Stress) float64 {
-		if s == nil || math.IsNaN(s.Value) {
-			return 0
-		}
-		if smallerIsWorse[at.Quantity] {
-			return at.Value - s.Value
-		}
-		return s.Value - at.Value
-	}
-	l, h := gain(low), gain(high)
-	switch {
-	case l > threshold && l >= h:
-		return -1, true
-	case h > threshold:
-		return 1, true
-	}
-	return 0, l < -threshold || h < -threshold
-}
-
-// bends reports whether the effect of a parameter on a stress has a corner between its ends.
-func (p Parameter) bends(at, low, high *Stress) bool {
-	if low == nil || high == nil || p.Low >= 0 || p.High <= 0 {
-		return false
-	}
-	below, above := (at.Value-low.Value)/-p.Low, (high.Value-at.Value)/p.High
-	largest := math.Max(math.Abs(at.Value-low.Value), math.Abs(high.Value-at.Value))
-	return largest > 5*resolved*math.Abs(at.Value)+trifle(at.Unit) && math.Abs(below-above) > bent*math.Max(math.Abs(below), math.Abs(above))
-}
-
-// trifle is a change too small to count beside any rating of a supply: a tenth of a millivolt, a microampere, a
-// microwatt.
-func trifle(u quantity.Unit) float64 {
-	switch u {
-	case quantity.Volt:
-		return 1e-4
-	case quantity.Ampere, quantity.Watt:
-		return 1e-6
-	}
-	return 0
-}
-
 // tolerances adds the extreme value analysis around every base outcome that is the worst of some stress.
 func (t *Table) tolerances(ctx context.Context, base []*outcome, jobs int) {
 	if len(t.Plan.Parameters) == 0 {
@@ -352,6 +360,10 @@ func (t *Table) tolerances(ctx context.Context, base []*outcome, jobs int) {
 	for k := range t.Stresses {
 		s := &t.Stresses[k]
 		if s.Condition.Start == "cold" || s.base < 0 || s.base >= len(base) {
+			continue
+		}
+		home, ok := t.home[s.Element]
+		if !ok || home < 0 || t.Plan.beyondSearch(home) || math.IsNaN(s.Value) {
 			continue
 		}
 		owners[s.base] = append(owners[s.base], tableKey{s.Element, s.Quantity})

@@ -85,6 +85,9 @@ func (low *lowered) add(s *Supply, id netlist.ElementID, e *netlist.Element, set
 		} else if ohms < 0 {
 			return fmt.Errorf("a negative resistance of %g ohm has no stress", ohms)
 		}
+		if cold, ok := s.Property(id, "Rcold"); ok && set.Nominal && set.Cold {
+			ohms = cold.Value()
+		}
 		if hot, ok := s.Property(id, "Rhot"); ok && !set.Nominal {
 			// An inrush limiter is hot in the steady state, and at the restart after a dip, which is worse than
 			// the cold start with it cold.

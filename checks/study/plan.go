@@ -30,6 +30,8 @@ type Plan struct {
 	// Parameters are the toleranced quantities.
 	Parameters []Parameter
 	index      map[statedKey]int
+	sizes      []int // of each island, its nodes
+	searched   []int // of each island, its toleranced parameters
 	islands    []int // of each element, the independent part of the circuit it belongs to; -1: none
 	// Doubtful lists the sources whose amplitude looks like an RMS value of the mains.
 	Doubtful []netlist.ElementID

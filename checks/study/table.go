@@ -129,6 +129,7 @@ func Worst(ctx context.Context, s *Supply, jobs int) *Table {
 	p.outputShorts(ctx, jobs, t)
 	t.order(s.Circuit)
 	t.block()
+	t.unsearched()
 	return t
 }
 

@@ -81,6 +81,11 @@ func (p *Plan) planTolerances() {
 		p.elementTolerances(netlist.ElementID(k), &c.Elements[k])
 	}
 	p.forwardTolerances()
+	for _, q := range p.Parameters {
+		if q.Element != supplyWide && p.islands[q.Element] >= 0 {
+			p.searched[p.islands[q.Element]]++
+		}
+	}
 }
 
 func (p *Plan) addParameter(q Parameter) {
@@ -233,7 +238,11 @@ func (p *Plan) forwardTolerances() {
 func (p *Plan) planIslands() {
 	c := p.supply.Circuit
 	p.islands = make([]int, len(c.Elements))
-	laid, _ := p.lay(Setting{})
+	laid, parts := p.lay(Setting{})
+	p.sizes, p.searched = make([]int, len(parts)), make([]int, len(parts))
+	for i, part := range parts {
+		p.sizes[i] = len(part.Nodes)
+	}
 	for k := range p.islands {
 		p.islands[k] = laid.islandOf(c, netlist.ElementID(k))
 	}

@@ -194,3 +194,9 @@ def darlington_dropping_out():
                                                            18, 0.6, "680u", "470", 18), [14.0, 11.0])
 def complementary_dropping_out():
     return complementary(18, 0.6, 680e-6, 470, 18)
+
+
+@circuit("shunt-reference-dropping-out", reference_cards("Converter reference: adjustable shunt that lets go at the trough",
+                                                         22, "150u", 330), [18.0])
+def shunt_reference_dropping_out():
+    return reference(22, 150e-6, 330)

@@ -8,6 +8,7 @@ from laws import Bridge, Diode, root
 from rectifiers import DR, DR_CARD, W50
 from regulators import cards
 from shunts import front
+from filters import choke_cards
 
 
 @circuit("cold-dual-rail", f"""Filter bank supply switched on: unequal reservoirs and a load from rail to rail
@@ -115,4 +116,27 @@ def cold_limiter():
         slopes, nodes, currents = plain(t, x)
         i = currents.pop("RW")
         return slopes, {**nodes, "F": nodes["A"] + 0.25 * i}, {**currents, "RN": i, "RF": i}
+    return equations
+
+
+@circuit("cold-choke-light-load", choke_cards("Transmitter bench rail switched on with a light load: the choke current stops "
+                                              "after the overshoot", 48, 50, "150m", 2, "220u", "2.2k").replace("RDC", "RP P 0 1meg\nRDC"),
+         [0.0, 0.0], mode="cold-start", cycles=12)
+def cold_choke_light_load():
+    """L j' = p - RDC j - v with f(e, p) + r(e, p) = j + p/RP."""
+    b = Bridge(Diode(**DR))
+
+    def equations(t, x):
+        j, v = x
+        e = 48 * sin(W50 * t)
+
+        def residual(p):
+            f, r, gf, gr = b(e, p)
+            return p / 1e6 + j - f - r, 1e-6 + (gf + gr) / 2
+        p = root(residual, -5, 120)
+        f, r, _, _ = b(e, p)
+        ic = j - v / 2200
+        return ([(p - 2 * j - v) / 0.15, ic / 220e-6],
+                {"A": (p + e) / 2, "B": (p - e) / 2, "P": p, "Q": p - 2 * j, "OUT": v},
+                {"V1": r - f, "D1": f, "D2": r, "D3": r, "D4": f, "RP": p / 1e6, "RDC": j, "L1": j, "C1": ic, "RL": v / 2200})
     return equations
