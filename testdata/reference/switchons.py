@@ -4,11 +4,11 @@ from math import sin
 
 from circuits import circuit
 from coldstarts import bridge, bridge_cards
+from filters import choke_cards
 from laws import Bridge, Diode, root
 from rectifiers import DR, DR_CARD, W50
 from regulators import cards
 from shunts import front
-from filters import choke_cards
 
 
 @circuit("cold-dual-rail", f"""Filter bank supply switched on: unequal reservoirs and a load from rail to rail
