@@ -124,6 +124,8 @@ func build(t interface {
 // knownTypes is a small library of generic types.
 type knownTypes struct{}
 
+func (k knownTypes) Named(name string) (KnownPart, bool) { return k.Recognise(name) }
+
 func (knownTypes) Recognise(name string) (KnownPart, bool) {
 	switch strings.ToUpper(name) {
 	case "1N4007":

@@ -12,7 +12,7 @@ func (c *Circuit) adoptPart(id ElementID, typeName string, stated []string) (why
 	var part KnownPart
 	known := false
 	if c.Library != nil {
-		part, known = c.Library.Recognise(typeName)
+		part, known = c.Library.Named(typeName)
 	}
 	pins := pinsOf(stated)
 	e := &c.Elements[id]

@@ -147,7 +147,7 @@ func (in *interpreter) part(s *syntax.PartStatement) {
 		})
 	}
 	if in.circuit.Library != nil && len(m.elements) > 0 {
-		if _, known := in.circuit.Library.Recognise(typeName); !known {
+		if _, known := in.circuit.Library.Named(typeName); !known {
 			in.remark(s.Type.At(), "type "+typeName+" names no rectifier, zener or regulator of the parts table")
 		}
 	}

@@ -6,6 +6,8 @@ type Library interface {
 	// Recognise looks a type name up, after the trade's habits of prefix and suffix
 	// ("DI_1N4734A", "LM7812CT", "1N4004G"). ok is false for an unknown name.
 	Recognise(typeName string) (part KnownPart, ok bool)
+	// Named is Recognise for a name that a `part` statement gives: a bare row name such as "317" counts too.
+	Named(typeName string) (part KnownPart, ok bool)
 }
 
 // KnownPart is what the reader must know of a part to place it in the graph.

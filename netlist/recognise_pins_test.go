@@ -8,6 +8,8 @@ import (
 // regulators is a library that knows a few type names.
 type regulators struct{}
 
+func (r regulators) Named(name string) (KnownPart, bool) { return r.Recognise(name) }
+
 func (regulators) Recognise(name string) (KnownPart, bool) {
 	pins := []Pin{PinIn, PinReference, PinOut}
 	switch name {

@@ -176,6 +176,14 @@ func (t *Table) Recognise(typeName string) (netlist.KnownPart, bool) {
 	return row.Known(), true
 }
 
+// Named implements netlist.Library.
+func (t *Table) Named(typeName string) (netlist.KnownPart, bool) {
+	if row, ok := t.Lookup(typeName); ok {
+		return row.Known(), true
+	}
+	return t.Recognise(typeName)
+}
+
 var _ netlist.Library = (*Table)(nil)
 
 // fold makes type names comparable.
