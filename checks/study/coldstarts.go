@@ -67,8 +67,7 @@ func (p *Plan) coldSettings() []Setting {
 }
 
 // coldStarts adds the switch-on from empty.
-func (p *Plan) coldStarts(ctx context.Context, jobs int, t *Table) {
-	settings := p.coldSettings()
+func (p *Plan) coldStarts(ctx context.Context, settings []Setting, jobs int, t *Table) {
 	results := make([][]Stress, len(settings))
 	inParallel(len(settings), jobs, func(k int) {
 		p.coldStart(ctx, settings[k], false, func(s Stress) { results[k] = append(results[k], s) })

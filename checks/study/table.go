@@ -122,15 +122,32 @@ func Worst(ctx context.Context, s *Supply, jobs int) *Table {
 		out.base = k
 		t.take(out)
 	}
-	base = append(base, t.interior(ctx, base, jobs)...)
-	t.tolerances(ctx, base, jobs)
-	p.coldStarts(ctx, jobs, t)
-	p.lineOffs(ctx, jobs, t)
-	p.outputShorts(ctx, jobs, t)
+	starts := p.coldSettings()
+	if anySolved(base) {
+		base = append(base, t.interior(ctx, base, jobs)...)
+		t.tolerances(ctx, base, jobs)
+		p.lineOffs(ctx, jobs, t)
+		p.outputShorts(ctx, jobs, t)
+	} else {
+		starts = starts[:1] // says why it cannot be solved either
+	}
+	p.coldStarts(ctx, starts, jobs, t)
 	t.order(s.Circuit)
 	t.block()
 	t.unsearched()
 	return t
+}
+
+// anySolved reports whether any part of the circuit was solved in any condition.
+func anySolved(outcomes []*outcome) bool {
+	for _, out := range outcomes {
+		for i := range out.islands {
+			if out.islands[i].solution != nil {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // order sorts the stresses by element in netlist order, then nodes, keeping the order of quantities.
