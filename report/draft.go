@@ -10,10 +10,7 @@ import (
 // DraftLines lists what a starter duty sheet should ask for: each rating that an unproven finding of a
 // result waits for, with how much is needed and what it is for.
 func DraftLines(r *checks.Result) []netlist.DraftLine {
-	f := File{}
-	for _, x := range r.Findings {
-		f.Findings = append(f.Findings, newFinding(x, r.Circuit))
-	}
+	f := File{Findings: newFindings(r)}
 	var lines []netlist.DraftLine
 	type asked struct {
 		element netlist.ElementID

@@ -170,9 +170,7 @@ func newFile(in Input, now time.Time) File {
 	if r.Circuit != nil {
 		f.Rails = r.Circuit.RailMap(r.Duty)
 	}
-	for _, finding := range r.Findings {
-		f.Findings = append(f.Findings, newFinding(finding, r.Circuit))
-	}
+	f.Findings = newFindings(r)
 	if r.Duty != nil {
 		f.SharedSheet = slashed(r.Duty.SharedSheet)
 		f.concede(r.Duty.Concessions, now)
@@ -182,17 +180,26 @@ func newFile(in Input, now time.Time) File {
 	return f
 }
 
-func newFinding(f checks.Finding, c *netlist.Circuit) Finding {
-	title, rank := titleOf(f.Check)
-	n := Finding{Finding: f, Title: title, rank: rank, place: -1}
-	if c != nil {
-		if id, ok := c.Find(f.Element); ok {
-			n.place = int(id)
-		} else if f.Element != "" {
-			n.place = len(c.Elements)
+// newFindings takes over the findings of a result, each with its place in the netlist.
+func newFindings(r *checks.Result) []Finding {
+	places := map[string]int{"": -1}
+	behind := -1
+	if r.Circuit != nil {
+		behind = len(r.Circuit.Elements)
+		for k := range r.Circuit.Elements {
+			places[r.Circuit.Elements[k].Name] = k
 		}
 	}
-	return n
+	list := make([]Finding, 0, len(r.Findings))
+	for _, f := range r.Findings {
+		title, rank := titleOf(f.Check)
+		place, ok := places[f.Element]
+		if !ok {
+			place = behind
+		}
+		list = append(list, Finding{Finding: f, Title: title, rank: rank, place: place})
+	}
+	return list
 }
 
 // titleOf is the title of a check and its rank in the catalogue; a check that is not there keeps its name.
