@@ -3,7 +3,9 @@ package study
 import (
 	"context"
 	"errors"
+	"fmt"
 	"math"
+	"time"
 
 	"railproof/checks/solver"
 	"railproof/netlist"
@@ -85,6 +87,9 @@ func (p *Plan) lay(set Setting) (*outcome, []solver.Island) {
 	return out, parts
 }
 
+// islandTime ends the search for the steady state of one island in one setting: a thousand times what a usual one takes.
+const islandTime = time.Minute
+
 // solve finds the steady state of every island of the supply in one setting.
 func (p *Plan) solve(ctx context.Context, set Setting, warm states) *outcome {
 	// The conditions of a check fill the cores by themselves; a netlist exactly as written has only its islands.
@@ -108,10 +113,17 @@ func (p *Plan) solveWith(ctx context.Context, set Setting, warm states, jobs int
 	inParallel(len(parts), jobs, func(i int) {
 		is, own := &out.islands[i], effort
 		own.Start = warm[i]
-		is.solution, is.err = solver.SteadyState(ctx, parts[i].Network, own)
-		if is.err != nil && !errors.Is(is.err, solver.ErrInaccurate) && warm[i] != nil && ctx.Err() == nil {
+		limited, cancel := context.WithTimeout(ctx, islandTime)
+		defer cancel()
+		defer func() {
+			if ctx.Err() == nil && errors.Is(is.err, context.DeadlineExceeded) {
+				is.err = fmt.Errorf("no steady state was found within %v", islandTime)
+			}
+		}()
+		is.solution, is.err = solver.SteadyState(limited, parts[i].Network, own)
+		if is.err != nil && !errors.Is(is.err, solver.ErrInaccurate) && warm[i] != nil && limited.Err() == nil {
 			own.Start = nil
-			is.solution, is.err = solver.SteadyState(ctx, parts[i].Network, own)
+			is.solution, is.err = solver.SteadyState(limited, parts[i].Network, own)
 		}
 	})
 	return out
