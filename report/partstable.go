@@ -91,7 +91,11 @@ func WritePart(w io.Writer, row *parts.Row, colour bool) error {
 			if c.Condition != "" {
 				about = c.Condition + "; " + about
 			}
-			rows = append(rows, []string{string(symbol), quantity.Format(c.Number, c.Unit, 0), printable(c.Case), printable(c.Confidence), printable(about)})
+			digits := 0 // as in the table
+			if c.Unit == quantity.One {
+				digits = 4 // a ratio may come out of decibels
+			}
+			rows = append(rows, []string{string(symbol), quantity.Format(c.Number, c.Unit, digits), printable(c.Case), printable(c.Confidence), printable(about)})
 		}
 	}
 	l.table(rows)
