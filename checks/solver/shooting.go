@@ -108,7 +108,7 @@ func (s *search) settle(ctx context.Context, x []float64, plain int) (*Trajector
 			size = math.Max(size, math.Abs(step[k])/(s.scale[k]*absoluteState+relativeState*math.Abs(x[k])))
 			x[k] += step[k]
 		}
-		if size < 1 && norm >= 1 {
+		if most := math.Max(1, s.enough); size < most && norm >= most {
 			// What Newton's method calls neutral still moves: nothing conducts, and a load empties a reservoir.
 			copy(x, s.m.x)
 			plain = 1

@@ -46,10 +46,7 @@ func runDraft(ctx context.Context, s *streams, o *draftOptions, file string) err
 		return err
 	}
 	if len(diagnostics) > 0 {
-		for _, d := range diagnostics {
-			s.say(d.Error())
-		}
-		return exitStatus(report.ExitBadInput)
+		return s.refuse(diagnostics)
 	}
 	sheet := netlist.Draft(result.Circuit, result.Duty, report.DraftLines(result))
 	if o.file != "" {

@@ -47,10 +47,7 @@ func runSettings(s *streams, o *settingsOptions, file string) error {
 		return err
 	}
 	if len(diagnostics) > 0 {
-		for _, d := range diagnostics {
-			s.say(d.Error())
-		}
-		return exitStatus(report.ExitBadInput)
+		return s.refuse(diagnostics)
 	}
 	if err := o.spare(targets); err != nil {
 		return err

@@ -64,10 +64,7 @@ func runSize(ctx context.Context, s *streams, o *sizeOptions, file string) error
 		return fmt.Errorf("interrupted")
 	}
 	if len(diagnostics) > 0 {
-		for _, d := range diagnostics {
-			s.say(d.Error())
-		}
-		return exitStatus(report.ExitBadInput)
+		return s.refuse(diagnostics)
 	}
 	if err := o.spare(targets); err != nil {
 		return err

@@ -130,10 +130,7 @@ func runSpread(ctx context.Context, s *streams, o *spreadOptions, file string) e
 	case err != nil:
 		return err
 	case len(diagnostics) > 0:
-		for _, d := range diagnostics {
-			s.say(d.Error())
-		}
-		return exitStatus(report.ExitBadInput)
+		return s.refuse(diagnostics)
 	}
 	spread := report.NewSpread(result, version)
 	spread.Selected = chosen

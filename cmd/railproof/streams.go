@@ -8,6 +8,7 @@ import (
 
 	"github.com/mattn/go-isatty"
 
+	"railproof/netlist"
 	"railproof/report"
 )
 
@@ -61,4 +62,12 @@ func (s *streams) say(message string) {
 	for _, line := range strings.Split(message, "\n") {
 		fmt.Fprintln(s.err, report.Printable(line))
 	}
+}
+
+// refuse says what is wrong with an input that could not be read.
+func (s *streams) refuse(diagnostics []netlist.Diagnostic) error {
+	for _, d := range diagnostics {
+		s.say(d.Error())
+	}
+	return exitStatus(report.ExitBadInput)
 }

@@ -51,10 +51,7 @@ func runStress(ctx context.Context, s *streams, o *stressOptions, file string) e
 		return err
 	}
 	if len(diagnostics) > 0 {
-		for _, d := range diagnostics {
-			s.say(d.Error())
-		}
-		return exitStatus(report.ExitBadInput)
+		return s.refuse(diagnostics)
 	}
 	if err := o.spare(targets); err != nil {
 		return err

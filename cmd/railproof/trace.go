@@ -109,10 +109,7 @@ func runTrace(ctx context.Context, s *streams, o *traceOptions, c *cobra.Command
 		return err
 	}
 	if len(diagnostics) > 0 {
-		for _, d := range diagnostics {
-			s.say(d.Error())
-		}
-		return exitStatus(report.ExitBadInput)
+		return s.refuse(diagnostics)
 	}
 	if err := o.spare(targets); err != nil {
 		return err
