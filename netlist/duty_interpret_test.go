@@ -298,6 +298,7 @@ func TestDutyFaults(t *testing.T) {
 		{"rail OUT 11.4V..12.6V riple=10mV", `no setting "riple" here; expected ripple`},
 		{"rail 0 11.4V..12.6V", "the ground is no rail"},
 		{"life 5y", `"y" is no unit; expected a time in h`},
+		{"rate R* VRRM=70A", "expected a voltage in V"}, // even where it selects nothing that has one
 		{"life 0h", "must be more than zero"},
 		{"profile acessible-terminals", "expected accessible-terminals"},
 		{`concession diode-reverse-voltage D3 up to 460 until 2027-03-31 "x"`, "no value with a unit"},

@@ -204,9 +204,7 @@ func (in *interpreter) rateOne(s *syntax.RateStatement, m match, symbol Symbol, 
 			d.Ratings = append(d.Ratings, rating)
 		})
 	}
-	if !some && in.shared() {
-		in.verifyRating(symbol, setting)
-	} else if !some {
+	if !some && in.verifyRating(symbol, setting) && !in.shared() {
 		in.remark(setting.At(), "unused: "+string(symbol)+" has no meaning for anything that "+s.Elements.Raw+" selects")
 	}
 }

@@ -114,9 +114,8 @@ func (in *interpreter) supersededBy(e *dutyEntry) (by *dutyEntry) {
 	return nil
 }
 
-// verifyRating reads a value of the shared sheet for a part that this netlist does not have: it must be one for
-// some kind of part.
-func (in *interpreter) verifyRating(symbol Symbol, setting syntax.Setting) {
+// verifyRating reads a value stated for a part that this netlist does not have: it must be one for some kind of part.
+func (in *interpreter) verifyRating(symbol Symbol, setting syntax.Setting) bool {
 	var first error
 	for _, m := range meanings {
 		if m.Symbol != symbol {
@@ -124,7 +123,7 @@ func (in *interpreter) verifyRating(symbol Symbol, setting syntax.Setting) {
 		}
 		_, _, err := readRating(m, setting.Value.Text())
 		if err == nil {
-			return
+			return true
 		}
 		if first == nil {
 			first = err
@@ -133,6 +132,7 @@ func (in *interpreter) verifyRating(symbol Symbol, setting syntax.Setting) {
 	if first != nil {
 		in.quantityFault(first, setting.Value.Raw, setting.Value.At())
 	}
+	return first == nil
 }
 
 // verifyLoad reads a range of the shared sheet for a load that this netlist does not have.
