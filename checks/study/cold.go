@@ -25,48 +25,6 @@ const (
 // unboundedSurge is the relative change of a peak current from one grid to the next from which nothing limits it.
 const unboundedSurge = 0.2
 
-// surge follows the current of one diode through a start.
-type surge struct {
-	peak, at float64
-	integral float64 // largest of one conduction pulse, at most a period long, A^2 s
-	running  float64
-	since    float64
-	last     float64        // peak of the last period
-	highest  solver.Extreme // of the voltage
-	lowest   solver.Extreme
-}
-
-// follow takes a period into account. A pulse is conduction above a thousandth of the largest current so far.
-func (s *surge) follow(tr *solver.Trajectory, d solver.Device, branch int, period float64) {
-	b, i := tr.BranchOf(d, branch)
-	s.last = 0
-	for k := range tr.Samples() {
-		t := tr.Start + float64(k)*tr.Step
-		if v := tr.Voltage(b, k); v > s.highest.Value {
-			s.highest = solver.Extreme{Value: v, At: t}
-		} else if v < s.lowest.Value {
-			s.lowest = solver.Extreme{Value: v, At: t}
-		}
-		if i[k] > s.peak {
-			s.peak, s.at = i[k], t
-		}
-		s.last = math.Max(s.last, i[k])
-		if k == 0 {
-			continue
-		}
-		if i[k] > 1e-3*s.peak && t-s.since < period {
-			s.running += 0.5 * tr.Step * (i[k]*i[k] + i[k-1]*i[k-1])
-			s.integral = math.Max(s.integral, s.running)
-		} else {
-			s.running, s.since = 0, t
-		}
-	}
-	st := tr.Summary(func(k int) float64 { return i[k] })
-	if st.Max.Value > s.peak {
-		s.peak, s.at = st.Max.Value, st.Max.At
-	}
-}
-
 // coldStart integrates a switch-on of every island in one setting and emits the surge of each diode, and the
 // extreme voltages of diodes, capacitors and regulator inputs on the way.
 func (p *Plan) coldStart(ctx context.Context, set Setting, surgeOnly bool, emit func(Stress)) {
@@ -97,74 +55,66 @@ func (p *Plan) coldStart(ctx context.Context, set Setting, surgeOnly bool, emit 
 		}
 	}
 	for _, island := range low.net.Islands() {
-		watched := map[solver.Device]netlist.ElementID{} // local device -> element
-		var order []solver.Device
-		diodes, blocked := 0, ""
-		for local, d := range island.Devices {
-			if why, ok := low.blocked[d]; ok {
-				blocked = why
-			}
-			id, ok := of[d]
-			if !ok {
-				continue
-			}
-			switch c.Elements[id].Device.(type) {
-			case netlist.Diode:
-				diodes++
-			case netlist.Capacitor, netlist.Regulator:
-				if surgeOnly {
-					continue
-				}
-			default:
-				continue
-			}
-			watched[solver.Device(local)] = id
-			order = append(order, solver.Device(local))
-		}
-		if diodes == 0 && (surgeOnly || len(order) == 0) {
+		parts, blocked := p.watch(low, of, island, surgeOnly)
+		if len(parts) == 0 {
 			continue
 		}
-		fine, coarse, err := settledStart(ctx, island.Network, order, set.Nominal)
-		for k, local := range order {
-			id := watched[local]
-			e := &c.Elements[id]
-			_, diode := e.Device.(netlist.Diode)
+		fine, coarse, err := settledStart(ctx, island.Network, parts, set.Nominal)
+		for k, w := range parts {
+			_, diode := c.Elements[w.id].Device.(netlist.Diode)
 			if err != nil {
 				if diode {
-					fail(id, err.Error())
+					fail(w.id, err.Error())
 				}
 				continue
 			}
-			f, g := &fine[k], &coarse[k]
-			put := func(q Quantity, value, other, at float64) {
-				emit(Stress{Element: e.Name, Quantity: q, Unit: unitOf(q), Value: value, Error: math.Abs(value - other), Phase: at, Condition: cond, Unproven: blocked})
+			unbounded := diode && fine[k].peak > 1 && math.Abs(fine[k].peak-coarse[k].peak) > unboundedSurge*fine[k].peak
+			if unbounded {
+				fail(w.id, "its surge grows as the time step shrinks: nothing but the diode limits the current into an empty capacitor")
 			}
-			if diode {
-				if math.Abs(f.peak-g.peak) > unboundedSurge*f.peak && f.peak > 1 {
-					fail(id, "its surge grows as the time step shrinks: nothing but the diode limits the current into an empty capacitor")
-				} else {
-					put(SurgeCurrent, f.peak, g.peak, f.at)
-					put(SurgeI2t, f.integral, g.integral, math.NaN())
+			other := w.reads(&coarse[k])
+			for n, r := range w.reads(&fine[k]) {
+				if unbounded && (r.quantity == SurgeCurrent || r.quantity == SurgeI2t) {
+					continue
 				}
-				if !surgeOnly {
-					put(PeakReverseVoltage, math.Max(0, -f.lowest.Value), math.Max(0, -g.lowest.Value), f.lowest.At)
-				}
-				continue
-			}
-			if _, ok := e.Device.(netlist.Capacitor); ok {
-				put(MaxVoltage, f.highest.Value, g.highest.Value, f.highest.At)
-				put(MinVoltage, f.lowest.Value, g.lowest.Value, f.lowest.At)
-				continue
-			}
-			if law, ok := low.regulators[id]; ok {
-				if law.Sign > 0 {
-					put(MaxInputVoltage, f.highest.Value, g.highest.Value, f.highest.At)
-				} else {
-					put(MaxInputVoltage, -f.lowest.Value, -g.lowest.Value, f.lowest.At)
-				}
+				emit(Stress{Element: c.Elements[w.id].Name, Quantity: r.quantity, Unit: unitOf(r.quantity), Value: r.value,
+					Error: math.Abs(r.value - other[n].value), Phase: r.at, Condition: cond, Unproven: blocked})
 			}
 		}
 	}
+}
+
+// watch lists the parts of an island whose start counts, and why nothing can be proven of them, if so.
+func (p *Plan) watch(low *lowered, of map[solver.Device]netlist.ElementID, island solver.Island, surgeOnly bool) (parts []watched, blocked string) {
+	for local, d := range island.Devices {
+		if why, ok := low.blocked[d]; ok {
+			blocked = why
+		}
+		id, ok := of[d]
+		if !ok {
+			continue
+		}
+		var reads func(s *surge) []reached
+		switch p.supply.Circuit.Elements[id].Device.(type) {
+		case netlist.Diode:
+			reads = diodeStart
+			if surgeOnly {
+				reads = bursts
+			}
+		case netlist.Capacitor:
+			reads = capacitorStart
+		case netlist.Regulator:
+			if law, ok := low.regulators[id]; ok && law.Sign > 0 {
+				reads = positiveInputStart
+			} else if ok {
+				reads = negativeInputStart
+			}
+		}
+		if _, diode := p.supply.Circuit.Elements[id].Device.(netlist.Diode); reads != nil && (diode || !surgeOnly) {
+			parts = append(parts, watched{solver.Device(local), id, reads})
+		}
+	}
+	return parts, blocked
 }
 
 // The relative change of a surge from one grid to the next below which a start counts as accurate, of the netlist as
@@ -176,21 +126,21 @@ const (
 )
 
 // settledStart follows a start on two grids, halved until the surges agree.
-func settledStart(ctx context.Context, n *solver.Network, devices []solver.Device, nominal bool) (fine, coarse []surge, err error) {
+func settledStart(ctx context.Context, n *solver.Network, parts []watched, nominal bool) (fine, coarse []surge, err error) {
 	steps, accuracy := coldWorkingSteps, coldWorkingAccuracy
 	if nominal {
 		steps, accuracy = coldSteps, coldAccuracy
 	}
-	coarse, err = follow(ctx, n, devices, steps/2)
+	coarse, err = follow(ctx, n, parts, steps/2)
 	if err != nil {
 		return nil, nil, err
 	}
 	for k := range coldHalvings {
-		fine, err = follow(ctx, n, devices, steps<<k)
+		fine, err = follow(ctx, n, parts, steps<<k)
 		if err != nil {
 			return nil, nil, err
 		}
-		if agree(fine, coarse, accuracy) || k == coldHalvings-1 {
+		if agree(parts, fine, coarse, accuracy) || k == coldHalvings-1 {
 			break
 		}
 		coarse = fine
@@ -198,20 +148,27 @@ func settledStart(ctx context.Context, n *solver.Network, devices []solver.Devic
 	return fine, coarse, nil
 }
 
-// agree reports whether the surges of two grids differ by less than the relative accuracy, microamperes aside.
-func agree(fine, coarse []surge, accuracy float64) bool {
-	for k := range fine {
-		f, c := &fine[k], &coarse[k]
-		if math.Abs(f.peak-c.peak) > accuracy*f.peak+1e-6 || math.Abs(f.integral-c.integral) > 2*accuracy*f.integral+1e-9 {
-			return false
+// agree reports whether the stresses of two grids differ by less than the relative accuracy, micro-units aside; a
+// squared current may differ by twice that.
+func agree(parts []watched, fine, coarse []surge, accuracy float64) bool {
+	for k, w := range parts {
+		other := w.reads(&coarse[k])
+		for n, r := range w.reads(&fine[k]) {
+			allowed := accuracy*math.Abs(r.value) + 1e-6
+			if r.quantity == SurgeI2t {
+				allowed = 2*accuracy*r.value + 1e-9
+			}
+			if math.Abs(r.value-other[n].value) > allowed {
+				return false
+			}
 		}
 	}
 	return true
 }
 
 // follow integrates a start until the diode currents have settled.
-func follow(ctx context.Context, n *solver.Network, devices []solver.Device, steps int) ([]surge, error) {
-	list := make([]surge, len(devices))
+func follow(ctx context.Context, n *solver.Network, parts []watched, steps int) ([]surge, error) {
+	list := make([]surge, len(parts))
 	quiet := 0
 	period := n.Period
 	if period == 0 {
@@ -219,9 +176,9 @@ func follow(ctx context.Context, n *solver.Network, devices []solver.Device, ste
 	}
 	err := solver.ColdStart(ctx, n, 0, steps, coldMaxPeriods, func(_ int, tr *solver.Trajectory) bool {
 		calm := true
-		for k, d := range devices {
+		for k, w := range parts {
 			before := list[k].last
-			list[k].follow(tr, d, 0, period)
+			list[k].follow(tr, w.device, 0, period)
 			if math.Abs(list[k].last-before) > coldSettled*math.Max(list[k].peak, 1e-6) {
 				calm = false
 			}
