@@ -22,6 +22,9 @@ func (c *collector) checkStresses(id netlist.ElementID, e *netlist.Element, dev 
 		c.put(SteadyMaxVoltage, quantity.Volt, v, magnitude)
 		c.equivalentRipple(id, &d, dev)
 	case netlist.Diode:
+		if !c.plan.supply.IsZener(id) {
+			return
+		}
 		c.put(MeanReverseCurrent, quantity.Ampere, scaled(-1, i), mean)
 	case netlist.Inductor:
 		c.put(DCCurrent, quantity.Ampere, i, func(st solver.Stats) (float64, float64) { return math.Abs(st.Mean), math.NaN() })

@@ -16,7 +16,7 @@ const (
 	// indifferent is the relative change of a stress below which a parameter does not count for it.
 	indifferent = 1e-4
 	// additive and resolved: a vertex may miss the sum of all single changes by this part of it and this part of the
-	// stress itself, the accuracy of one grid, before the signs are taken again.
+	// stress itself, the accuracy of one grid, beside its numerical error, before the signs are taken again.
 	additive = 0.05
 	resolved = 1e-3
 	// bent is the part by which the effects of a parameter towards its two ends may differ, each by the length of its
@@ -154,7 +154,7 @@ func (p *proposal) doubtful() bool {
 		if !ok || math.IsNaN(s.Value) {
 			continue
 		}
-		if at := p.promised[k]; at.corner || math.Abs(s.Value-at.value) > additive*at.movement+resolved*math.Abs(s.Value)+trifle(s.Unit) {
+		if at := p.promised[k]; at.corner || math.Abs(s.Value-at.value) > additive*at.movement+resolved*math.Abs(s.Value)+s.Error+trifle(s.Unit) {
 			keys = append(keys, key)
 		}
 	}

@@ -139,24 +139,21 @@ func (t *Table) peaks(known map[float64]readings) []peak {
 		if key.quantity == MinHeadroom && t.Plan.held() {
 			continue // its own conditions, with outputs held
 		}
-		badness := func(at int) float64 {
+		badAt := func(at int) float64 {
 			s := known[positions[at]][key]
-			switch {
-			case s == nil || math.IsNaN(s.Value):
+			if s == nil || math.IsNaN(s.Value) {
 				return math.Inf(-1)
-			case smallerIsWorse[key.quantity]:
-				return -s.Value
 			}
-			return s.Value
+			return badness(key.quantity, s.Value)
 		}
 		worst := 0
 		for at := 1; at <= last; at++ {
-			if badness(at) > badness(worst) {
+			if badAt(at) > badAt(worst) {
 				worst = at
 			}
 		}
-		end := math.Max(badness(0), badness(last))
-		if worst > 0 && worst < last && badness(worst) > end+resolved*math.Abs(end)+trifle(t.Stresses[k].Unit) {
+		end := math.Max(badAt(0), badAt(last))
+		if worst > 0 && worst < last && badAt(worst) > end+resolved*math.Abs(end)+trifle(t.Stresses[k].Unit) {
 			count[worst]++
 		}
 	}

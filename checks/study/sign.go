@@ -40,10 +40,7 @@ func badEnd(at, low, high *Stress) (end float64, matters bool) {
 		if s == nil || math.IsNaN(s.Value) {
 			return 0
 		}
-		if smallerIsWorse[at.Quantity] {
-			return at.Value - s.Value
-		}
-		return s.Value - at.Value
+		return badness(at.Quantity, s.Value) - badness(at.Quantity, at.Value)
 	}
 	l, h := gain(low), gain(high)
 	switch {
@@ -66,12 +63,12 @@ func (p Parameter) bends(at, low, high *Stress) bool {
 }
 
 // trifle is a change too small to count beside any rating of a supply: a tenth of a millivolt, a microampere, a
-// microwatt.
+// microwatt, a millionth of ripple.
 func trifle(u quantity.Unit) float64 {
 	switch u {
 	case quantity.Volt:
 		return 1e-4
-	case quantity.Ampere, quantity.Watt:
+	case quantity.Ampere, quantity.Watt, quantity.One:
 		return 1e-6
 	}
 	return 0

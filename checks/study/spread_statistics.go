@@ -38,7 +38,9 @@ type Statistics struct {
 func (s *Sampled) Bounded() bool { return s.Bound.Unproven == "" && !math.IsNaN(s.Bound.Value) }
 
 // SmallerIsWorse reports whether the bound is a lower one.
-func (s *Sampled) SmallerIsWorse() bool { return smallerIsWorse[s.Bound.Quantity] }
+func (s *Sampled) SmallerIsWorse() bool {
+	return smallerIsWorse[s.Bound.Quantity] || signed[s.Bound.Quantity] && s.Bound.Value < 0
+}
 
 // Limit is the bound with its numerical error counted against the part.
 func (s *Sampled) Limit() float64 {

@@ -54,6 +54,21 @@ func (t *Table) Island(id netlist.ElementID) int { return t.Plan.islands[id] }
 // smallerIsWorse are the quantities whose worst value is the smallest.
 var smallerIsWorse = map[Quantity]bool{MinVoltage: true, MinCurrent: true, MinDifferential: true, MinHeadroom: true, LeastCurrent: true, MinOutputCurrent: true}
 
+// signed are the quantities whose value farther from nought is the worse: a source gives power away, and a negative
+// rail is below ground.
+var signed = map[Quantity]bool{MeanVoltage: true, MeanCurrent: true, MeanPower: true, ShortPower: true}
+
+// badness orders the values of a quantity: the larger, the worse.
+func badness(q Quantity, value float64) float64 {
+	switch {
+	case smallerIsWorse[q]:
+		return -value
+	case signed[q]:
+		return math.Abs(value)
+	}
+	return value
+}
+
 // tie is the relative difference below which two conditions count as equally bad and the first one is shown.
 const tie = 1e-6
 
@@ -65,11 +80,7 @@ func worse(a, b *Stress) bool {
 	if math.IsNaN(a.Value) {
 		return false
 	}
-	margin := tie * math.Abs(b.Value)
-	if smallerIsWorse[a.Quantity] {
-		return a.Value-a.Error < b.Value-b.Error-margin
-	}
-	return a.Value+a.Error > b.Value+b.Error+margin
+	return badness(a.Quantity, a.Value)+a.Error > badness(b.Quantity, b.Value)+b.Error+tie*math.Abs(b.Value)
 }
 
 // merge takes a stress into the table if it is the worst so far. A stress that proves nothing marks the
