@@ -67,35 +67,42 @@ func criticalVoltage(is, scale float64) float64 { return scale * math.Log(scale/
 // negligible is how many thermal voltages below zero an exponential counts as zero beside 1: exp(-40) = 4e-18.
 const negligible = -40
 
-func (d *junction) Evaluate(v []float64, _ float64, i, g []float64) {
-	x := v[0] / d.scale
+func (d *junction) Evaluate(v []float64, _ float64, i, g []float64) { i[0], g[0] = d.at(v[0]) }
+
+// at is the current and the slope at a voltage.
+func (d *junction) at(v float64) (i, g float64) {
+	x := v / d.scale
 	current, slope := -d.IS, 0.0
 	if x > negligible {
 		e := d.IS * math.Exp(x)
 		current, slope = e-d.IS, e/d.scale
 	}
 	if d.BV > 0 {
-		if y := -(v[0] + d.BV) / d.reverseScale; y > negligible {
+		if y := -(v + d.BV) / d.reverseScale; y > negligible {
 			e := d.IBV * math.Exp(y)
 			current -= e
 			slope += e / d.reverseScale
 		}
 	}
-	i[0], g[0] = current+gmin*v[0], slope+gmin
+	return current + gmin*v, slope + gmin
 }
 
-func (d *junction) Limit(v, old []float64) bool {
-	if limited, moved := limitJunction(v[0], old[0], d.scale, d.knee); moved {
-		v[0] = limited
-		return true
+func (d *junction) Limit(v, old []float64) (moved bool) {
+	v[0], moved = d.limited(v[0], old[0])
+	return moved
+}
+
+// limited is the voltage v moved towards old where the junction is too steep.
+func (d *junction) limited(v, old float64) (limited float64, moved bool) {
+	if v, moved := limitJunction(v, old, d.scale, d.knee); moved {
+		return v, true
 	}
 	if d.BV > 0 {
-		if limited, moved := limitJunction(-(v[0] + d.BV), -(old[0] + d.BV), d.reverseScale, d.reverseKnee); moved {
-			v[0] = -limited - d.BV
-			return true
+		if limited, moved := limitJunction(-(v + d.BV), -(old + d.BV), d.reverseScale, d.reverseKnee); moved {
+			return -limited - d.BV, true
 		}
 	}
-	return false
+	return v, false
 }
 
 // limitJunction limits a Newton step on an exponential junction by linearising the logarithm of its current

@@ -101,7 +101,7 @@ func (a *march) twoStages(t float64, track bool) error {
 	if len(a.sys.ports) > 0 {
 		// What flowed in the first stage counts as flowing before the second.
 		for j := range a.currentBefore {
-			if i := a.stage.w[j] + a.sys.ports[j].guess*a.stage.v[j]; math.Abs(i) > math.Abs(a.currentBefore[j]) {
+			if i := a.stage.w[j] + a.sys.guess[j]*a.stage.v[j]; math.Abs(i) > math.Abs(a.currentBefore[j]) {
 				a.currentBefore[j] = i
 			}
 		}
@@ -150,7 +150,7 @@ func (a *march) cutsOff(st *stage) bool {
 		if math.Abs(before) < 1e-9 || !every && !a.sys.regulating[j] {
 			continue
 		}
-		if now := st.w[j] + a.sys.ports[j].guess*st.v[j]; math.Abs(now) < 1e-3*math.Abs(before) {
+		if now := st.w[j] + a.sys.guess[j]*st.v[j]; math.Abs(now) < 1e-3*math.Abs(before) {
 			return true
 		}
 	}

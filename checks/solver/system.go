@@ -21,22 +21,26 @@ type system struct {
 	inductance dense // inductors x inductors, H, couplings included
 	sources    []Device
 
-	ports    []port
-	laws     []lawSlot
-	maxPorts int
-	timed    bool // a law depends on the time
+	ports   []port
+	guess   []float64 // their stand-in conductances, S
+	giving  []int     // the ports that put something out
+	laws    []lawSlot
+	sharers []int // the laws that are Sharers
+	slopes  int   // room for the derivatives of all laws
+	timed   bool  // a law depends on the time
 	// lossless lists the inductors that ideal sources alone drive: a constant current in them is undetermined.
 	lossless []int
 	// regulating marks the ports of regulators, see march.cutsOff.
 	regulating []bool
 }
 
-// lawSlot places a law's ports in the port vector.
+// lawSlot places a law's ports in the port vector, and its derivatives, row by row, among those of all laws.
 type lawSlot struct {
-	law    Law
-	sharer Sharer // the law, if it is one
-	first  int
-	count  int
+	law      Law
+	junction *junction // the law, if it is one
+	first    int
+	count    int
+	block    int
 }
 
 func newSystem(n *Network) (*system, error) {
@@ -59,10 +63,13 @@ func newSystem(n *Network) (*system, error) {
 		case voltageSource, currentSource:
 			s.sources = append(s.sources, Device(k))
 		case nonlinear:
-			s.laws = append(s.laws, lawSlot{law: d.law, first: len(s.ports), count: len(d.ports)})
-			if sharer, ok := d.law.(Sharer); ok {
-				s.laws[len(s.laws)-1].sharer = sharer
+			if _, ok := d.law.(Sharer); ok {
+				s.sharers = append(s.sharers, len(s.laws))
 			}
+			slot := lawSlot{law: d.law, first: len(s.ports), count: len(d.ports), block: s.slopes}
+			slot.junction, _ = d.law.(*junction)
+			s.laws = append(s.laws, slot)
+			s.slopes += slot.count * slot.count
 			_, regulates := d.law.(*regulator)
 			for range d.ports {
 				s.regulating = append(s.regulating, regulates)
@@ -70,8 +77,12 @@ func newSystem(n *Network) (*system, error) {
 			if _, ok := d.law.(functionLaw); ok {
 				s.timed = true
 			}
-			s.ports = append(s.ports, d.ports...)
-			s.maxPorts = max(s.maxPorts, len(d.ports))
+			for _, p := range d.ports {
+				if p.output != outNone {
+					s.giving = append(s.giving, len(s.ports))
+				}
+				s.ports, s.guess = append(s.ports, p), append(s.guess, p.guess)
+			}
 		}
 	}
 	s.unknowns = next

@@ -28,9 +28,7 @@ const (
 	looseFloor = 1e-3
 )
 
-type signal = func(tr *solver.Trajectory) func(k int) float64
-
-func (c *collector) put(q Quantity, unit quantity.Unit, s signal, pick func(solver.Stats) (float64, float64)) {
+func (c *collector) put(q Quantity, unit quantity.Unit, s *signal, pick func(solver.Stats) (float64, float64)) {
 	st := Stress{Element: c.element, Quantity: q, Unit: unit, Condition: c.cond, Phase: math.NaN(), Value: math.NaN()}
 	switch {
 	case c.island.blocked != "":
@@ -39,8 +37,7 @@ func (c *collector) put(q Quantity, unit quantity.Unit, s signal, pick func(solv
 		st.Unproven = c.island.err.Error()
 	}
 	if c.island.solution != nil && c.island.blocked == "" {
-		r := readStat(c.island.solution, s, pick)
-		st.Value, st.Error, st.Phase = r.value, r.err, r.at
+		st.Value, st.Error, st.Phase = s.read(c.island.solution, pick)
 		if c.island.err != nil && st.Unproven == "" && st.Error > loose*math.Abs(st.Value)+looseFloor {
 			st.Unproven = fmt.Sprintf("its value changes with the time step, by %s at the finest", quantity.Format(st.Error, unit, 2))
 		}
@@ -78,10 +75,7 @@ func (p *Plan) extract(out *outcome, emit func(Stress)) {
 		} else if out.failed == nil {
 			continue
 		}
-		v := func(tr *solver.Trajectory) func(int) float64 {
-			samples := tr.Nodes[local]
-			return func(k int) float64 { return samples[k] }
-		}
+		v := potential(local)
 		c.put(MeanVoltage, quantity.Volt, v, mean)
 		c.put(MinVoltage, quantity.Volt, v, smallest)
 		c.put(MaxVoltage, quantity.Volt, v, largest)
@@ -98,20 +92,12 @@ func (p *Plan) extract(out *outcome, emit func(Stress)) {
 }
 
 // voltage and current are the signals of a branch of the device that stands for the element.
-func (c *collector) voltage(dev solver.Device, branch int) signal {
-	local := c.local(dev)
-	return func(tr *solver.Trajectory) func(int) float64 {
-		b, _ := tr.BranchOf(local, branch)
-		return func(k int) float64 { return tr.Voltage(b, k) }
-	}
+func (c *collector) voltage(dev solver.Device, branch int) *signal {
+	return branchVoltage(c.local(dev), branch)
 }
 
-func (c *collector) current(dev solver.Device, branch int) signal {
-	local := c.local(dev)
-	return func(tr *solver.Trajectory) func(int) float64 {
-		_, i := tr.BranchOf(local, branch)
-		return func(k int) float64 { return i[k] }
-	}
+func (c *collector) current(dev solver.Device, branch int) *signal {
+	return branchCurrent(c.local(dev), branch)
 }
 
 // share puts a source that several islands use together again: its current is the sum of its currents there.
@@ -154,28 +140,6 @@ func (c *collector) local(dev solver.Device) solver.Device {
 	return solver.Device(c.out.home[dev].index)
 }
 
-// combine returns a linear combination of signals.
-func combine(a float64, s signal, b float64, t signal) signal {
-	return func(tr *solver.Trajectory) func(int) float64 {
-		f, g := s(tr), t(tr)
-		return func(k int) float64 { return a*f(k) + b*g(k) }
-	}
-}
-
-func scaled(a float64, s signal) signal {
-	return func(tr *solver.Trajectory) func(int) float64 {
-		f := s(tr)
-		return func(k int) float64 { return a * f(k) }
-	}
-}
-
-func product(s, t signal) signal {
-	return func(tr *solver.Trajectory) func(int) float64 {
-		f, g := s(tr), t(tr)
-		return func(k int) float64 { return f(k) * g(k) }
-	}
-}
-
 func (c *collector) elementStresses(id netlist.ElementID, e *netlist.Element, dev solver.Device) {
 	if dev == none && c.island.solution != nil {
 		c.island = &solvedIsland{err: c.island.err, blocked: c.island.blocked}
@@ -212,10 +176,7 @@ func (c *collector) elementStresses(id netlist.ElementID, e *netlist.Element, de
 		c.put(PeakCurrent, quantity.Ampere, i, magnitude)
 		c.put(MinCurrent, quantity.Ampere, i, smallest)
 		local := c.local(dev)
-		c.put(MeanPower, quantity.Watt, func(tr *solver.Trajectory) func(int) float64 {
-			power := tr.MeanPower(local, 0)
-			return func(int) float64 { return power }
-		}, mean)
+		c.put(MeanPower, quantity.Watt, figure(func(tr *solver.Trajectory) float64 { return tr.MeanPower(local, 0) }), mean)
 	case netlist.Transistor, netlist.Fet:
 		q := MaxVCE
 		if _, fet := d.(netlist.Fet); fet {
@@ -246,10 +207,7 @@ func positive(st solver.Stats) (float64, float64) {
 const wrongWay = 1.0
 
 // meanOf is the mean of a signal of the island's solution.
-func (c *collector) meanOf(s signal) float64 {
-	tr := c.island.solution.Fine
-	return tr.Mean(s(tr))
-}
+func (c *collector) meanOf(s *signal) float64 { return s.stats(c.island.solution.Fine).Mean }
 
 func (c *collector) regulatorStresses(id netlist.ElementID, d *netlist.Regulator, dev solver.Device) {
 	if d.Shunt {

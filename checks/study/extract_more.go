@@ -72,11 +72,10 @@ func (c *collector) equivalentRipple(id netlist.ElementID, d *netlist.Capacitor,
 	}
 	local := c.local(dev)
 	base := 1 / c.plan.period
-	c.put(RippleCurrentEquivalent, quantity.Ampere, func(tr *solver.Trajectory) func(int) float64 {
+	c.put(RippleCurrentEquivalent, quantity.Ampere, figure(func(tr *solver.Trajectory) float64 {
 		_, current := tr.BranchOf(local, 0)
-		value := weighted(current[:tr.Samples()], base, curve)
-		return func(int) float64 { return value }
-	}, mean)
+		return weighted(current[:tr.Samples()], base, curve)
+	}), mean)
 }
 
 // weighted is sqrt(sum (In/kn)^2) of one period of a current.

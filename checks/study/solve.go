@@ -4,7 +4,6 @@ import (
 	"context"
 	"errors"
 	"fmt"
-	"math"
 	"time"
 
 	"railproof/checks/solver"
@@ -155,42 +154,4 @@ func (o *outcome) islandOf(c *netlist.Circuit, id netlist.ElementID) int {
 		}
 	}
 	return -1
-}
-
-// reading reads statistics of one signal off both grids of a solution.
-type reading struct {
-	value, err, at float64
-}
-
-func readStat(s *solver.Solution, signal func(tr *solver.Trajectory) func(k int) float64, pick func(st solver.Stats) (float64, float64)) reading {
-	fine, at := pick(s.Fine.Summary(signal(s.Fine)))
-	r := reading{value: fine, at: at}
-	if s.Coarse != nil && s.Coarse != s.Fine {
-		coarse, _ := pick(s.Coarse.Summary(signal(s.Coarse)))
-		r.err = math.Abs(fine - coarse)
-	}
-	return r
-}
-
-func largest(st solver.Stats) (float64, float64)  { return st.Max.Value, st.Max.At }
-func smallest(st solver.Stats) (float64, float64) { return st.Min.Value, st.Min.At }
-func mean(st solver.Stats) (float64, float64)     { return st.Mean, math.NaN() }
-func rms(st solver.Stats) (float64, float64)      { return st.RMS, math.NaN() }
-
-// magnitude picks the extremum of larger magnitude.
-func magnitude(st solver.Stats) (float64, float64) {
-	if -st.Min.Value > st.Max.Value {
-		return -st.Min.Value, st.Min.At
-	}
-	return st.Max.Value, st.Max.At
-}
-
-// swing picks the peak-to-peak value.
-func swing(st solver.Stats) (float64, float64) {
-	return st.Max.Value - st.Min.Value, math.NaN()
-}
-
-// alternating picks the RMS value of the signal less its mean.
-func alternating(st solver.Stats) (float64, float64) {
-	return math.Sqrt(math.Max(0, st.RMS*st.RMS-st.Mean*st.Mean)), math.NaN()
 }

@@ -10,7 +10,7 @@ import (
 // source is where a signal, or its part in one island, is read.
 type source struct {
 	island int
-	read   signal
+	read   *signal
 }
 
 // sources finds where each signal is read: usually in one place, for the current of a source that several islands
@@ -35,24 +35,7 @@ func nodeSource(out *outcome, n netlist.NodeID) []source {
 	if n == netlist.Ground || at.island < 0 {
 		return nil
 	}
-	return []source{{at.island, func(tr *solver.Trajectory) func(int) float64 {
-		samples := tr.Nodes[at.index]
-		return func(k int) float64 { return samples[k] }
-	}}}
-}
-
-func branchVoltage(d solver.Device, branch int) signal {
-	return func(tr *solver.Trajectory) func(int) float64 {
-		b, _ := tr.BranchOf(d, branch)
-		return func(k int) float64 { return tr.Voltage(b, k) }
-	}
-}
-
-func branchCurrent(d solver.Device, branch int) signal {
-	return func(tr *solver.Trajectory) func(int) float64 {
-		_, i := tr.BranchOf(d, branch)
-		return func(k int) float64 { return i[k] }
-	}
+	return []source{{at.island, potential(at.index)}}
 }
 
 func (p *Plan) elementSources(out *outcome, s Signal) []source {
@@ -98,7 +81,7 @@ func followSteady(out *outcome, list [][]source, end float64) [][]*series {
 			}
 			s := newSeries()
 			tr := is.solution.Fine
-			read := part.read(tr)
+			read := part.read.of(tr)
 			period := out.low.net.Period
 			if period == 0 {
 				s.append(0, read(0), end)
@@ -143,7 +126,7 @@ func followCold(ctx context.Context, out *outcome, islands []solver.Island, list
 			for k, parts := range list {
 				for j, part := range parts {
 					if part.island == i {
-						found[k][j].add(tr, part.read(tr), 0, end)
+						found[k][j].add(tr, part.read.of(tr), 0, end)
 					}
 				}
 			}
