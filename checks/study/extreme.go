@@ -31,14 +31,13 @@ type corners struct {
 	plan    *Plan
 	table   *Table
 	base    *outcome
-	warm    states
 	columns [][]int       // columns[j] lists the j-th parameter of each island, or one parameter of the whole supply
 	rank    []int         // parameter -> its column
 	affect  map[int][]int // island -> the parameters that may influence it
 }
 
 func newCorners(p *Plan, t *Table, base *outcome) *corners {
-	c := &corners{plan: p, table: t, base: base, warm: base.states(), rank: make([]int, len(p.Parameters)), affect: map[int][]int{}}
+	c := &corners{plan: p, table: t, base: base, rank: make([]int, len(p.Parameters)), affect: map[int][]int{}}
 	var wide []int
 	for k, q := range p.Parameters {
 		if q.Element == supplyWide {
@@ -103,23 +102,25 @@ type vertex struct {
 	fixed []bool // parameters whose position counts for one of the stresses
 	keys  []tableKey
 	found readings
+	warm  states // from which its neighbours start
 }
 
 // solve finds the vertices for the given stresses and merges their outcomes into the table.
 func (c *corners) solve(ctx context.Context, keys []tableKey, jobs int) {
 	at := c.vertex()
-	at.keys, at.found = keys, readingsOf(c.base)
+	at.keys, at.found, at.warm = keys, readingsOf(c.base), c.base.states()
+	start := at.warm
 	open := c.next(ctx, []*vertex{at}, jobs)
 	for round := 1; len(open) > 0 && round <= maxRounds && ctx.Err() == nil; round++ {
 		outcomes := make([]*outcome, len(open))
 		inParallel(len(open), jobs, func(k int) {
-			outcomes[k] = c.plan.settle(c.plan.solve(ctx, c.shifted(open[k].vertex.shift), c.warm))
+			outcomes[k] = c.plan.settle(c.plan.solve(ctx, c.shifted(open[k].vertex.shift), start))
 		})
 		var doubtful []*vertex
 		for k, out := range outcomes {
 			c.table.take(out)
 			v := open[k]
-			v.vertex.found = readingsOf(out)
+			v.vertex.found, v.vertex.warm = readingsOf(out), out.states()
 			if v.doubtful() {
 				doubtful = append(doubtful, v.vertex)
 			}
@@ -185,13 +186,8 @@ func (c *corners) next(ctx context.Context, around []*vertex, jobs int) []*propo
 	effects := make([][]effect, len(probes))
 	inParallel(len(probes), jobs, func(k int) {
 		p := probes[k]
-		var ends [2]readings
-		for e, end := range []float64{-1, 1} {
-			if !c.isAt(around[p.vertex], c.columns[p.column], end) {
-				ends[e] = c.moved(ctx, around[p.vertex], p.column, end)
-			}
-		}
-		effects[k] = c.effects(around[p.vertex], p.column, references[p.vertex], ends[0], ends[1])
+		low, high := c.ends(ctx, around[p.vertex], p.column)
+		effects[k] = c.effects(around[p.vertex], p.column, references[p.vertex], low, high)
 	})
 	return c.gather(around, probes, effects)
 }
@@ -207,13 +203,51 @@ type effect struct {
 	corner         bool
 }
 
-// moved reads a vertex with one column moved to an end.
-func (c *corners) moved(ctx context.Context, at *vertex, column int, end float64) readings {
+// ends reads a vertex with one column moved to either end, where it is not already. The second starts from where the
+// first one's change, reversed, leads to.
+func (c *corners) ends(ctx context.Context, at *vertex, column int) (low, high readings) {
+	warm := at.warm
+	if !c.isAt(at, c.columns[column], -1) {
+		out := c.moved(ctx, at, column, -1, warm)
+		low, warm = readingsOf(out), c.reversed(at, column, out.states())
+	}
+	if !c.isAt(at, c.columns[column], 1) {
+		high = readingsOf(c.moved(ctx, at, column, 1, warm))
+	}
+	return low, high
+}
+
+// reversed extrapolates the periodic states of a vertex from those with a column at its low end to its high end.
+func (c *corners) reversed(at *vertex, column int, low states) states {
+	high := states{}
+	for i, x := range at.warm {
+		k, ok := c.in(column, i)
+		if !ok || len(low[i]) != len(x) {
+			continue
+		}
+		q := c.plan.Parameters[k]
+		there, here, begin := q.factor(1), q.factor(at.shift[k]), q.factor(-1)
+		if here == begin {
+			high[i] = x
+			continue
+		}
+		ratio := (there - here) / (begin - here)
+		moved := make([]float64, len(x))
+		for n := range x {
+			moved[n] = x[n] + ratio*(low[i][n]-x[n])
+		}
+		high[i] = moved
+	}
+	return high
+}
+
+// moved solves a vertex with one column moved to an end.
+func (c *corners) moved(ctx context.Context, at *vertex, column int, end float64, warm states) *outcome {
 	shift := append([]float64(nil), at.shift...)
 	for _, q := range c.columns[column] {
 		shift[q] = end
 	}
-	return readingsOf(c.plan.settle(c.plan.probe(ctx, c.shifted(shift), c.warm)))
+	return c.plan.settle(c.plan.probe(ctx, c.shifted(shift), warm))
 }
 
 // effects lists for which stresses of a vertex the parameters of a column count.
@@ -296,7 +330,9 @@ func (c *corners) gather(around []*vertex, probes []probe, effects [][]effect) [
 // probed reads the vertex itself by the same short way as its neighbours, so that what is left of the numerical error
 // cancels in the differences.
 func (c *corners) probed(ctx context.Context, v *vertex) readings {
-	return readingsOf(c.plan.settle(c.plan.probe(ctx, c.shifted(v.shift), c.warm)))
+	out := c.plan.settle(c.plan.probe(ctx, c.shifted(v.shift), v.warm))
+	v.warm = out.states()
+	return readingsOf(out)
 }
 
 // wanted says which columns hold a parameter that may influence a stress of the vertex.
