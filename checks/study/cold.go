@@ -25,28 +25,35 @@ const (
 // unboundedSurge is the relative change of a peak current from one grid to the next from which nothing limits it.
 const unboundedSurge = 0.2
 
-// coldStart integrates a switch-on of every island in one setting and emits the surge of each diode, and the
-// extreme voltages of diodes, capacitors and regulator inputs on the way.
-func (p *Plan) coldStart(ctx context.Context, set Setting, surgeOnly bool, emit func(Stress)) {
+// start is a switch-on from empty in one setting, island by island.
+type start struct {
+	plan      *Plan
+	set       Setting
+	condition Condition
+	why       string // it cannot be followed at all
+	islands   []startIsland
+}
+
+// startIsland is an independent part of a start: what is watched in it, followed on two grids.
+type startIsland struct {
+	network      *solver.Network
+	parts        []watched
+	blocked      string
+	coarse, fine []surge // fine: nil before it is refined
+	err          error
+}
+
+// start lays a switch-on out in one setting; with surgeOnly nothing but the surges of diodes are watched.
+func (p *Plan) start(set Setting, surgeOnly bool) *start {
 	set.Cold = true
-	c := p.supply.Circuit
-	cond := p.condition(&set)
-	fail := func(id netlist.ElementID, why string) {
-		for _, q := range []Quantity{SurgeCurrent, SurgeI2t} {
-			emit(Stress{Element: c.Elements[id].Name, Quantity: q, Unit: unitOf(q), Value: math.NaN(), Phase: math.NaN(), Condition: cond, Unproven: why})
-		}
-	}
+	st := &start{plan: p, set: set, condition: p.condition(&set)}
 	low, err := p.supply.lower(&set, p)
 	if err == nil && p.Blocked != "" {
 		err = errors.New(p.Blocked)
 	}
 	if err != nil {
-		for k := range c.Elements {
-			if _, ok := c.Elements[k].Device.(netlist.Diode); ok {
-				fail(netlist.ElementID(k), err.Error())
-			}
-		}
-		return
+		st.why = err.Error()
+		return st
 	}
 	of := map[solver.Device]netlist.ElementID{}
 	for k, d := range low.devices {
@@ -55,30 +62,61 @@ func (p *Plan) coldStart(ctx context.Context, set Setting, surgeOnly bool, emit 
 		}
 	}
 	for _, island := range low.net.Islands() {
-		parts, blocked := p.watch(low, of, island, surgeOnly)
-		if len(parts) == 0 {
-			continue
+		if parts, blocked := p.watch(low, of, island, surgeOnly); len(parts) > 0 {
+			st.islands = append(st.islands, startIsland{network: island.Network, parts: parts, blocked: blocked})
 		}
-		fine, coarse, err := settledStart(ctx, island.Network, parts, set.Nominal)
-		for k, w := range parts {
-			_, diode := c.Elements[w.id].Device.(netlist.Diode)
-			if err != nil {
-				if diode {
-					fail(w.id, err.Error())
-				}
+	}
+	return st
+}
+
+// coldStart follows a switch-on in one setting and emits the surge of each diode, and the extreme voltages of diodes,
+// capacitors and regulator inputs on the way.
+func (p *Plan) coldStart(ctx context.Context, set Setting, surgeOnly bool, emit func(Stress)) {
+	st := p.start(set, surgeOnly)
+	for i := range st.islands {
+		st.islands[i].survey(ctx, set.Nominal)
+		st.islands[i].refine(ctx, set.Nominal)
+	}
+	st.emit(emit)
+}
+
+// emit hands over the stresses of the islands that are refined or could not be followed.
+func (st *start) emit(emit func(Stress)) {
+	c := st.plan.supply.Circuit
+	fail := func(id netlist.ElementID, why string) {
+		if _, diode := c.Elements[id].Device.(netlist.Diode); !diode {
+			return
+		}
+		for _, q := range []Quantity{SurgeCurrent, SurgeI2t} {
+			emit(Stress{Element: c.Elements[id].Name, Quantity: q, Unit: unitOf(q), Value: math.NaN(), Phase: math.NaN(), Condition: st.condition, Unproven: why})
+		}
+	}
+	if st.why != "" {
+		for k := range c.Elements {
+			fail(netlist.ElementID(k), st.why)
+		}
+	}
+	for i := range st.islands {
+		is := &st.islands[i]
+		for k, w := range is.parts {
+			switch {
+			case is.err != nil:
+				fail(w.id, is.err.Error())
+				continue
+			case is.fine == nil:
 				continue
 			}
-			unbounded := diode && fine[k].peak > 1 && math.Abs(fine[k].peak-coarse[k].peak) > unboundedSurge*fine[k].peak
+			unbounded := is.unbounded(k)
 			if unbounded {
 				fail(w.id, "its surge grows as the time step shrinks: nothing but the diode limits the current into an empty capacitor")
 			}
-			other := w.reads(&coarse[k])
-			for n, r := range w.reads(&fine[k]) {
+			other := w.reads(&is.coarse[k])
+			for n, r := range w.reads(&is.fine[k]) {
 				if unbounded && (r.quantity == SurgeCurrent || r.quantity == SurgeI2t) {
 					continue
 				}
 				emit(Stress{Element: c.Elements[w.id].Name, Quantity: r.quantity, Unit: unitOf(r.quantity), Value: r.value,
-					Error: math.Abs(r.value - other[n].value), Phase: r.at, Condition: cond, Unproven: blocked})
+					Error: math.Abs(r.value - other[n].value), Phase: r.at, Condition: st.condition, Unproven: is.blocked})
 			}
 		}
 	}
@@ -111,7 +149,7 @@ func (p *Plan) watch(low *lowered, of map[solver.Device]netlist.ElementID, islan
 			}
 		}
 		if _, diode := p.supply.Circuit.Elements[id].Device.(netlist.Diode); reads != nil && (diode || !surgeOnly) {
-			parts = append(parts, watched{solver.Device(local), id, reads})
+			parts = append(parts, watched{solver.Device(local), id, diode, reads})
 		}
 	}
 	return parts, blocked
@@ -125,27 +163,38 @@ const (
 	coldHalvings        = 4
 )
 
-// settledStart follows a start on two grids, halved until the surges agree.
-func settledStart(ctx context.Context, n *solver.Network, parts []watched, nominal bool) (fine, coarse []surge, err error) {
-	steps, accuracy := coldWorkingSteps, coldWorkingAccuracy
+// grid is the first fine grid of a start and the accuracy at which its refinement ends.
+func grid(nominal bool) (steps int, accuracy float64) {
 	if nominal {
-		steps, accuracy = coldSteps, coldAccuracy
+		return coldSteps, coldAccuracy
 	}
-	coarse, err = follow(ctx, n, parts, steps/2)
-	if err != nil {
-		return nil, nil, err
-	}
-	for k := range coldHalvings {
-		fine, err = follow(ctx, n, parts, steps<<k)
-		if err != nil {
-			return nil, nil, err
+	return coldWorkingSteps, coldWorkingAccuracy
+}
+
+// survey follows the start on the coarse grid.
+func (is *startIsland) survey(ctx context.Context, nominal bool) {
+	steps, _ := grid(nominal)
+	is.coarse, is.err = follow(ctx, is.network, is.parts, steps/2)
+}
+
+// refine follows a surveyed start on finer grids, until the stresses of two agree.
+func (is *startIsland) refine(ctx context.Context, nominal bool) {
+	steps, accuracy := grid(nominal)
+	for k := 0; is.err == nil && k < coldHalvings; k++ {
+		if k > 0 {
+			is.coarse = is.fine
 		}
-		if agree(parts, fine, coarse, accuracy) || k == coldHalvings-1 {
-			break
+		is.fine, is.err = follow(ctx, is.network, is.parts, steps<<k)
+		if is.err == nil && agree(is.parts, is.fine, is.coarse, accuracy) {
+			return
 		}
-		coarse = fine
 	}
-	return fine, coarse, nil
+}
+
+// unbounded reports that nothing but the diode limits the surge of a part.
+func (is *startIsland) unbounded(part int) bool {
+	f, c := is.fine[part].peak, is.coarse[part].peak
+	return is.parts[part].diode && f > 1 && math.Abs(f-c) > unboundedSurge*f
 }
 
 // agree reports whether the stresses of two grids differ by less than the relative accuracy, micro-units aside; a

@@ -66,16 +66,32 @@ func (p *Plan) coldSettings() []Setting {
 	return settings
 }
 
-// coldStarts adds the switch-on from empty.
+// coldStarts adds the switch-on from empty. Every start is followed on a coarse grid; on finer ones only those that may
+// be the worst for some part.
 func (p *Plan) coldStarts(ctx context.Context, settings []Setting, jobs int, t *Table) {
-	results := make([][]Stress, len(settings))
+	starts := make([]*start, len(settings))
 	inParallel(len(settings), jobs, func(k int) {
-		p.coldStart(ctx, settings[k], false, func(s Stress) { results[k] = append(results[k], s) })
-	})
-	for _, list := range results {
-		t.Solved++
-		for _, s := range list {
-			t.merge(s)
+		starts[k] = p.start(settings[k], false)
+		for i := range starts[k].islands {
+			starts[k].islands[i].survey(ctx, false)
+			starts[k].islands[i].network = nil // large, and soon built again where it is needed
 		}
+	})
+	races := newRaces(t, starts)
+	for open := races.open(starts); len(open) > 0 && ctx.Err() == nil; open = races.open(starts) {
+		inParallel(len(open), jobs, func(n int) {
+			st := starts[open[n].start]
+			again := p.start(st.set, false)
+			for _, i := range open[n].islands {
+				st.islands[i].network = again.islands[i].network
+				st.islands[i].refine(ctx, false)
+				st.islands[i].network = nil
+			}
+		})
+		races.note(starts)
+	}
+	for _, st := range starts {
+		t.Solved++
+		st.emit(t.merge)
 	}
 }

@@ -11,6 +11,7 @@ import (
 type watched struct {
 	device solver.Device
 	id     netlist.ElementID
+	diode  bool
 	reads  func(s *surge) []reached
 }
 
