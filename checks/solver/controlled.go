@@ -15,10 +15,16 @@ type constantCurrent struct{ amperes, knee float64 }
 
 func (c constantCurrent) Evaluate(v []float64, _ float64, i, g []float64) {
 	// Reaches 0.97 of the current at the knee and 0.9999 at twice the knee.
-	th := math.Tanh(2 * v[0] / c.knee)
+	x, th := 2*v[0]/c.knee, 1.0
+	if x < saturated {
+		th = math.Tanh(x)
+	}
 	i[0] = c.amperes*th + gmin*v[0]
 	g[0] = c.amperes*(1-th*th)*2/c.knee + gmin
 }
+
+// saturated is where the hyperbolic tangent is 1 to double precision.
+const saturated = 20
 
 func (constantCurrent) Limit(v, old []float64) bool { return false }
 

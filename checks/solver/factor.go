@@ -23,10 +23,12 @@ type factor struct {
 	n     int
 	lu    []float64 // row-major n x n
 	pivot []int
+	// inverse holds one over each pivot, below blockedFrom.
+	inverse []float64
 }
 
 func newFactor(n int) *factor {
-	return &factor{n: n, lu: make([]float64, n*n), pivot: make([]int, n)}
+	return &factor{n: n, lu: make([]float64, n*n), pivot: make([]int, n), inverse: make([]float64, n)}
 }
 
 // factorise decomposes the matrix stored in lu in place. rowScale-free partial pivoting; a pivot that
@@ -56,6 +58,7 @@ func (f *factor) factorise() error {
 			}
 		}
 		inv := 1 / a[k*n+k]
+		f.inverse[k] = inv
 		top := a[k*n+k+1 : k*n+n]
 		for r := k + 1; r < n; r++ {
 			m := a[r*n+k]
@@ -94,11 +97,11 @@ func (f *factor) solve(b []float64) {
 	}
 	for r := n - 1; r >= 0; r-- {
 		sum := b[r]
-		row := a[r*n : r*n+n]
-		for c := r + 1; c < n; c++ {
-			sum -= row[c] * b[c]
+		rest := b[r+1 : n]
+		for c, v := range a[r*n+r+1 : r*n+n] {
+			sum -= v * rest[c]
 		}
-		b[r] = sum / row[r]
+		b[r] = sum * f.inverse[r]
 	}
 }
 
@@ -132,9 +135,8 @@ func (f *factor) solveAll(b dense) {
 		for j := r + 1; j < n; j++ {
 			subtract(row, b.row(j), a[r*n+j])
 		}
-		inverse := 1 / a[r*n+r]
 		for c := range row {
-			row[c] *= inverse
+			row[c] *= f.inverse[r]
 		}
 	}
 }

@@ -84,7 +84,7 @@ func (r *regulator) Evaluate(v []float64, _ float64, i, g []float64) {
 		dvout -= gb
 	}
 
-	root := math.Hypot(vin, quiescentKnee)
+	root := math.Sqrt(vin*vin + quiescentKnee*quiescentKnee)
 	quiescent := r.Quiescent * vin / root
 	dquiescent := r.Quiescent * quiescentKnee * quiescentKnee / (root * root * root)
 
