@@ -72,16 +72,14 @@ func (p *Plan) paths() []path {
 func (t *Table) interior(ctx context.Context, base []*outcome, jobs int) []*outcome {
 	p := t.Plan
 	paths := p.paths()
-	warm := base[0].states()
-	found := make([][]float64, len(paths))
-	inParallel(len(paths), jobs, func(k int) { found[k] = t.scan(ctx, paths[k], warm) })
-	var settings []Setting
-	for k, positions := range found {
-		for _, x := range positions {
-			settings = append(settings, paths[k](x))
-		}
+	found := make([][]inner, len(paths))
+	inParallel(len(paths), jobs, func(k int) { found[k] = t.scan(ctx, paths[k], base) })
+	var all []inner
+	for _, list := range found {
+		all = append(all, list...)
 	}
-	outcomes := p.solveAll(ctx, settings, jobs)
+	outcomes := make([]*outcome, len(all))
+	inParallel(len(all), jobs, func(k int) { outcomes[k] = p.settle(p.solve(ctx, all[k].set, all[k].warm)) })
 	for k, out := range outcomes {
 		out.base = len(base) + k
 		t.take(out)
@@ -89,17 +87,31 @@ func (t *Table) interior(ctx context.Context, base []*outcome, jobs int) []*outc
 	return outcomes
 }
 
-// scan returns the inner positions of a path at which some stress is worst, in ascending order.
-func (t *Table) scan(ctx context.Context, along path, warm states) []float64 {
-	known := map[float64]readings{}
+// inner is a condition between base conditions, with its periodic states on one grid.
+type inner struct {
+	set  Setting
+	warm states
+}
+
+// scan returns the inner conditions of a path in which some stress is worst, in ascending order.
+func (t *Table) scan(ctx context.Context, along path, base []*outcome) []inner {
+	known, solved := map[float64]readings{}, map[float64]states{}
 	probe := func(x float64) {
 		if _, ok := known[x]; !ok && ctx.Err() == nil {
-			out := t.Plan.settle(t.Plan.probe(ctx, along(x), warm))
-			known[x] = readingsOf(out)
+			set := along(x)
+			warm, ok := between(solved, x)
+			if !ok {
+				warm = nearest(base, &set)
+			}
+			out := t.Plan.settle(t.Plan.probe(ctx, set, warm))
+			known[x], solved[x] = readingsOf(out), out.states()
 		}
 	}
-	for k := range scanPoints + 1 {
-		probe(float64(k) / scanPoints)
+	// The ends, and then always the middle between known positions.
+	for width := 1.0; width >= 1.0/scanPoints; width /= 2 {
+		for x := 0.0; x <= 1; x += width {
+			probe(x)
+		}
 	}
 	var peaks []peak
 	for range scanHalvings {
@@ -116,7 +128,52 @@ func (t *Table) scan(ctx context.Context, along path, warm states) []float64 {
 		positions = append(positions, at.x)
 	}
 	slices.Sort(positions)
-	return positions
+	var list []inner
+	for _, x := range positions {
+		list = append(list, inner{along(x), solved[x]})
+	}
+	return list
+}
+
+// between interpolates the periodic states at a position from the nearest ones on both sides.
+func between(solved map[float64]states, x float64) (states, bool) {
+	below, above := math.Inf(-1), math.Inf(1)
+	for at := range solved {
+		if at < x {
+			below = math.Max(below, at)
+		} else {
+			above = math.Min(above, at)
+		}
+	}
+	if math.IsInf(below, 0) || math.IsInf(above, 0) {
+		return nil, false
+	}
+	warm, share := states{}, (x-below)/(above-below)
+	for i, low := range solved[below] {
+		high := solved[above][i]
+		if len(high) != len(low) {
+			continue
+		}
+		warm[i] = make([]float64, len(low))
+		for n := range low {
+			warm[i][n] = low[n] + share*(high[n]-low[n])
+		}
+	}
+	return warm, true
+}
+
+// nearest is the periodic state of the base condition nearest to a setting.
+func nearest(base []*outcome, set *Setting) states {
+	var best *outcome
+	for _, out := range base {
+		if out.set.Held == set.Held && (best == nil || out.set.distance(set) < best.set.distance(set)) {
+			best = out
+		}
+	}
+	if best == nil {
+		return nil
+	}
+	return best.states()
 }
 
 // peak is an inner position at which stresses are worse than at both ends, with its neighbours.

@@ -1,6 +1,10 @@
 package study
 
-import "railproof/netlist"
+import (
+	"math"
+
+	"railproof/netlist"
+)
 
 // LineEnd says where in its range the supply line is.
 type LineEnd uint8
@@ -43,4 +47,26 @@ type Setting struct {
 	Short *netlist.ElementID
 	// Nominal solves the netlist exactly as written.
 	Nominal bool
+}
+
+// lineAt is the position of the line from 0 (low) to 1 (high).
+func (s *Setting) lineAt() float64 {
+	switch s.Line {
+	case LineLow:
+		return 0
+	case LineHigh:
+		return 1
+	case LineBetween:
+		return s.LineAt
+	}
+	return 0.5
+}
+
+// distance is how far two settings lie apart along the line and the loads.
+func (s *Setting) distance(o *Setting) float64 {
+	sum := math.Abs(s.lineAt() - o.lineAt())
+	for k := range min(len(s.Loads), len(o.Loads)) {
+		sum += math.Abs(s.Loads[k] - o.Loads[k])
+	}
+	return sum
 }

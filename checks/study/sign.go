@@ -62,14 +62,14 @@ func (p Parameter) bends(at, low, high *Stress) bool {
 	return largest > 5*resolved*math.Abs(at.Value)+trifle(at.Unit) && math.Abs(below-above) > bent*math.Max(math.Abs(below), math.Abs(above))
 }
 
-// trifle is a change too small to count beside any rating of a supply: a tenth of a millivolt, a microampere, a
-// microwatt, a millionth of ripple.
+// trifle is a change too small to count beside any rating of a supply: a tenth of a millivolt, ten microamperes, ten
+// microwatts, a hundred thousandth of ripple.
 func trifle(u quantity.Unit) float64 {
 	switch u {
 	case quantity.Volt:
 		return 1e-4
 	case quantity.Ampere, quantity.Watt, quantity.One:
-		return 1e-6
+		return 1e-5
 	}
 	return 0
 }

@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"math"
 	"runtime"
+	"slices"
 	"sort"
 	"strings"
 	"sync"
@@ -128,7 +129,7 @@ func Nominal(ctx context.Context, s *Supply, cold bool) *Table {
 func Worst(ctx context.Context, s *Supply, jobs int) *Table {
 	p := NewPlan(s)
 	t := newTable(p)
-	base := p.solveAll(ctx, p.baseSettings(), jobs)
+	base := p.solveBase(ctx, jobs)
 	for k, out := range base {
 		out.base = k
 		t.take(out)
@@ -368,11 +369,18 @@ func (p *Plan) baseSettings() []Setting {
 	return list
 }
 
-// solveAll solves settings on several cores; the outcomes are in the order of the settings and do not depend
-// on the number of jobs.
-func (p *Plan) solveAll(ctx context.Context, settings []Setting, jobs int) []*outcome {
+// solveBase solves the base conditions on several cores, those with held regulators from the others; the outcomes are in
+// the order of the settings and do not depend on the number of jobs.
+func (p *Plan) solveBase(ctx context.Context, jobs int) []*outcome {
+	settings := p.baseSettings()
 	outcomes := make([]*outcome, len(settings))
-	inParallel(len(settings), jobs, func(k int) { outcomes[k] = p.settle(p.solve(ctx, settings[k], nil)) })
+	free := slices.IndexFunc(settings, func(s Setting) bool { return s.Held })
+	if free < 0 {
+		free = len(settings)
+	}
+	solve := func(k int, warm states) { outcomes[k] = p.settle(p.solve(ctx, settings[k], warm)) }
+	inParallel(free, jobs, func(k int) { solve(k, nil) })
+	inParallel(len(settings)-free, jobs, func(k int) { solve(free+k, outcomes[k].states()) })
 	return outcomes
 }
 

@@ -61,7 +61,7 @@ func TestEveryVertex(t *testing.T) {
 					}
 					compared++
 					beyond := badness(found.Quantity, found.Value) - badness(found.Quantity, bound.Value)
-					if beyond > bound.Error+found.Error+vertexTolerance*math.Abs(bound.Value)+10*trifle(found.Unit) {
+					if beyond > bound.Error+found.Error+vertexTolerance*math.Abs(bound.Value)+trifle(found.Unit) {
 						t.Errorf("%s %s: %.6g in %s %v, beyond %.6g +- %.2g in %s %v", found.Element, found.Quantity, found.Value, found.Condition.Name, found.Condition.Also,
 							bound.Value, bound.Error, bound.Condition.Name, bound.Condition.Also)
 					}
