@@ -77,20 +77,13 @@ func (st *stage) attempt(x, u []float64, t float64, dampFrom int) error {
 		for j, dv := range st.dv {
 			st.next[j] = st.v[j] + dv
 		}
-		limited := st.limit()
 		st.iterations++
+		limited := st.share()
 		if iteration >= dampFrom && !limited {
 			limited = st.damp(t, step)
 		}
-		if limited {
-			copy(st.v, st.next)
-			st.evaluate(st.v, t)
-			continue
-		}
-		st.predict()
-		copy(st.v, st.next)
-		st.evaluate(st.v, t)
-		if st.asPredicted() || step < roundingStep || iteration > patience && step < settledStep+settledShare*largest(st.v) {
+		cut, straight := st.move(t)
+		if !limited && !cut && (straight || step < roundingStep || iteration > patience && step < settledStep+settledShare*largest(st.v)) {
 			st.fresh = true
 			return nil
 		}
@@ -105,22 +98,6 @@ func (st *stage) newtonStep(step, v []float64) {
 		step[j] += open - v[j]
 	}
 	st.jac.solve(step)
-}
-
-// limit shortens the step to what the laws allow, and reports whether it did.
-func (st *stage) limit() bool {
-	limited := st.share()
-	for n := range st.r.sys.laws {
-		l := &st.r.sys.laws[n]
-		if j := l.junction; j != nil {
-			if v, moved := j.limited(st.next[l.first], st.v[l.first]); moved {
-				st.next[l.first], limited = v, true
-			}
-		} else if l.law.Limit(st.next[l.first:l.first+l.count], st.v[l.first:l.first+l.count]) {
-			limited = true
-		}
-	}
-	return limited
 }
 
 // share shortens the step dv, and with it next, to what the laws with narrow ranges allow; it reports whether it did.
@@ -140,30 +117,46 @@ func (st *stage) share() bool {
 	return true
 }
 
-// predict writes the outputs that the linearisation promises after the step dv.
-func (st *stage) predict() {
+// move takes the step to next, shortened where a law is too steep (cut), and evaluates the laws there. straight reports
+// whether their outputs are what the linearisation promised.
+func (st *stage) move(t float64) (cut, straight bool) {
+	straight = true
 	for k := range st.r.sys.laws {
 		l := &st.r.sys.laws[k]
-		for a := range l.count {
-			p := l.first + a
-			sum := st.w[p]
+		p := l.first
+		if j := l.junction; j != nil {
+			v, moved := j.limited(st.next[p], st.v[p])
+			i, g := j.at(v)
+			guess := st.r.sys.guess[p]
+			w := i - guess*v
+			straight = straight && st.promised(p, w-st.w[p]-st.jacSlope[l.block]*st.dv[p], i, v)
+			cut = cut || moved
+			st.v[p], st.w[p], st.slope[l.block] = v, w, g-guess
+			continue
+		}
+		next, w := st.next[p:p+l.count], st.w[p:p+l.count]
+		cut = l.law.Limit(next, st.v[p:p+l.count]) || cut
+		off := st.off[:l.count] // minus the outputs that the linearisation promises
+		for a := range off {
+			off[a] = -w[a]
 			for b, g := range st.jacSlope[l.block+a*l.count : l.block+(a+1)*l.count] {
-				sum += g * st.dv[l.first+b]
+				off[a] -= g * st.dv[p+b]
 			}
-			st.lin[p] = sum
+		}
+		copy(st.v[p:p+l.count], next)
+		st.evaluateLaw(l, st.v, t)
+		for a := range off {
+			straight = straight && st.promised(p+a, off[a]+w[a], w[a]+st.r.sys.guess[p+a]*next[a], next[a])
 		}
 	}
+	return cut, straight
 }
 
-// asPredicted reports whether the outputs are what the linearisation promised.
-func (st *stage) asPredicted() bool {
-	for _, p := range st.r.sys.giving {
-		e := math.Abs(st.w[p] - st.lin[p])
-		if e > absoluteCurrent+relativeCurrent*math.Abs(st.w[p]+st.r.sys.guess[p]*st.v[p]) && e*st.r.impedance[p] > absoluteVoltage+1e-14*math.Abs(st.v[p]) {
-			return false
-		}
-	}
-	return true
+// promised reports whether an output of port p that differs by off from the linearisation, of size i at voltage v, is
+// what that promised.
+func (st *stage) promised(p int, off, i, v float64) bool {
+	e := math.Abs(off)
+	return e <= absoluteCurrent+relativeCurrent*math.Abs(i) || e*st.r.impedance[p] <= absoluteVoltage+1e-14*math.Abs(v)
 }
 
 // damp halves dv, and with it next, until the simplified Newton step from there is shorter (the natural

@@ -14,7 +14,7 @@ type stage struct {
 	dv    []float64
 	next  []float64 // proposed port voltages
 	trial []float64
-	lin   []float64 // outputs predicted by the linearisation
+	off   []float64 // outputs of one law less those that the linearisation promised
 
 	jac      *factor   // I - k slope
 	jacSlope []float64 // the slopes jac was factorised for
@@ -33,7 +33,7 @@ func newStage(r *reduced) *stage {
 	return &stage{
 		r: r,
 		v: vector(), w: vector(), slope: make([]float64, r.sys.slopes), open: vector(), dv: vector(), next: vector(), trial: vector(),
-		lin: vector(), jac: newFactor(d), jacSlope: make([]float64, r.sys.slopes),
+		off: vector(), jac: newFactor(d), jacSlope: make([]float64, r.sys.slopes),
 	}
 }
 
@@ -54,12 +54,18 @@ func (st *stage) evaluate(v []float64, t float64) {
 			st.w[p], st.slope[l.block] = i-guess[p]*v[p], g-guess[p]
 			continue
 		}
-		w, g := st.w[p:p+l.count], st.slope[l.block:l.block+l.count*l.count]
-		l.law.Evaluate(v[p:p+l.count], t, w, g)
-		for a := range w {
-			w[a] -= guess[p+a] * v[p+a]
-			g[a*l.count+a] -= guess[p+a]
-		}
+		st.evaluateLaw(l, v, t)
+	}
+}
+
+func (st *stage) evaluateLaw(l *lawSlot, v []float64, t float64) {
+	p := l.first
+	w, g := st.w[p:p+l.count], st.slope[l.block:l.block+l.count*l.count]
+	l.law.Evaluate(v[p:p+l.count], t, w, g)
+	for a := range w {
+		guess := st.r.sys.guess[p+a]
+		w[a] -= guess * v[p+a]
+		g[a*l.count+a] -= guess
 	}
 }
 

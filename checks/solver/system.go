@@ -23,7 +23,6 @@ type system struct {
 
 	ports   []port
 	guess   []float64 // their stand-in conductances, S
-	giving  []int     // the ports that put something out
 	laws    []lawSlot
 	sharers []int // the laws that are Sharers
 	slopes  int   // room for the derivatives of all laws
@@ -78,9 +77,6 @@ func newSystem(n *Network) (*system, error) {
 				s.timed = true
 			}
 			for _, p := range d.ports {
-				if p.output != outNone {
-					s.giving = append(s.giving, len(s.ports))
-				}
 				s.ports, s.guess = append(s.ports, p), append(s.guess, p.guess)
 			}
 		}
