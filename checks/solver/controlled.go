@@ -23,6 +23,17 @@ func (c constantCurrent) Evaluate(v []float64, _ float64, i, g []float64) {
 	g[0] = c.amperes*(1-th*th)*2/c.knee + gmin
 }
 
+// Region is 1 and 2 where the load draws its full current, and 1 everywhere if that is none.
+func (c constantCurrent) Region(v []float64) int {
+	switch x := 2 * v[0] / c.knee; {
+	case x >= saturated || c.amperes == 0:
+		return 1
+	case x <= -saturated:
+		return 2
+	}
+	return 0
+}
+
 // saturated is where the hyperbolic tangent is 1 to double precision.
 const saturated = 20
 
@@ -47,22 +58,24 @@ type switchLaw struct{ Switch }
 
 func (s switchLaw) Evaluate(v []float64, _ float64, i, g []float64) {
 	width := math.Max(s.Hysteresis, 1e-3)
-	x := (v[1] - s.Threshold) / width
 	mid := 0.5 * (math.Log(1/s.ROn) + math.Log(1/s.ROff))
 	half := 0.5 * (math.Log(1/s.ROn) - math.Log(1/s.ROff))
-	var y, dy float64
-	switch {
-	case x >= 1:
-		y = 1
-	case x <= -1:
-		y = -1
-	default:
-		y, dy = 1.5*x-0.5*x*x*x, 1.5-1.5*x*x
-	}
+	y, dy := smoothSign(v[1]-s.Threshold, width)
 	conductance := math.Exp(mid + half*y)
 	i[0], i[1] = conductance*v[0], 0
-	g[0], g[1] = conductance, conductance*half*dy/width*v[0]
+	g[0], g[1] = conductance, conductance*half*dy*v[0]
 	g[2], g[3] = 0, 0
+}
+
+// Region is 1 where the switch is closed, 2 where it is open.
+func (s switchLaw) Region(v []float64) int {
+	switch y, _ := smoothSign(v[1]-s.Threshold, math.Max(s.Hysteresis, 1e-3)); y {
+	case 1:
+		return 1
+	case -1:
+		return 2
+	}
+	return 0
 }
 
 func (s switchLaw) Limit(v, old []float64) bool {

@@ -19,6 +19,12 @@ type Sharer interface {
 	Share(v, old []float64) float64
 }
 
+// Piecewise is a law that is exactly linear in ranges of its port voltages. Region numbers the range that holds v: the
+// same number stands for the same linear function, 0 for none.
+type Piecewise interface {
+	Region(v []float64) int
+}
+
 // gmin is the conductance across every junction, S (SPICE convention).
 const gmin = 1e-12
 
@@ -64,8 +70,8 @@ type junction struct {
 // criticalVoltage is the junction voltage of greatest curvature (Nagel, UCB/ERL M520, 1975).
 func criticalVoltage(is, scale float64) float64 { return scale * math.Log(scale/(math.Sqrt2*is)) }
 
-// negligible is how many thermal voltages below zero an exponential counts as zero beside 1: exp(-40) = 4e-18.
-const negligible = -40
+// negligible is how many thermal voltages below zero an exponential counts as zero beside 1: exp(-25) = 1.4e-11.
+const negligible = -25
 
 func (d *junction) Evaluate(v []float64, _ float64, i, g []float64) { i[0], g[0] = d.at(v[0]) }
 
@@ -85,6 +91,14 @@ func (d *junction) at(v float64) (i, g float64) {
 		}
 	}
 	return current + gmin*v, slope + gmin
+}
+
+// region is 1 where the junction blocks.
+func (d *junction) region(v float64) int {
+	if v > negligible*d.scale || d.BV > 0 && -(v+d.BV) > negligible*d.reverseScale {
+		return 0
+	}
+	return 1
 }
 
 func (d *junction) Limit(v, old []float64) (moved bool) {
@@ -121,14 +135,36 @@ func limitJunction(v, old, scale, knee float64) (float64, bool) {
 	return old + scale*math.Log(arg), true
 }
 
-// smoothMin is a smooth minimum of a and b with corner width w: it lies below both by at most w/2.
-// The derivatives by a and b are returned too.
+// cornerReach is how many corner widths from the corner smoothMin is the exact minimum.
+const cornerReach = 8.0 / 3
+
+// smoothMin is a smooth minimum of a and b with corner width w: it lies below both by at most w/2, and is one of them
+// from cornerReach widths on. The derivatives by a and b are returned too.
 func smoothMin(a, b, w float64) (m, da, db float64) {
-	d := a - b
-	r := math.Sqrt(d*d + w*w)
-	m = 0.5 * (a + b - r)
-	da = 0.5 * (1 - d/r)
-	return m, da, 1 - da
+	d, reach := a-b, cornerReach*w
+	switch {
+	case d >= reach:
+		return b, 0, 1
+	case d <= -reach:
+		return a, 1, 0
+	}
+	// |d| rounded off: equal to it at the reach in value, slope and curvature.
+	z := d / reach
+	r := reach * (0.375 + z*z*(0.75-0.125*z*z))
+	da = 0.5 * (1 - z*(1.5-0.5*z*z))
+	return 0.5 * (a + b - r), da, 1 - da
+}
+
+// smoothSign is the sign of x, rounded off below the width w, and its derivative.
+func smoothSign(x, w float64) (y, dy float64) {
+	switch z := x / w; {
+	case z >= 1:
+		return 1, 0
+	case z <= -1:
+		return -1, 0
+	default:
+		return z * (1.5 - 0.5*z*z), 1.5 * (1 - z*z) / w
+	}
 }
 
 // smoothPositive is a smooth max(x, 0) with corner width w, w ln(1 + exp(x/w)), and its derivative. It dies

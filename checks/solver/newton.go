@@ -36,15 +36,21 @@ const (
 // solve finds the port voltages of a stage with predicted states x and inputs u at time t, starting from the
 // last solution. Afterwards v, w and slope hold the solution.
 func (st *stage) solve(x, u []float64, t float64) error {
+	if len(st.v) == 0 {
+		return nil
+	}
+	if st.by != nil && st.solveBent(x, u, t) {
+		return st.settle()
+	}
 	err := st.attempt(x, u, t, dampFrom)
-	if err == nil || len(st.v) == 0 {
-		return err
+	if err == nil {
+		return st.settle()
 	}
 	// From no bias at all, every step damped.
 	for j := range st.v {
 		st.v[j] = 0
 	}
-	st.jacValid, st.fresh = false, false
+	st.jacValid, st.fresh, st.by = false, false, nil
 	return st.attempt(x, u, t, 0)
 }
 
@@ -52,9 +58,6 @@ func (st *stage) solve(x, u []float64, t float64) error {
 func (st *stage) attempt(x, u []float64, t float64, dampFrom int) error {
 	st.r.px.times(st.open, x)
 	st.r.pu.addTo(st.open, u)
-	if len(st.v) == 0 {
-		return nil
-	}
 	if !st.fresh || st.r.sys.timed {
 		st.evaluate(st.v, t)
 	}
@@ -129,7 +132,7 @@ func (st *stage) move(t float64) (cut, straight bool) {
 			i, g := j.at(v)
 			guess := st.r.sys.guess[p]
 			w := i - guess*v
-			straight = straight && st.promised(p, w-st.w[p]-st.jacSlope[l.block]*st.dv[p], i, v)
+			straight = straight && promised(w-st.w[p]-st.jacSlope[l.block]*st.dv[p], i, v, st.r.impedance[p])
 			cut = cut || moved
 			st.v[p], st.w[p], st.slope[l.block] = v, w, g-guess
 			continue
@@ -146,17 +149,17 @@ func (st *stage) move(t float64) (cut, straight bool) {
 		copy(st.v[p:p+l.count], next)
 		st.evaluateLaw(l, st.v, t)
 		for a := range off {
-			straight = straight && st.promised(p+a, off[a]+w[a], w[a]+st.r.sys.guess[p+a]*next[a], next[a])
+			straight = straight && promised(off[a]+w[a], w[a]+st.r.sys.guess[p+a]*next[a], next[a], st.r.impedance[p+a])
 		}
 	}
 	return cut, straight
 }
 
-// promised reports whether an output of port p that differs by off from the linearisation, of size i at voltage v, is
-// what that promised.
-func (st *stage) promised(p int, off, i, v float64) bool {
+// promised reports whether an output of size i at voltage v and a port of some impedance, which differs by off from the
+// linearisation, is what that promised.
+func promised(off, i, v, impedance float64) bool {
 	e := math.Abs(off)
-	return e <= absoluteCurrent+relativeCurrent*math.Abs(i) || e*st.r.impedance[p] <= absoluteVoltage+1e-14*math.Abs(v)
+	return e <= absoluteCurrent+relativeCurrent*math.Abs(i) || e*impedance <= absoluteVoltage+1e-14*math.Abs(v)
 }
 
 // damp halves dv, and with it next, until the simplified Newton step from there is shorter (the natural
@@ -205,23 +208,34 @@ func (st *stage) stale(tolerance float64) bool {
 }
 
 func (st *stage) factorise() error {
-	d := len(st.v)
-	k, a := st.r.k.data, st.jac.lu
-	for n := range st.r.sys.laws {
-		l := &st.r.sys.laws[n]
+	st.r.sys.jacobian(st.jac.lu, st.r.k, st.slope)
+	copy(st.jacSlope, st.slope)
+	st.jacValid, st.flowOK = false, false
+	if err := st.jac.factorise(); err != nil {
+		return err
+	}
+	st.jacValid = true
+	return nil
+}
+
+// jacobian writes I - k slope into a; slope are the blocks of all laws.
+func (s *system) jacobian(a []float64, k dense, slope []float64) {
+	d := k.rows
+	for n := range s.laws {
+		l := &s.laws[n]
 		if l.count == 1 {
-			g := -st.slope[l.block]
+			g := -slope[l.block]
 			for at := l.first; at < d*d; at += d {
-				a[at] = k[at] * g
+				a[at] = k.data[at] * g
 			}
 			continue
 		}
-		block := st.slope[l.block : l.block+l.count*l.count]
+		block := slope[l.block : l.block+l.count*l.count]
 		for row := l.first; row < d*d; row += d {
 			for c := range l.count {
 				sum := 0.0
 				for p := range l.count {
-					sum -= k[row+p] * block[p*l.count+c]
+					sum -= k.data[row+p] * block[p*l.count+c]
 				}
 				a[row+c] = sum
 			}
@@ -230,11 +244,4 @@ func (st *stage) factorise() error {
 	for at := 0; at < d*d; at += d + 1 {
 		a[at]++
 	}
-	copy(st.jacSlope, st.slope)
-	st.jacValid, st.flowOK = false, false
-	if err := st.jac.factorise(); err != nil {
-		return err
-	}
-	st.jacValid = true
-	return nil
 }

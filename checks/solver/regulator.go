@@ -53,6 +53,11 @@ func (n *Network) AddRegulator(in, reference, out Node, r Regulator) Device {
 
 type regulator struct{ Regulator }
 
+const (
+	outputCorner = 1e-5 // A, where the output begins to deliver: below the current of its own divider
+	limitCorner  = 1e-3 // of the current limit
+)
+
 // quiescentKnee is the input voltage below which the quiescent current fades, V.
 const quiescentKnee = 0.05
 
@@ -60,19 +65,11 @@ func (r *regulator) Evaluate(v []float64, _ float64, i, g []float64) {
 	vin, vout := r.Sign*v[0], r.Sign*v[1]
 
 	// Output current as a function of the target voltage.
-	target, dtarget := r.Set, 0.0
-	if !r.Held {
-		set := r.Set + r.Rejection*(vin-r.Set-r.Dropout)
-		var dset, din float64
-		target, dset, din = smoothMin(set, vin-r.Dropout, r.Corner)
-		dtarget = dset*r.Rejection + din
-	}
-	x := (target - vout) / r.ROut
-	// 10 uA wide corners: negligible beside any load, wide enough for Newton's method.
-	const corner = 1e-5
-	current, slope := smoothPositive(x, corner)
+	target, dtarget := r.target(vin)
+	off, slope, _ := smoothMin((vout-target)/r.ROut, 0, outputCorner)
+	current := -off
 	if r.CurrentLimit > 0 {
-		m, dm, _ := smoothMin(current, r.CurrentLimit, r.CurrentLimit*1e-3)
+		m, dm, _ := smoothMin(current, r.CurrentLimit, r.CurrentLimit*limitCorner)
 		current, slope = m, slope*dm
 	}
 	dvin, dvout := slope*dtarget/r.ROut, -slope/r.ROut
@@ -84,16 +81,58 @@ func (r *regulator) Evaluate(v []float64, _ float64, i, g []float64) {
 		dvout -= gb
 	}
 
-	root := math.Sqrt(vin*vin + quiescentKnee*quiescentKnee)
-	quiescent := r.Quiescent * vin / root
-	dquiescent := r.Quiescent * quiescentKnee * quiescentKnee / (root * root * root)
-
-	i[0], i[1] = r.Sign*(current+quiescent), -r.Sign*current
-	g[0], g[1] = dvin+dquiescent+gmin, dvout
+	share, dshare := smoothSign(vin, quiescentKnee)
+	i[0], i[1] = r.Sign*(current+r.Quiescent*share), -r.Sign*current
+	g[0], g[1] = dvin+r.Quiescent*dshare+gmin, dvout
 	g[2], g[3] = -dvin, -dvout
 	i[0] += gmin * v[0]
 	i[1] += r.Sink * v[1]
 	g[3] += r.Sink
+}
+
+// target is the output voltage without load at an input voltage, and its derivative.
+func (r *regulator) target(vin float64) (target, slope float64) {
+	if r.Held {
+		return r.Set, 0
+	}
+	set := r.Set + r.Rejection*(vin-r.Set-r.Dropout)
+	target, dset, din := smoothMin(set, vin-r.Dropout, r.Corner)
+	return target, dset*r.Rejection + din
+}
+
+// Region numbers the combinations of regulating or dropped out, on or off, limiting or not, outside their corners.
+func (r *regulator) Region(v []float64) int {
+	vin, vout := r.Sign*v[0], r.Sign*v[1]
+	region := 1
+	if math.Abs(vin) < quiescentKnee || r.Body > 0 && vout-vin > negligible*r.VT {
+		return 0
+	} else if vin < 0 {
+		region |= 2
+	}
+	if !r.Held {
+		over := (1 - r.Rejection) * (vin - r.Dropout - r.Set)
+		if math.Abs(over) <= cornerReach*r.Corner {
+			return 0
+		} else if over < 0 {
+			region |= 4
+		}
+	}
+	target, _ := r.target(vin)
+	current := (target - vout) / r.ROut
+	switch reach := cornerReach * outputCorner; {
+	case current < -reach:
+		return region
+	case current <= reach:
+		return 0
+	}
+	if over := current - r.CurrentLimit; r.CurrentLimit > 0 {
+		if math.Abs(over) <= cornerReach*limitCorner*r.CurrentLimit {
+			return 0
+		} else if over > 0 {
+			region |= 8
+		}
+	}
+	return region | 16
 }
 
 func (r *regulator) Limit(v, old []float64) bool {
@@ -116,10 +155,7 @@ func (r *regulator) Share(v, old []float64) float64 {
 	}
 	width := r.ROut * r.CurrentLimit
 	above := func(v []float64) float64 {
-		target := r.Set
-		if !r.Held {
-			target, _, _ = smoothMin(r.Set, r.Sign*v[0]-r.Dropout, r.Corner)
-		}
+		target, _ := r.target(r.Sign * v[0])
 		return r.Sign*v[1] - target + 0.5*width
 	}
 	before, after := above(old), above(v)
@@ -161,7 +197,7 @@ func (s *shuntReference) Evaluate(v []float64, _ float64, i, g []float64) {
 	over, dover := smoothPositive(v[1]-s.Set, math.Min(1e-4, cornerCurrent/s.Gain))
 	current, slope := s.Gain*over, s.Gain*dover
 	if s.CurrentLimit > 0 {
-		m, dm, _ := smoothMin(current, s.CurrentLimit, s.CurrentLimit*1e-3)
+		m, dm, _ := smoothMin(current, s.CurrentLimit, s.CurrentLimit*limitCorner)
 		current, slope = m, slope*dm
 	}
 	// Saturates below the smallest cathode voltage.
@@ -169,11 +205,11 @@ func (s *shuntReference) Evaluate(v []float64, _ float64, i, g []float64) {
 	width := math.Max(s.Minimum, 0.1)
 	share := math.Tanh(span / width)
 	dshare := (1 - share*share) / width * dspan
-	root := math.Hypot(v[1], quiescentKnee)
+	sign, dsign := smoothSign(v[1], quiescentKnee)
 	i[0] = current*share + gmin*v[0]
-	i[1] = s.Input*v[1]/root + gmin*v[1]
+	i[1] = s.Input*sign + gmin*v[1]
 	g[0], g[1] = current*dshare+gmin, slope*share
-	g[2], g[3] = 0, s.Input*quiescentKnee*quiescentKnee/(root*root*root)+gmin
+	g[2], g[3] = 0, s.Input*dsign+gmin
 }
 
 func (s *shuntReference) Limit(v, old []float64) bool { return false }

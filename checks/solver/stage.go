@@ -24,6 +24,10 @@ type stage struct {
 	// dv/dx and dw/dx, d x m, for flow
 	sensitivity, outputs dense
 
+	by           *elimination // which holds at the solution, nil: none
+	eliminations []*elimination
+	regions, met []int // of the laws at this solution and at the last one for which there was no elimination
+
 	iterations int
 }
 
@@ -33,6 +37,7 @@ func newStage(r *reduced) *stage {
 	return &stage{
 		r: r,
 		v: vector(), w: vector(), slope: make([]float64, r.sys.slopes), open: vector(), dv: vector(), next: vector(), trial: vector(),
+		regions: make([]int, len(r.sys.laws)), met: make([]int, len(r.sys.laws)),
 		off: vector(), jac: newFactor(d), jacSlope: make([]float64, r.sys.slopes),
 	}
 }
@@ -40,7 +45,7 @@ func newStage(r *reduced) *stage {
 // bias sets the port voltages from which the next search starts.
 func (st *stage) bias(v []float64) {
 	copy(st.v, v)
-	st.fresh = false
+	st.fresh, st.by = false, nil
 }
 
 // evaluate computes w and its derivatives at port voltages v.
@@ -92,6 +97,9 @@ func (st *stage) unknowns(out, x, u []float64) {
 
 // transition returns the derivative of the states after the stage by the predicted states, m x m.
 func (st *stage) transition() (dense, error) {
+	if st.by != nil {
+		return st.bentTransition(st.by)
+	}
 	if st.stale(slack) {
 		if err := st.factorise(); err != nil {
 			return dense{}, err

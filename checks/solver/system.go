@@ -35,11 +35,23 @@ type system struct {
 
 // lawSlot places a law's ports in the port vector, and its derivatives, row by row, among those of all laws.
 type lawSlot struct {
-	law      Law
-	junction *junction // the law, if it is one
-	first    int
-	count    int
-	block    int
+	law       Law
+	junction  *junction // the law, if it is one
+	piecewise Piecewise // the same, if it is one
+	first     int
+	count     int
+	block     int
+}
+
+// region is the range of the law that holds its ports among all port voltages v; see Piecewise.
+func (l *lawSlot) region(v []float64) int {
+	switch {
+	case l.junction != nil:
+		return l.junction.region(v[l.first])
+	case l.piecewise != nil:
+		return l.piecewise.Region(v[l.first : l.first+l.count])
+	}
+	return 0
 }
 
 func newSystem(n *Network) (*system, error) {
@@ -67,6 +79,7 @@ func newSystem(n *Network) (*system, error) {
 			}
 			slot := lawSlot{law: d.law, first: len(s.ports), count: len(d.ports), block: s.slopes}
 			slot.junction, _ = d.law.(*junction)
+			slot.piecewise, _ = d.law.(Piecewise)
 			s.laws = append(s.laws, slot)
 			s.slopes += slot.count * slot.count
 			_, regulates := d.law.(*regulator)
