@@ -88,7 +88,12 @@ func (st *stage) searchBent(e *elimination, t float64) bool {
 func (st *stage) moveBent(e *elimination, l *bentLaw, t float64) (cut, straight bool) {
 	from, to := l.at, l.at+l.count
 	next, v := e.next[from:to], e.v[from:to]
-	cut, straight = l.law.Limit(next, v), true
+	if l.junction != nil {
+		next[0], cut = l.junction.limited(next[0], v[0])
+	} else {
+		cut = l.law.Limit(next, v)
+	}
+	straight = true
 	off := e.off[from:to]
 	for a := range off {
 		off[a] = -e.w[from+a]
@@ -143,49 +148,33 @@ func (e *elimination) factorise() {
 
 // bentTransition is transition by an elimination that holds at the solution.
 func (st *stage) bentTransition(e *elimination) (dense, error) {
-	if e.flowOK {
-		return e.flow, nil
+	if len(e.ports) == 0 {
+		return e.still, nil
 	}
-	m := e.flow.rows
-	for r := range e.sensitivity.rows {
-		copy(e.sensitivity.row(r), e.lead.row(r)[:m])
+	m := e.still.rows
+	for k := range e.laws {
+		l := &e.laws[k]
+		copy(e.g[l.block:l.block+l.count*l.count], st.slope[l.lawSlot.block:])
 	}
-	if len(e.ports) > 0 {
-		for k := range e.laws {
-			l := &e.laws[k]
-			copy(e.g[l.block:l.block+l.count*l.count], st.slope[l.lawSlot.block:])
-		}
-		e.factorise()
-		if err := e.jac.factorise(); err != nil {
-			return dense{}, err
-		}
-		for n, p := range e.ports {
-			copy(e.bend.row(n), e.sensitivity.row(p))
-		}
-		e.jac.solveAll(e.bend)
-		outputs := dense{len(e.ports), m, e.outputs.data[:len(e.ports)*m]}
-		clear(outputs.data)
-		for k := range e.laws {
-			l := &e.laws[k]
-			for a := range l.count {
-				for b, g := range e.g[l.block+a*l.count : l.block+(a+1)*l.count] {
-					subtract(outputs.row(l.at+a), e.bend.row(l.at+b), -g)
-				}
-			}
-		}
-		addProduct(e.sensitivity, e.response, outputs)
+	e.factorise()
+	if err := e.jac.factorise(); err != nil {
+		return dense{}, err
 	}
+	// dv/dx = (I - own g)^-1 lead; dw/dx = g of that.
+	for n, p := range e.ports {
+		copy(e.bend.row(n), e.lead.row(p)[:m])
+	}
+	e.jac.solveAll(e.bend)
 	clear(e.outputs.data)
-	for k := range st.r.sys.laws {
-		l := &st.r.sys.laws[k]
+	for k := range e.laws {
+		l := &e.laws[k]
 		for a := range l.count {
-			for b, g := range st.slope[l.block+a*l.count : l.block+(a+1)*l.count] {
-				subtract(e.outputs.row(l.first+a), e.sensitivity.row(l.first+b), -g)
+			for b, g := range e.g[l.block+a*l.count : l.block+(a+1)*l.count] {
+				subtract(e.outputs.row(l.at+a), e.bend.row(l.at+b), -g)
 			}
 		}
 	}
-	copy(e.flow.data, st.r.sx.data)
-	addProduct(e.flow, st.r.sw, e.outputs)
-	e.flowOK = len(e.ports) == 0
+	copy(e.flow.data, e.still.data)
+	addProduct(e.flow, e.reach, e.outputs)
 	return e.flow, nil
 }

@@ -27,10 +27,9 @@ type elimination struct {
 	step            []float64
 	jac             *factor // I - own g
 
-	flow                 dense // d state' / d state
-	flowOK               bool  // flow holds as it is: no law is left
-	sensitivity, outputs dense // dv/dx and dw/dx of all ports
-	bend                 dense // dv/dx of those left
+	// d state' / d state = still + reach dw/dx, w being the outputs of the ports left.
+	still, reach, flow dense
+	bend, outputs      dense // dv/dx and dw/dx of the ports left
 }
 
 // bentLaw places a law that is left among the ports left, and its derivatives among theirs.
@@ -115,7 +114,7 @@ func (st *stage) eliminate() (*elimination, error) {
 	b := len(e.ports)
 	e.v, e.next, e.w, e.off, e.step = make([]float64, b), make([]float64, b), make([]float64, b), make([]float64, b), make([]float64, b)
 	e.open, e.jac = make([]float64, d), newFactor(b)
-	e.flow, e.sensitivity, e.outputs, e.bend = newDense(m, m), newDense(d, m), newDense(d, m), newDense(b, m)
+	e.still, e.reach, e.flow, e.bend, e.outputs = r.sx.clone(), newDense(m, b), newDense(m, m), newDense(b, m), newDense(b, m)
 	// (I - k slope) v = px x + pu u + k w0 + k w
 	given, rest, column := newDense(d, m+q+1+b), make([]float64, d), make([]float64, d)
 	r.k.times(rest, e.w0)
@@ -150,6 +149,7 @@ func (st *stage) eliminate() (*elimination, error) {
 		}
 		e.sound = e.sound && last <= soundness*largest(column)
 		all.setColumn(c, column)
+		e.carry(r, c, column, rest)
 	}
 	e.lead, e.response = all.columns(0, m+q+1), all.columns(m+q+1, m+q+1+b)
 	e.own = newDense(b, b)
@@ -157,6 +157,28 @@ func (st *stage) eliminate() (*elimination, error) {
 		copy(e.own.row(n), e.response.row(p))
 	}
 	return e, nil
+}
+
+// carry takes column c of lead and response, v, into account for the derivatives of the states; outputs is scratch.
+func (e *elimination) carry(r *reduced, c int, v, outputs []float64) {
+	m, left := r.sx.rows, c-len(e.drive)
+	if c >= m && left < 0 {
+		return
+	}
+	clear(outputs)
+	for k := range r.sys.laws {
+		r.sys.laws[k].addSlope(outputs, e.slope, v, 1)
+	}
+	to, at := e.still, c
+	if left >= 0 {
+		outputs[e.ports[left]]++
+		to, at = e.reach, left
+	}
+	for row := range m {
+		for p, w := range outputs {
+			to.row(row)[at] += r.sw.row(row)[p] * w
+		}
+	}
 }
 
 // soundness is the relative size of the last correction of an elimination below which it is exact enough.
