@@ -24,7 +24,7 @@ func (s *search) accelerate(ctx context.Context, x []float64) (*Trajectory, erro
 	var states, changes []*mat.VecDense // of the last periods, scaled
 	best, size := math.Inf(1), math.Inf(1)
 	kept := newTrajectory(s.m.sys.net, 0, s.m.step, s.steps+1)
-	for s.periods < maxPeriods && s.periods*s.steps < maxSteps {
+	for s.periods < s.most && s.periods*s.steps < maxSteps {
 		copy(s.m.x, x)
 		record := size < worthKeeping
 		if err := s.m.period(ctx, 0, s.steps, false, kept, record); err != nil {

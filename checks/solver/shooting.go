@@ -32,10 +32,13 @@ const (
 type search struct {
 	m       *march
 	steps   int
+	plain   int // periods before Newton's method
 	scale   []float64
 	periods int // integrated so far
-	// enough is the size of the last Newton step, in units of the bounds above, at which the search ends.
+	// enough is the size of the last Newton step, in units of the bounds above, at which the search ends; most bounds
+	// its periods.
 	enough float64
+	most   int
 }
 
 // asRecorded is the size of a Newton step, in the same units, below which the period before it is the solution. A step
@@ -51,15 +54,15 @@ const (
 const worthKeeping = 1e5
 
 // settle finds the state from which a period returns to itself, starting at x (overwritten), and returns that period.
-func (s *search) settle(ctx context.Context, x []float64, plain int) (*Trajectory, error) {
-	n := len(x)
+func (s *search) settle(ctx context.Context, x []float64) (*Trajectory, error) {
+	n, plain := len(x), s.plain
 	if n > derivativesUpTo {
 		return s.accelerate(ctx, x)
 	}
 	residual := make([]float64, n)
 	best, worse, size := math.Inf(1), 0, math.Inf(1)
 	var kept *Trajectory
-	for s.periods < maxPeriods && s.periods*s.steps < maxSteps {
+	for s.periods < s.most && s.periods*s.steps < maxSteps {
 		track := plain <= 0
 		copy(s.m.x, x)
 		record := track && size < worthKeeping || n == 0

@@ -105,12 +105,15 @@ func SteadyState(ctx context.Context, n *Network, o Options) (*Solution, error) 
 		plain = 0
 	}
 	sol := &Solution{}
+	if plain > 0 && sol.sketch(ctx, sys, x, o.Steps/sketchedBy) {
+		plain = 0
+	}
 	differs, enough := "", asRecorded
 	if o.OneGrid {
 		enough = roughly
 	}
 	for steps := o.Steps; steps <= o.MaxSteps; steps *= 2 {
-		tr, err := sol.grid(ctx, sys, x, steps, plain, enough)
+		tr, err := sol.grid(ctx, sys, x, steps, search{plain: plain, enough: enough, most: maxPeriods})
 		if err != nil {
 			if (errors.Is(err, ErrNewton) || errors.Is(err, ErrUnsettled)) && steps*2 <= o.MaxSteps && sol.Fine == nil && steps < 4*o.Steps {
 				// A finer step may carry Newton's method over what a coarse one could not.
@@ -144,14 +147,35 @@ func SteadyState(ctx context.Context, n *Network, o Options) (*Solution, error) 
 	return sol, fmt.Errorf("%w at %d steps a period (power imbalance %.2g) %s", ErrInaccurate, sol.Fine.Samples()-1, sol.Imbalance, differs)
 }
 
+// A steady state is first sketched from nothing on a grid coarser by this factor, as far as that is easily done.
+const (
+	sketchedBy      = 4
+	sketchedFrom    = 16 // steps a period
+	sketchedPeriods = 10
+	sketchedEnough  = 1e4 // of the bounds of the state
+)
+
+// sketch moves the state x to near the periodic one, and reports whether it could.
+func (s *Solution) sketch(ctx context.Context, sys *system, x []float64, steps int) bool {
+	if steps < sketchedFrom || len(x) == 0 || len(x) > derivativesUpTo {
+		return false
+	}
+	near := make([]float64, len(x))
+	if _, err := s.grid(ctx, sys, near, steps, search{plain: plainPeriods, enough: sketchedEnough, most: sketchedPeriods}); err != nil {
+		return false
+	}
+	copy(x, near)
+	return true
+}
+
 // grid solves on one grid, from state x, which it moves to the solution.
-func (s *Solution) grid(ctx context.Context, sys *system, x []float64, steps, plain int, enough float64) (*Trajectory, error) {
+func (s *Solution) grid(ctx context.Context, sys *system, x []float64, steps int, find search) (*Trajectory, error) {
 	m, err := newMarch(sys, sys.net.Period/float64(steps))
 	if err != nil {
 		return nil, err
 	}
-	find := &search{m: m, steps: steps, scale: sys.stateScale(), enough: enough}
-	tr, err := find.settle(ctx, x, plain)
+	find.m, find.steps, find.scale = m, steps, sys.stateScale()
+	tr, err := find.settle(ctx, x)
 	s.Periods += find.periods
 	s.Iterations += m.stage.iterations
 	if err != nil {
