@@ -47,7 +47,7 @@ const (
 // settle finds the elimination for the solution just found. One is made when its regions are met twice in a row.
 func (st *stage) settle() error {
 	st.by = nil
-	if len(st.v) > eliminateUpTo {
+	if !st.eliminates {
 		return nil
 	}
 	left := 0

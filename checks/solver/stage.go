@@ -24,6 +24,7 @@ type stage struct {
 	// dv/dx and dw/dx, d x m, for flow
 	sensitivity, outputs dense
 
+	eliminates   bool         // laws are eliminated at all
 	by           *elimination // which holds at the solution, nil: none
 	eliminations []*elimination
 	regions, met []int // of the laws at this solution and at the last one for which there was no elimination
@@ -38,7 +39,7 @@ func newStage(r *reduced) *stage {
 		r: r,
 		v: vector(), w: vector(), slope: make([]float64, r.sys.slopes), open: vector(), dv: vector(), next: vector(), trial: vector(),
 		regions: make([]int, len(r.sys.laws)), met: make([]int, len(r.sys.laws)),
-		off: vector(), jac: newFactor(d), jacSlope: make([]float64, r.sys.slopes),
+		eliminates: d <= eliminateUpTo, off: vector(), jac: newFactor(d), jacSlope: make([]float64, r.sys.slopes),
 	}
 }
 
