@@ -10,7 +10,9 @@ import (
 
 // drawSupply draws a rectifier with a reservoir and what may follow it.
 func drawSupply(t *rapid.T) (n *Network, amplitude float64) {
-	between := func(low, high float64, what string) float64 { return low * math.Pow(high/low, rapid.Float64Range(0, 1).Draw(t, what)) }
+	between := func(low, high float64, what string) float64 {
+		return low * math.Pow(high/low, rapid.Float64Range(0, 1).Draw(t, what))
+	}
 	n = New(3)
 	n.Period = 1 / lineFrequency
 	amplitude = between(5, 300, "crest")
