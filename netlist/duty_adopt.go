@@ -29,11 +29,33 @@ func (c *Circuit) adoptPart(id ElementID, typeName string, stated []string) (why
 			d.takeRole(part)
 		}
 		return c.placeRegulator(id, d, d.Written, pins)
+	case Transistor:
+		if pins != nil {
+			return c.placeTransistor(id, pins)
+		}
 	case Unknown:
 		return c.adoptUnknown(id, part, pins)
 	}
 	return ""
 }
+
+// placeTransistor puts the nodes of a bipolar transistor, written in the order of pins, into the order of the device.
+func (c *Circuit) placeTransistor(id ElementID, pins []Pin) (why string) {
+	nodes := c.Elements[id].Nodes
+	if len(nodes) != 3 {
+		return "a transistor has three nodes"
+	}
+	ordered, ok := orderPins(nodes, pins, RoleTransistor)
+	if !ok {
+		return "its pins do not name collector, base and emitter"
+	}
+	c.setNodes(id, ordered)
+	c.dropRemark(c.Elements[id].Name, transistorPinsTaken)
+	return ""
+}
+
+// transistorPinsTaken begins the remark of a reader that had to assume the order of a transistor's nodes.
+const transistorPinsTaken = "its nodes are taken as collector, base, emitter"
 
 // adoptUnknown gives a law to a call of an undefined type.
 func (c *Circuit) adoptUnknown(id ElementID, part KnownPart, pins []Pin) (why string) {
@@ -51,6 +73,20 @@ func (c *Circuit) adoptUnknown(id ElementID, part KnownPart, pins []Pin) (why st
 		c.setZener(id, part.Role == RoleZener)
 		if len(pins) == 2 && pins[0] == PinCathode {
 			c.setNodes(id, []NodeID{e.Nodes[1], e.Nodes[0]})
+		}
+	case part.Role == RoleTransistor || slices.Contains(pins, PinBase):
+		if part.Role != RoleTransistor || part.Polarity == 0 {
+			return "the table has no law for it"
+		}
+		if pins == nil {
+			pins = part.Pins
+		}
+		if why := c.placeTransistor(id, pins); why != "" {
+			return why
+		}
+		e.Device = Transistor{Area: 1}
+		if assumed {
+			c.Remarks = append(c.Remarks, Remark{Kind: RemarkAssumption, At: e.At, Element: e.Name, Text: transistorPinsTaken})
 		}
 	case part.Role == RoleRegulator || part.Role == RoleAdjustable || part.Role == RoleShunt || slices.Contains(pins, PinIn):
 		d := Regulator{Polarity: Positive, PinsAssumed: true}
@@ -166,6 +202,7 @@ type dutyPin struct {
 var dutyPins = []dutyPin{
 	{"in", PinIn}, {"gnd", PinReference}, {"out", PinOut}, {"adj", PinReference}, {"ref", PinReference},
 	{"k", PinCathode}, {"a", PinAnode}, {"cathode", PinCathode}, {"anode", PinAnode},
+	{"c", PinCollector}, {"b", PinBase}, {"e", PinEmitter},
 }
 
 func dutyPinWords() []string {

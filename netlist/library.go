@@ -48,4 +48,7 @@ const (
 	PinAC2
 	PinPlus
 	PinMinus
+	PinCollector
+	PinBase
+	PinEmitter
 )

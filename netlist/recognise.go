@@ -79,6 +79,13 @@ func (x *expander) known(lv *level, c *elementCard, name string, nodes []NodeID,
 			x.add(lv, &leg, []NodeID{d[0], d[1]}, Diode{Area: 1}, name)
 		}
 		return true
+	case RoleTransistor:
+		if len(nodes) != 3 || macromodel || part.Polarity == 0 {
+			return false // what the netlist carries for it is solved as it is
+		}
+		assume(transistorPinsTaken + "; state others with part " + full + " ... pins=")
+		x.add(lv, c, nodes, Transistor{Area: 1}, name)
+		return true
 	}
 	return false
 }
@@ -116,11 +123,14 @@ var shuntPinNames = map[string]Pin{
 	"a": PinAnode, "ano": PinAnode, "anode": PinAnode,
 }
 
-// orderPins puts nodes written in the order of pins into the order of the Regulator device.
+// orderPins puts nodes written in the order of pins into the order of the device of a role, a regulator or transistor.
 func orderPins(nodes []NodeID, pins []Pin, role Role) ([]NodeID, bool) {
 	want := []Pin{PinIn, PinReference, PinOut}
-	if role == RoleShunt {
+	switch role {
+	case RoleShunt:
 		want = []Pin{PinCathode, PinReference, PinAnode}
+	case RoleTransistor:
+		want = []Pin{PinCollector, PinBase, PinEmitter}
 	}
 	var ordered []NodeID
 	for _, w := range want {

@@ -19,6 +19,8 @@ func (regulators) Recognise(name string) (KnownPart, bool) {
 		return KnownPart{Type: "zener 12 V", Role: RoleZener}, true
 	case "DB107":
 		return KnownPart{Type: "DB107", Role: RoleBridge}, true
+	case "BD139":
+		return KnownPart{Type: "BD139", Role: RoleTransistor, Polarity: Positive, Pins: []Pin{PinCollector, PinBase, PinEmitter}}, true
 	case "LM317":
 		return KnownPart{Type: "317", Role: RoleAdjustable, Polarity: Positive, Pins: pins}, true
 	}

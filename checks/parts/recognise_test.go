@@ -96,6 +96,7 @@ func TestRecogniseGivesRolePolarityAndPins(t *testing.T) {
 		pins     []netlist.Pin
 	}
 	in, ref, out := netlist.PinIn, netlist.PinReference, netlist.PinOut
+	cbe := []netlist.Pin{netlist.PinCollector, netlist.PinBase, netlist.PinEmitter}
 	for _, c := range []struct {
 		name string
 		want want
@@ -108,8 +109,8 @@ func TestRecogniseGivesRolePolarityAndPins(t *testing.T) {
 		{"TL431", want{netlist.RoleShunt, netlist.Positive, []netlist.Pin{ref, netlist.PinAnode, netlist.PinCathode}}},
 		{"KBP307", want{netlist.RoleBridge, 0, []netlist.Pin{netlist.PinAC1, netlist.PinAC2, netlist.PinPlus, netlist.PinMinus}}},
 		{"1N4007", want{netlist.RoleRectifier, 0, []netlist.Pin{netlist.PinAnode, netlist.PinCathode}}},
-		{"BC547B", want{netlist.RoleTransistor, netlist.Positive, nil}},
-		{"TIP42C", want{netlist.RoleTransistor, netlist.Negative, nil}},
+		{"BC547B", want{netlist.RoleTransistor, netlist.Positive, cbe}},
+		{"TIP42C", want{netlist.RoleTransistor, netlist.Negative, cbe}},
 		{"ZENER_12", want{netlist.RoleZener, 0, []netlist.Pin{netlist.PinAnode, netlist.PinCathode}}},
 	} {
 		part, ok := Default().Recognise(c.name)

@@ -157,8 +157,8 @@ var kinds = []struct {
 	{"fixed", netlist.RoleRegulator, []netlist.Pin{netlist.PinIn, netlist.PinReference, netlist.PinOut}},
 	{"adjustable", netlist.RoleAdjustable, []netlist.Pin{netlist.PinIn, netlist.PinReference, netlist.PinOut}},
 	{"shunt", netlist.RoleShunt, []netlist.Pin{netlist.PinReference, netlist.PinAnode, netlist.PinCathode}},
-	{"transistor", netlist.RoleTransistor, nil},
-	{"darlington", netlist.RoleTransistor, nil},
+	{"transistor", netlist.RoleTransistor, []netlist.Pin{netlist.PinCollector, netlist.PinBase, netlist.PinEmitter}},
+	{"darlington", netlist.RoleTransistor, []netlist.Pin{netlist.PinCollector, netlist.PinBase, netlist.PinEmitter}},
 }
 
 func roleOf(kind string) (netlist.Role, bool) {
