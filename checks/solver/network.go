@@ -4,7 +4,9 @@
 // Method. The linear part of the network is written by modified nodal analysis (Ho, Ruehli and Brennan,
 // IEEE Trans. CAS-22, 1975) and factorised once per step size; what remains to be solved in a time step is a
 // Newton problem of the size of the nonlinear ports (the reduction known as K-method: Borin, De Poli and
-// Rocchesso, IEEE Trans. Speech Audio Proc. 8, 2000). Time is integrated by the two-stage, stiffly accurate,
+// Rocchesso, IEEE Trans. Speech Audio Proc. 8, 2000). Of these, laws that are exactly linear around the last
+// solution - blocking junctions, regulators in regulation - are eliminated too, so that in most steps Newton's
+// method has one or two conducting junctions left, or none. Time is integrated by the two-stage, stiffly accurate,
 // L-stable singly diagonally implicit Runge-Kutta rule of order 2 (Alexander, SIAM J. Numer. Anal. 14, 1977).
 // Periodicity is found by Newton's method on the state at the start of the period
 // (Aprille and Trick, Proc. IEEE 60, 1972).
