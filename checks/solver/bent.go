@@ -55,15 +55,13 @@ func (st *stage) solveBent(x, u []float64, t float64) bool {
 // searchBent finds the voltages v of the ports left, v = open + own w.
 func (st *stage) searchBent(e *elimination, t float64) bool {
 	for range maxBent {
-		e.factorise()
-		if e.jac.factorise() != nil {
-			return false
-		}
 		e.own.times(e.step, e.w)
 		for n, p := range e.ports {
 			e.step[n] += e.open[p] - e.v[n]
 		}
-		e.jac.solve(e.step)
+		if !e.newton() {
+			return false
+		}
 		step := largest(e.step)
 		if !(step <= math.MaxFloat64) {
 			return false
@@ -124,6 +122,27 @@ func (st *stage) evaluateBent(e *elimination, l *bentLaw, t float64) {
 		w[a] -= guess * v[a]
 		g[a*l.count+a] -= guess
 	}
+}
+
+// newton turns the residual in step into Newton's step, and reports whether there is one. One or two junctions, the
+// usual case, are solved in place.
+func (e *elimination) newton() bool {
+	if own, g, r := e.own.data, e.g, e.step; len(e.laws) == len(r) && len(r) <= 2 {
+		if len(r) == 1 {
+			r[0] /= 1 - own[0]*g[0]
+			return true
+		}
+		a, b, c, d := 1-own[0]*g[0], -own[1]*g[1], -own[2]*g[0], 1-own[3]*g[1]
+		inverse := 1 / (a*d - b*c)
+		r[0], r[1] = (d*r[0]-b*r[1])*inverse, (a*r[1]-c*r[0])*inverse
+		return true
+	}
+	e.factorise()
+	if e.jac.factorise() != nil {
+		return false
+	}
+	e.jac.solve(e.step)
+	return true
 }
 
 // factorise writes I - own g.

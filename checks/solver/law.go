@@ -51,7 +51,7 @@ func (n *Network) AddDiode(anode, cathode Node, d Diode) Device {
 		d.NBV = 1
 	}
 	j := &junction{Diode: d}
-	j.scale, j.knee = d.N*d.VT, criticalVoltage(d.IS, d.N*d.VT)
+	j.scale, j.inverse, j.knee = d.N*d.VT, 1/(d.N*d.VT), criticalVoltage(d.IS, d.N*d.VT)
 	if d.BV > 0 {
 		j.reverseScale, j.reverseKnee = d.NBV*d.VT, criticalVoltage(d.IBV, d.NBV*d.VT)
 	}
@@ -63,7 +63,7 @@ func (n *Network) AddDiode(anode, cathode Node, d Diode) Device {
 
 type junction struct {
 	Diode
-	scale, knee               float64
+	scale, inverse, knee      float64 // inverse: one over scale
 	reverseScale, reverseKnee float64
 }
 
@@ -77,11 +77,11 @@ func (d *junction) Evaluate(v []float64, _ float64, i, g []float64) { i[0], g[0]
 
 // at is the current and the slope at a voltage.
 func (d *junction) at(v float64) (i, g float64) {
-	x := v / d.scale
+	x := v * d.inverse
 	current, slope := -d.IS, 0.0
 	if x > negligible {
 		e := d.IS * math.Exp(x)
-		current, slope = e-d.IS, e/d.scale
+		current, slope = e-d.IS, e*d.inverse
 	}
 	if d.BV > 0 {
 		if y := -(v + d.BV) / d.reverseScale; y > negligible {

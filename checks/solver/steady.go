@@ -150,7 +150,7 @@ func SteadyState(ctx context.Context, n *Network, o Options) (*Solution, error) 
 // A steady state is first sketched from nothing on a grid coarser by this factor, as far as that is easily done.
 const (
 	sketchedBy      = 4
-	sketchedFrom    = 16 // steps a period
+	sketchedFrom    = 12 // steps a period
 	sketchedPeriods = 10
 	sketchedEnough  = 1e4 // of the bounds of the state
 )
