@@ -112,11 +112,17 @@ func (st *stage) eliminate() (*elimination, error) {
 		}
 	}
 	b := len(e.ports)
-	e.v, e.next, e.w, e.off, e.step = make([]float64, b), make([]float64, b), make([]float64, b), make([]float64, b), make([]float64, b)
-	e.open, e.jac = make([]float64, d), newFactor(b)
+	room := make([]float64, 5*b+3*d)
+	vector := func(n int) []float64 {
+		v := room[:n:n]
+		room = room[n:]
+		return v
+	}
+	e.v, e.next, e.w, e.off, e.step = vector(b), vector(b), vector(b), vector(b), vector(b)
+	e.open, e.jac = vector(d), newFactor(b)
 	e.still, e.reach, e.flow, e.bend, e.outputs = r.sx.clone(), newDense(m, b), newDense(m, m), newDense(b, m), newDense(b, m)
 	// (I - k slope) v = px x + pu u + k w0 + k w
-	given, rest, column := newDense(d, m+q+1+b), make([]float64, d), make([]float64, d)
+	given, rest, column := newDense(d, m+q+1+b), vector(d), vector(d)
 	r.k.times(rest, e.w0)
 	for row := range d {
 		to := given.row(row)
@@ -134,20 +140,16 @@ func (st *stage) eliminate() (*elimination, error) {
 	}
 	all := given.clone()
 	jac.solveAll(all)
-	// Corrected by what is left of the equations, twice: between blocking junctions the rounding of the matrix counts.
+	// Corrected by what is left of the equations: between blocking junctions the rounding of the matrix counts.
 	e.sound = !slices.ContainsFunc(e.laws, func(l bentLaw) bool { _, ok := l.law.(Sharer); return ok })
 	for c := range all.cols {
 		all.column(c, column)
-		last := 0.0
-		for range 2 {
-			given.column(c, rest)
-			st.rest(rest, e.slope, column, jac)
-			for row, v := range rest {
-				column[row] += v
-			}
-			last = largest(rest)
+		given.column(c, rest)
+		st.rest(rest, e.slope, column, jac)
+		for row, v := range rest {
+			column[row] += v
 		}
-		e.sound = e.sound && last <= soundness*largest(column)
+		e.sound = e.sound && largest(rest) <= soundness*largest(column)
 		all.setColumn(c, column)
 		e.carry(r, c, column, rest)
 	}
@@ -181,7 +183,7 @@ func (e *elimination) carry(r *reduced, c int, v, outputs []float64) {
 	}
 }
 
-// soundness is the relative size of the last correction of an elimination below which it is exact enough.
+// soundness is the relative size of the correction of an elimination below which it is exact enough.
 const soundness = 1e-7
 
 // rest turns a given right-hand side into Newton's step from v to the solution of (I - k slope) v = given.

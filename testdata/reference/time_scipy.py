@@ -9,8 +9,8 @@ last solution (two or three iterations), in plain Python floats, no dictionaries
 Two ways to the steady state:
     plain     period after period from an empty reservoir until a period changes the state by less than 0.01 %;
     shooting  a secant on the one state, from the open-circuit crest.
-Every method runs at the loosest of a few tolerances that keeps mean, trough and crest within 0.1 % and peak and rms current
-within 0.5 % of a tight solution; the best of three runs counts. The last waveform, from which stresses would be read,
+Every method runs at the fastest of a few tolerances that keep mean, trough and crest within 0.1 % and peak and rms current
+within 0.5 % of a tight solution; the best of five runs counts. The last waveform, from which stresses would be read,
 is part of the time.
 """
 
@@ -117,20 +117,23 @@ def main():
     for law in (nodal, reduced):
         for way in ("plain", "shooting"):
             for method in ("LSODA", "BDF", "Radau"):
+                fastest = None
                 for rtol in (1e-2, 1e-3, 1e-4, 1e-5, 1e-6, 1e-7):
                     try:
                         error = np.abs(figures(law, settle(law, way, method, rtol)[0]) / exact - 1)
                     except ArithmeticError:  # too loose to repeat from period to period
                         continue
-                    if np.all(error < limits):
-                        break
-                best = np.inf
-                for _ in range(3):
-                    began = time.perf_counter()
-                    _, periods = settle(law, way, method, rtol)
-                    best = min(best, time.perf_counter() - began)
-                rows.append({"equations": law.__name__, "way": way, "method": method, "rtol": rtol, "periods": periods,
-                             "seconds": round(best, 6), "worst_error": float("%.1e" % np.max(error))})
+                    if np.any(error >= limits):
+                        continue
+                    best = np.inf
+                    for _ in range(5):
+                        began = time.perf_counter()
+                        _, periods = settle(law, way, method, rtol)
+                        best = min(best, time.perf_counter() - began)
+                    if fastest is None or best < fastest["seconds"]:
+                        fastest = {"equations": law.__name__, "way": way, "method": method, "rtol": rtol, "periods": periods,
+                                   "seconds": round(best, 6), "worst_error": float("%.1e" % np.max(error))}
+                rows.append(fastest)
     fastest = {k: min((r for r in rows if k in (r["equations"] + "-" + r["way"])), key=lambda r: r["seconds"])["seconds"]
                for k in ("nodal-plain", "nodal-shooting", "reduced-plain", "reduced-shooting")}
     if "--json" in sys.argv:
