@@ -52,6 +52,17 @@ func (st *stage) solveBent(x, u []float64, t float64) bool {
 	return true
 }
 
+// stays reports whether the laws left are still bent where they are now.
+func (e *elimination) stays() bool {
+	for k := range e.laws {
+		l := &e.laws[k]
+		if l.junction != nil && l.junction.region(e.v[l.at]) != 0 || l.piecewise != nil && l.piecewise.Region(e.v[l.at:l.at+l.count]) != 0 {
+			return false
+		}
+	}
+	return true
+}
+
 // searchBent finds the voltages v of the ports left, v = open + own w.
 func (st *stage) searchBent(e *elimination, t float64) bool {
 	for range maxBent {
@@ -59,9 +70,10 @@ func (st *stage) searchBent(e *elimination, t float64) bool {
 		for n, p := range e.ports {
 			e.step[n] += e.open[p] - e.v[n]
 		}
-		if !e.newton() {
+		if !e.prepare() {
 			return false
 		}
+		e.solve(e.step)
 		step := largest(e.step)
 		if !(step <= math.MaxFloat64) {
 			return false
@@ -85,13 +97,15 @@ func (st *stage) searchBent(e *elimination, t float64) bool {
 // moveBent takes the step of one law left, as stage.move does.
 func (st *stage) moveBent(e *elimination, l *bentLaw, t float64) (cut, straight bool) {
 	from, to := l.at, l.at+l.count
-	next, v := e.next[from:to], e.v[from:to]
 	if l.junction != nil {
-		next[0], cut = l.junction.limited(next[0], v[0])
-	} else {
-		cut = l.law.Limit(next, v)
+		guess, promise := st.r.sys.guess[l.first], e.w[from]+e.g[l.block]*e.step[from]
+		v, moved := l.junction.limited(e.next[from], e.v[from])
+		i, g := l.junction.at(v)
+		e.v[from], e.w[from], e.g[l.block] = v, i-guess*v, g-guess
+		return moved, promised(e.w[from]-promise, i, v, math.Abs(e.own.data[from*e.own.cols+from]))
 	}
-	straight = true
+	next, v := e.next[from:to], e.v[from:to]
+	cut, straight = l.law.Limit(next, v), true
 	off := e.off[from:to]
 	for a := range off {
 		off[a] = -e.w[from+a]
@@ -112,11 +126,7 @@ func (st *stage) moveBent(e *elimination, l *bentLaw, t float64) (cut, straight 
 func (st *stage) evaluateBent(e *elimination, l *bentLaw, t float64) {
 	v, w, g := e.v[l.at:l.at+l.count], e.w[l.at:l.at+l.count], e.g[l.block:l.block+l.count*l.count]
 	copy(v, e.next[l.at:])
-	if l.junction != nil {
-		w[0], g[0] = l.junction.at(v[0])
-	} else {
-		l.law.Evaluate(v, t, w, g)
-	}
+	l.law.Evaluate(v, t, w, g)
 	for a := range w {
 		guess := st.r.sys.guess[l.first+a]
 		w[a] -= guess * v[a]
@@ -124,25 +134,28 @@ func (st *stage) evaluateBent(e *elimination, l *bentLaw, t float64) {
 	}
 }
 
-// newton turns the residual in step into Newton's step, and reports whether there is one. One or two junctions, the
-// usual case, are solved in place.
-func (e *elimination) newton() bool {
-	if own, g, r := e.own.data, e.g, e.step; len(e.laws) == len(r) && len(r) <= 2 {
-		if len(r) == 1 {
-			r[0] /= 1 - own[0]*g[0]
-			return true
-		}
-		a, b, c, d := 1-own[0]*g[0], -own[1]*g[1], -own[2]*g[0], 1-own[3]*g[1]
-		inverse := 1 / (a*d - b*c)
-		r[0], r[1] = (d*r[0]-b*r[1])*inverse, (a*r[1]-c*r[0])*inverse
+// prepare readies solve for the present derivatives, and reports whether there is a solution.
+func (e *elimination) prepare() bool {
+	if e.few {
 		return true
 	}
 	e.factorise()
-	if e.jac.factorise() != nil {
-		return false
+	return e.jac.factorise() == nil
+}
+
+// solve solves (I - own g) x = r in place. One or two laws of one port, the usual case, need no factors.
+func (e *elimination) solve(r []float64) {
+	own, g := e.own.data, e.g
+	switch {
+	case !e.few:
+		e.jac.solve(r)
+	case len(r) == 1:
+		r[0] /= 1 - own[0]*g[0]
+	default:
+		a, b, c, d := 1-own[0]*g[0], -own[1]*g[1], -own[2]*g[0], 1-own[3]*g[1]
+		inverse := 1 / (a*d - b*c)
+		r[0], r[1] = (d*r[0]-b*r[1])*inverse, (a*r[1]-c*r[0])*inverse
 	}
-	e.jac.solve(e.step)
-	return true
 }
 
 // factorise writes I - own g.
@@ -170,30 +183,37 @@ func (st *stage) bentTransition(e *elimination) (dense, error) {
 	if len(e.ports) == 0 {
 		return e.still, nil
 	}
-	m := e.still.rows
 	for k := range e.laws {
 		l := &e.laws[k]
 		copy(e.g[l.block:l.block+l.count*l.count], st.slope[l.lawSlot.block:])
 	}
-	e.factorise()
-	if err := e.jac.factorise(); err != nil {
-		return dense{}, err
+	if !e.prepare() {
+		return dense{}, ErrSingular
 	}
-	// dv/dx = (I - own g)^-1 lead; dw/dx = g of that.
-	for n, p := range e.ports {
-		copy(e.bend.row(n), e.lead.row(p)[:m])
-	}
-	e.jac.solveAll(e.bend)
-	clear(e.outputs.data)
-	for k := range e.laws {
-		l := &e.laws[k]
-		for a := range l.count {
-			for b, g := range e.g[l.block+a*l.count : l.block+(a+1)*l.count] {
-				subtract(e.outputs.row(l.at+a), e.bend.row(l.at+b), -g)
+	m := e.still.rows
+	for c := range m {
+		// dv/dx = (I - own g)^-1 lead; dw/dx = g of that.
+		for n, p := range e.ports {
+			e.step[n] = e.lead.data[p*e.lead.cols+c]
+		}
+		e.solve(e.step)
+		for k := range e.laws {
+			l := &e.laws[k]
+			for a := range l.count {
+				sum := 0.0
+				for b, g := range e.g[l.block+a*l.count : l.block+(a+1)*l.count] {
+					sum += g * e.step[l.at+b]
+				}
+				e.off[l.at+a] = sum
 			}
 		}
+		for r := range m {
+			sum := e.still.data[r*m+c]
+			for n, dw := range e.off {
+				sum += e.reach.data[r*len(e.off)+n] * dw
+			}
+			e.flow.data[r*m+c] = sum
+		}
 	}
-	copy(e.flow.data, e.still.data)
-	addProduct(e.flow, e.reach, e.outputs)
 	return e.flow, nil
 }

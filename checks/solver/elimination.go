@@ -20,6 +20,7 @@ type elimination struct {
 
 	laws  []bentLaw // those left
 	ports []int     // theirs among all
+	few   bool      // one or two laws of one port
 	// The search for the voltages of the ports left.
 	v, next, w, off []float64
 	g               []float64 // dw/dv, law by law
@@ -29,7 +30,6 @@ type elimination struct {
 
 	// d state' / d state = still + reach dw/dx, w being the outputs of the ports left.
 	still, reach, flow dense
-	bend, outputs      dense // dv/dx and dw/dx of the ports left
 }
 
 // bentLaw places a law that is left among the ports left, and its derivatives among theirs.
@@ -119,8 +119,11 @@ func (st *stage) eliminate() (*elimination, error) {
 		return v
 	}
 	e.v, e.next, e.w, e.off, e.step = vector(b), vector(b), vector(b), vector(b), vector(b)
-	e.open, e.jac = vector(d), newFactor(b)
-	e.still, e.reach, e.flow, e.bend, e.outputs = r.sx.clone(), newDense(m, b), newDense(m, m), newDense(b, m), newDense(b, m)
+	e.open, e.few = vector(d), b <= 2 && b == len(e.laws)
+	if !e.few {
+		e.jac = newFactor(b)
+	}
+	e.still, e.reach, e.flow = r.sx.clone(), newDense(m, b), newDense(m, m)
 	// (I - k slope) v = px x + pu u + k w0 + k w
 	given, rest, column := newDense(d, m+q+1+b), vector(d), vector(d)
 	r.k.times(rest, e.w0)

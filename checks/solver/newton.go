@@ -40,6 +40,9 @@ func (st *stage) solve(x, u []float64, t float64) error {
 		return nil
 	}
 	if st.by != nil && st.solveBent(x, u, t) {
+		if st.by.stays() {
+			return nil
+		}
 		return st.settle()
 	}
 	err := st.attempt(x, u, t, dampFrom)
