@@ -76,6 +76,10 @@ func (p *Plan) extract(out *outcome, emit func(Stress)) {
 			continue
 		}
 		v := potential(local)
+		alternates := 0.01
+		if out.set.Nominal {
+			alternates = 1e-6
+		}
 		c.put(MeanVoltage, quantity.Volt, v, mean)
 		c.put(MinVoltage, quantity.Volt, v, smallest)
 		c.put(MaxVoltage, quantity.Volt, v, largest)
@@ -83,7 +87,7 @@ func (p *Plan) extract(out *outcome, emit func(Stress)) {
 		c.put(RipplePeakToPeak, quantity.Volt, v, swing)
 		c.put(RippleFactor, quantity.One, v, func(st solver.Stats) (float64, float64) {
 			ac, _ := alternating(st)
-			if math.Abs(st.Mean) < 1e-9+1e-6*ac { // of an alternating voltage there is none
+			if math.Abs(st.Mean) < 1e-9+alternates*ac { // of an alternating voltage there is none
 				return 0, math.NaN()
 			}
 			return ac / math.Abs(st.Mean), math.NaN()
