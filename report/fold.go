@@ -8,6 +8,9 @@ import (
 	"railproof/checks"
 )
 
+// alike is the difference of two margins that rounding may make: of equal parts the first is shown.
+const alike = 1e-6
+
 // Folded is one entry of a human report: a finding, or several that differ only in the part they are on.
 type Folded struct {
 	Finding             // the worst of them
@@ -40,7 +43,7 @@ func fold(list []Finding) []Folded {
 		o := &out[k]
 		o.Elements = append(o.Elements, f.Element)
 		o.Places = append(o.Places, f.Finding)
-		if f.Margin < o.Margin {
+		if f.Margin < o.Margin-alike {
 			o.Finding = f
 		}
 	}
