@@ -44,11 +44,11 @@ const (
 	maxEliminations = 12
 )
 
-// settle finds the elimination for the solution just found. One is made when its regions are met twice in a row.
-func (st *stage) settle() error {
+// choose finds the elimination for the solution just found. One is made when its regions are met twice in a row.
+func (st *stage) choose() {
 	st.by = nil
 	if !st.eliminates {
-		return nil
+		return
 	}
 	left := 0
 	for k := range st.r.sys.laws {
@@ -59,73 +59,32 @@ func (st *stage) settle() error {
 		}
 	}
 	if left == len(st.v) {
-		return nil
+		return
 	}
-	for _, e := range st.eliminations {
-		if slices.Equal(e.regions, st.regions) {
-			if e.sound {
-				st.by = e
-			}
-			return nil
+	at := slices.IndexFunc(st.eliminations, func(e *elimination) bool { return slices.Equal(e.regions, st.regions) })
+	if at < 0 {
+		if !slices.Equal(st.regions, st.met) {
+			copy(st.met, st.regions)
+			return
 		}
+		if len(st.eliminations) == maxEliminations {
+			st.eliminations = st.eliminations[1:]
+		}
+		at = len(st.eliminations)
+		st.eliminations = append(st.eliminations, st.eliminate())
 	}
-	if !slices.Equal(st.regions, st.met) {
-		copy(st.met, st.regions)
-		return nil
-	}
-	e, err := st.eliminate()
-	if err != nil {
-		return err
-	}
-	if len(st.eliminations) == maxEliminations {
-		st.eliminations = st.eliminations[1:]
-	}
-	st.eliminations = append(st.eliminations, e)
-	if e.sound {
+	if e := st.eliminations[at]; e.sound {
 		st.by = e
 	}
-	return nil
 }
 
 // eliminate makes the elimination for the regions of the solution just found.
-func (st *stage) eliminate() (*elimination, error) {
+func (st *stage) eliminate() *elimination {
+	e := newElimination(st)
 	r := st.r
-	m, q, d := r.px.cols, r.pu.cols, len(st.v)
-	e := &elimination{regions: slices.Clone(st.regions), slope: slices.Clone(st.slope), w0: slices.Clone(st.w), drive: make([]float64, m+q+1)}
-	e.drive[m+q] = 1
-	for k, region := range e.regions {
-		l := &r.sys.laws[k]
-		if region != 0 {
-			continue
-		}
-		e.laws = append(e.laws, bentLaw{l, len(e.ports), len(e.g)})
-		e.g = append(e.g, make([]float64, l.count*l.count)...)
-		for p := l.first; p < l.first+l.count; p++ {
-			e.ports = append(e.ports, p)
-			e.w0[p] = 0
-		}
-		clear(e.slope[l.block : l.block+l.count*l.count])
-	}
-	for k, region := range e.regions {
-		if l := &r.sys.laws[k]; region != 0 {
-			l.addSlope(e.w0, e.slope, st.v, -1)
-		}
-	}
-	b := len(e.ports)
-	room := make([]float64, 5*b+3*d)
-	vector := func(n int) []float64 {
-		v := room[:n:n]
-		room = room[n:]
-		return v
-	}
-	e.v, e.next, e.w, e.off, e.step = vector(b), vector(b), vector(b), vector(b), vector(b)
-	e.open, e.few = vector(d), b <= 2 && b == len(e.laws)
-	if !e.few {
-		e.jac = newFactor(b)
-	}
-	e.still, e.reach, e.flow = r.sx.clone(), newDense(m, b), newDense(m, m)
+	m, q, b, d := r.px.cols, r.pu.cols, len(e.ports), len(st.v)
 	// (I - k slope) v = px x + pu u + k w0 + k w
-	given, rest, column := newDense(d, m+q+1+b), vector(d), vector(d)
+	given, rest, column := newDense(d, m+q+1+b), make([]float64, d), make([]float64, d)
 	r.k.times(rest, e.w0)
 	for row := range d {
 		to := given.row(row)
@@ -138,8 +97,8 @@ func (st *stage) eliminate() (*elimination, error) {
 	}
 	jac := newFactor(d)
 	r.sys.jacobian(jac.lu, r.k, e.slope)
-	if err := jac.factorise(); err != nil {
-		return e, nil // not sound
+	if jac.factorise() != nil {
+		return e // not sound
 	}
 	all := given.clone()
 	jac.solveAll(all)
@@ -157,11 +116,43 @@ func (st *stage) eliminate() (*elimination, error) {
 		e.carry(r, c, column, rest)
 	}
 	e.lead, e.response = all.columns(0, m+q+1), all.columns(m+q+1, m+q+1+b)
-	e.own = newDense(b, b)
 	for n, p := range e.ports {
 		copy(e.own.row(n), e.response.row(p))
 	}
-	return e, nil
+	return e
+}
+
+// newElimination sorts the laws at the solution just found into those left and those eliminated, and makes room.
+func newElimination(st *stage) *elimination {
+	r := st.r
+	m, d := r.px.cols, len(st.v)
+	e := &elimination{regions: slices.Clone(st.regions), slope: slices.Clone(st.slope), w0: slices.Clone(st.w), drive: make([]float64, m+r.pu.cols+1)}
+	e.drive[len(e.drive)-1] = 1
+	for k, region := range e.regions {
+		l := &r.sys.laws[k]
+		if region != 0 {
+			l.addSlope(e.w0, e.slope, st.v, -1)
+			continue
+		}
+		e.laws = append(e.laws, bentLaw{l, len(e.ports), len(e.g)})
+		e.g = append(e.g, make([]float64, l.count*l.count)...)
+		for p := l.first; p < l.first+l.count; p++ {
+			e.ports = append(e.ports, p)
+			e.w0[p] = 0
+		}
+		clear(e.slope[l.block : l.block+l.count*l.count])
+	}
+	b := len(e.ports)
+	room := make([]float64, 5*b+d)
+	for k, v := range []*[]float64{&e.v, &e.next, &e.w, &e.off, &e.step} {
+		*v = room[k*b : (k+1)*b : (k+1)*b]
+	}
+	e.open = room[5*b:]
+	if e.few = b <= 2 && b == len(e.laws); !e.few {
+		e.jac = newFactor(b)
+	}
+	e.own, e.still, e.reach, e.flow = newDense(b, b), r.sx.clone(), newDense(m, b), newDense(m, m)
+	return e
 }
 
 // carry takes column c of lead and response, v, into account for the derivatives of the states; outputs is scratch.

@@ -40,14 +40,14 @@ func (st *stage) solve(x, u []float64, t float64) error {
 		return nil
 	}
 	if st.by != nil && st.solveBent(x, u, t) {
-		if st.by.stays() {
-			return nil
+		if !st.by.stays() {
+			st.choose()
 		}
-		return st.settle()
+		return nil
 	}
-	err := st.attempt(x, u, t, dampFrom)
-	if err == nil {
-		return st.settle()
+	if st.attempt(x, u, t, dampFrom) == nil {
+		st.choose()
+		return nil
 	}
 	// From no bias at all, every step damped.
 	for j := range st.v {
