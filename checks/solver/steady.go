@@ -10,7 +10,7 @@ import (
 // Options bounds the effort of a solution. The zero value asks for the defaults.
 type Options struct {
 	Steps    int // steps a period of the first grid; default 128
-	MaxSteps int // steps a period at which refinement ends; default 8192
+	MaxSteps int // steps a period at which refinement ends; default 16384
 	// Start holds the states at the start of the period of a neighbouring solution (Solution.States), from
 	// which the search may start; nil or of another length: ignored.
 	Start []float64
@@ -25,7 +25,7 @@ const (
 	// inductiveSteps is the first grid of a network with inductors, whose node voltages jump where a junction
 	// cuts their current off: what lies between two samples at a jump is known to one step only.
 	inductiveSteps  = 1024
-	defaultMaxSteps = 8192
+	defaultMaxSteps = 16384
 	powerFloor      = 1e-9 // W; below this the power balance is not judged
 	voltageFloor    = 1e-6 // V
 	currentFloor    = 1e-9 // A
@@ -76,8 +76,8 @@ func (s *Solution) Measure(statistic func(tr *Trajectory) float64) (value, err f
 // SteadyState finds the periodic steady state of the network, or its operating point if it has no period.
 // The step is halved until the results of two grids agree to the tolerances.
 //
-// Errors: ErrSingular, ErrNewton, ErrUnsettled and ErrInaccurate, wrapped with the place.
-// With ErrInaccurate the solution is returned too.
+// Errors: ErrSingular, ErrNewton, ErrUnsettled, that of an ended context and ErrInaccurate, wrapped with the place.
+// With ErrInaccurate the solution of the last two grids is returned too.
 func SteadyState(ctx context.Context, n *Network, o Options) (*Solution, error) {
 	if n.Period == 0 {
 		return OperatingPoint(ctx, n)
@@ -122,6 +122,9 @@ func SteadyState(ctx context.Context, n *Network, o Options) (*Solution, error) 
 				}
 				plain = plainPeriods
 				continue
+			}
+			if sol.Coarse != nil { // what two grids say is kept
+				return sol, fmt.Errorf("%w at %d steps a period %s; on the next grid: %w", ErrInaccurate, sol.Fine.Samples()-1, differs, err)
 			}
 			return nil, err
 		}

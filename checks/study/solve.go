@@ -39,7 +39,7 @@ type states map[int][]float64
 // may be coarser than those of the netlist exactly as written.
 const (
 	workingSteps    = 64
-	workingMaxSteps = 2048
+	workingMaxSteps = 4096
 )
 
 // lay builds the network of the supply in one setting and takes it apart into islands, none of them solved.
@@ -115,7 +115,7 @@ func (p *Plan) solveWith(ctx context.Context, set Setting, warm states, jobs int
 		limited, cancel := context.WithTimeout(ctx, islandTime)
 		defer cancel()
 		defer func() {
-			if ctx.Err() == nil && errors.Is(is.err, context.DeadlineExceeded) {
+			if ctx.Err() == nil && is.solution == nil && errors.Is(is.err, context.DeadlineExceeded) {
 				is.err = fmt.Errorf("no steady state was found within %v", islandTime)
 			}
 		}()
