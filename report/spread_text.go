@@ -22,6 +22,8 @@ func (s *Spread) WriteText(w io.Writer, colour bool) error {
 	l.line("")
 	l.hang("  ", "  ", "chart: trials by value, the tallest column counted; [ 5 %, m median, ] 95 % of the trials, ! the worst-case bound")
 	l.line("")
+	l.cautions()
+	l.line("")
 	s.verdict(l)
 	_, err := io.WriteString(w, l.out.String())
 	return err

@@ -21,15 +21,21 @@ type StressTable struct {
 	RailMap       []string
 	Assumptions   []checks.Assumption
 	Stresses      []study.Stress
-	Nominal       bool // the netlist exactly as written
+	Nominal       bool   // the netlist exactly as written
+	PartsVersion  string // of the parts tables
+	SharedSheet   string // path of the shared sheet that was read; empty: none
 }
 
 // NewStressTable takes the stresses out of a result.
 func NewStressTable(r *checks.Result, nominal bool) *StressTable {
-	return &StressTable{
-		File: slashed(r.File), Title: r.Title, Circumstances: r.Circumstances, RailMap: r.RailMap,
+	t := &StressTable{
+		PartsVersion: r.PartsVersion, File: slashed(r.File), Title: r.Title, Circumstances: r.Circumstances, RailMap: r.RailMap,
 		Assumptions: r.Assumptions, Stresses: r.Stresses, Nominal: nominal,
 	}
+	if r.Duty != nil && !nominal {
+		t.SharedSheet = slashed(r.Duty.SharedSheet)
+	}
+	return t
 }
 
 type jsonStressTable struct {

@@ -76,6 +76,15 @@ func (t *StressTable) WriteText(w io.Writer, colour bool) error {
 	}
 	l.hang("  ", "  ", "at: the time into the cycle at which an extremum occurs; of a cold start, the time after switch-on")
 	l.listAssumptions(f)
+	if t.PartsVersion != "" {
+		l.line("")
+		l.hang("", "", "by parts tables "+t.PartsVersion)
+	}
+	if t.SharedSheet != "" {
+		l.hang("", "", "under the shared sheet "+t.SharedSheet)
+	}
+	l.line("")
+	l.cautions()
 	_, err := io.WriteString(w, l.out.String())
 	return err
 }
