@@ -9,62 +9,101 @@ type arm struct {
 	node    NodeID // the direct-voltage end
 }
 
-// side gathers the arms that deliver at one node (feeding) or that one node returns through (draining).
+// side gathers the arms of windings that belong together which deliver at one node (feeding) or which that node returns
+// through (draining). Supplies side by side often return through the same ground.
 type side struct {
-	node NodeID
-	arms []arm
+	node  NodeID
+	group NodeID // of the windings; see railFinder.groups
+	arms  []arm
 }
 
 // clusters lists the clusters of the arms, each once, in rising order.
 func (s side) clusters() []NodeID {
 	var list []NodeID
 	for _, a := range s.arms {
-		if !slices.Contains(list, a.cluster) {
-			list = append(list, a.cluster)
-		}
+		list = append(list, a.cluster)
 	}
 	slices.Sort(list)
-	return list
+	return slices.Compact(list)
 }
 
 func (s side) diodes() []ElementID {
 	var list []ElementID
 	for _, a := range s.arms {
-		for _, d := range a.diodes {
-			if !slices.Contains(list, d) {
-				list = append(list, d)
-			}
-		}
+		list = append(list, a.diodes...)
 	}
 	slices.Sort(list)
-	return list
+	return slices.Compact(list)
 }
 
 // rectifiers finds the arrangements of the diodes at the clusters, and follows the rails behind them.
 func (f *railFinder) rectifiers() {
 	used := f.multipliers()
 	feeds, drains := f.arms(used)
-	paired := make(map[NodeID]bool)
+	inGroup := make(map[NodeID][]int)
+	for i, n := range drains {
+		inGroup[n.group] = append(inGroup[n.group], i)
+	}
+	paired := make(map[int]bool)
 	for _, p := range feeds {
 		if f.quietOnly(p) {
 			continue // a clamp or free-wheeling diode from the return
 		}
-		f.positive(p, drains, paired)
+		clusters := p.clusters()
+		at := slices.IndexFunc(inGroup[p.group], func(i int) bool { return !paired[i] && slices.Equal(drains[i].clusters(), clusters) })
+		if at < 0 {
+			f.oneSided(p, false)
+			continue
+		}
+		i := inGroup[p.group][at]
+		paired[i] = true
+		f.twoSided(p, drains[i], clusters)
 	}
-	for _, n := range drains {
-		if !paired[n.node] && !f.quietOnly(n) {
-			f.negative(n)
+	for i, n := range drains {
+		if !paired[i] && !f.quietOnly(n) {
+			f.oneSided(n, true)
 		}
 	}
 }
 
+// groups tells which clusters belong together: those that windings and sources join. It maps a cluster to the first
+// of its group.
+func (f *railFinder) groups() func(cluster NodeID) NodeID {
+	parent := make(map[NodeID]NodeID)
+	var first func(k NodeID) NodeID
+	first = func(k NodeID) NodeID {
+		for p, ok := parent[k]; ok; p, ok = parent[k] {
+			if above, ok := parent[p]; ok {
+				parent[k] = above
+			}
+			k = p
+		}
+		return k
+	}
+	for _, p := range f.ports {
+		a, b := first(f.cluster[p.plus]), first(f.cluster[p.minus])
+		if a != b {
+			parent[max(a, b)] = min(a, b)
+		}
+	}
+	return first
+}
+
 // arms collects the diodes between clusters and direct nodes, in the order of their first diode.
 func (f *railFinder) arms(used map[ElementID]bool) (feeds, drains []side) {
+	group := f.groups()
+	type place struct {
+		sides       *[]side
+		node, group NodeID
+	}
+	index := make(map[place]int)
 	add := func(sides *[]side, node NodeID, a arm) {
-		i := slices.IndexFunc(*sides, func(s side) bool { return s.node == node })
-		if i < 0 {
-			*sides = append(*sides, side{node: node})
-			i = len(*sides) - 1
+		at := place{sides, node, group(a.cluster)}
+		i, ok := index[at]
+		if !ok {
+			i = len(*sides)
+			index[at] = i
+			*sides = append(*sides, side{node: node, group: at.group})
 		}
 		(*sides)[i].arms = append((*sides)[i].arms, a)
 	}
@@ -143,16 +182,8 @@ func (f *railFinder) quietOnly(s side) bool {
 	return !slices.ContainsFunc(s.arms, func(a arm) bool { return a.cluster != f.cluster[Ground] || f.cluster[Ground] == none })
 }
 
-// positive names the arrangement that feeds a node.
-func (f *railFinder) positive(p side, drains []side, paired map[NodeID]bool) {
-	clusters := p.clusters()
-	i := slices.IndexFunc(drains, func(n side) bool { return !paired[n.node] && slices.Equal(n.clusters(), clusters) })
-	if i < 0 {
-		f.oneSided(p, false)
-		return
-	}
-	n := drains[i]
-	paired[n.node] = true
+// twoSided names the arrangement that feeds the node of p and returns through that of n, from the same clusters.
+func (f *railFinder) twoSided(p, n side, clusters []NodeID) {
 	output, back, negative := p.node, n.node, false
 	if p.node == Ground {
 		output, back, negative = n.node, p.node, true // a bridge whose plus is grounded
@@ -220,8 +251,6 @@ func (f *railFinder) doublerOrTwo(p, n side, rectifier func(Arrangement, NodeID)
 	}
 	f.follows(stages, output, far, negative)
 }
-
-func (f *railFinder) negative(n side) { f.oneSided(n, true) }
 
 // oneSided names an arrangement with diodes on one side only, and its return.
 func (f *railFinder) oneSided(s side, negative bool) {
