@@ -2,7 +2,7 @@ package netlist
 
 import "slices"
 
-// maxChains bounds the number of rails.
+// maxChains bounds the number of rails behind one rectifier or source.
 const maxChains = 64
 
 // way is how far a rail has been followed.
@@ -27,19 +27,29 @@ func (f *railFinder) follows(stages []RailStage, node, back NodeID, negative boo
 		return // a diode straight across a winding
 	}
 	w := way{stages: stages, node: node, home: back, negative: negative, seen: []NodeID{node}}
-	w.back = f.c.Reach([]NodeID{back}, func(id ElementID) bool {
-		switch d := f.c.Elements[id].Device.(type) {
-		case VoltageSource:
-			k, ok := d.Wave.(Constant)
-			return ok && k.Level == 0
-		case Resistor:
-			return d.Ohms <= smallOhms
-		}
-		return false
-	})
-	w.back = slices.DeleteFunc(w.back, func(n NodeID) bool { return n == node })
+	w.back = slices.DeleteFunc(slices.Clone(f.tiedTo(back)), func(n NodeID) bool { return n == node })
 	f.returns = append(f.returns, w.back...)
+	f.most = len(f.chains) + maxChains
 	f.walk(w)
+}
+
+// tiedTo lists the nodes that ammeters and small resistors tie to a return, and itself.
+func (f *railFinder) tiedTo(back NodeID) []NodeID {
+	tied, ok := f.tied[back]
+	if !ok {
+		tied = f.c.Reach([]NodeID{back}, func(id ElementID) bool {
+			switch d := f.c.Elements[id].Device.(type) {
+			case VoltageSource:
+				k, ok := d.Wave.(Constant)
+				return ok && k.Level == 0
+			case Resistor:
+				return d.Ohms <= smallOhms
+			}
+			return false
+		})
+		f.tied[back] = tied
+	}
+	return tied
 }
 
 // direct follows rails that begin at a direct-voltage source instead of a rectifier.
@@ -82,7 +92,7 @@ func (f *railFinder) walk(w way) {
 		f.end(w)
 	}
 	for _, next := range onward {
-		if len(f.chains) < maxChains && len(next.stages) < maxChains {
+		if len(f.chains) < f.most && len(next.stages) < maxChains {
 			f.walk(next)
 		}
 	}

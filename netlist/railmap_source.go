@@ -88,13 +88,16 @@ type railFinder struct {
 	c       *Circuit
 	d       *Duty
 	ports   []acPort
-	reach   float64  // what the sources can add up to, in V
-	cluster []NodeID // by node: the first node of its cluster, none if it is in none
+	reach   float64          // what the sources can add up to, in V
+	cluster []NodeID         // by node: the first node of its cluster, none if it is in none
+	portsAt map[NodeID][]int // by cluster, once all are known
 	inPort  map[ElementID]bool
 	chains  []RailChain
 	visited map[NodeID]bool // nodes that some chain has delivered at
 	loads   []ElementID     // what the chains end in
 	returns []NodeID        // of all chains
+	tied    map[NodeID][]NodeID
+	most    int // chains at which the present way ends
 }
 
 const none NodeID = -1
@@ -103,7 +106,7 @@ const none NodeID = -1
 const reservoirFrom = 0.47e-6
 
 func newRailFinder(c *Circuit, d *Duty) *railFinder {
-	f := &railFinder{c: c, d: d, cluster: make([]NodeID, len(c.Nodes)), inPort: make(map[ElementID]bool), visited: make(map[NodeID]bool), reach: c.sourceReach()}
+	f := &railFinder{c: c, d: d, cluster: make([]NodeID, len(c.Nodes)), inPort: make(map[ElementID]bool), visited: make(map[NodeID]bool), tied: make(map[NodeID][]NodeID), reach: c.sourceReach()}
 	for i := range f.cluster {
 		f.cluster[i] = none
 	}
@@ -248,13 +251,17 @@ func (f *railFinder) inSeries(next Neighbour) bool {
 
 // portsOf lists the ports that have a cluster as an end.
 func (f *railFinder) portsOf(cluster NodeID) []int {
-	var list []int
-	for i, p := range f.ports {
-		if f.cluster[p.plus] == cluster || f.cluster[p.minus] == cluster {
-			list = append(list, i)
+	if f.portsAt == nil {
+		f.portsAt = make(map[NodeID][]int)
+		for i, p := range f.ports {
+			a, b := f.cluster[p.plus], f.cluster[p.minus]
+			f.portsAt[a] = append(f.portsAt[a], i)
+			if b != a {
+				f.portsAt[b] = append(f.portsAt[b], i)
+			}
 		}
 	}
-	return list
+	return f.portsAt[cluster]
 }
 
 // otherEnd is the cluster at the other end of a port.

@@ -50,6 +50,38 @@ U1 VRAW 0 OUT 7812
 C2 OUT 0 100n
 RL OUT 0 20`,
 			[]string{"V1 17 V peak 50 Hz -> bridge D1..D4 at VRAW -> C1 2200 uF at VRAW -> three-terminal regulator U1 7812 at OUT -> RL"}},
+		{"a bridge, a dual rail and half-wave rectifiers of windings of their own, on one ground", `
+V1 a1 b1 SIN(0 12 50)
+D1 a1 P1 1N4007
+D2 b1 P1 1N4007
+D3 0 a1 1N4007
+D4 0 b1 1N4007
+C1 P1 0 2200u
+R1 P1 0 100
+V2 a2 b2 SIN(0 24 50)
+D5 a2 P2 1N4007
+D6 b2 P2 1N4007
+D7 0 a2 1N4007
+D8 0 b2 1N4007
+R2 P2 0 100
+V3 a3 0 SIN(0 17 50)
+V4 0 b3 SIN(0 17 50)
+D9 a3 P3 1N4007
+D10 b3 P3 1N4007
+D11 N3 a3 1N4007
+D12 N3 b3 1N4007
+R3 P3 0 100
+R4 0 N3 100
+V5 a4 0 SIN(0 35 50)
+D13 N4 a4 1N4007
+R5 0 N4 1k`,
+			[]string{
+				"V1 12 V peak 50 Hz -> bridge D1..D4 at P1 -> C1 2200 uF at P1 -> R1",
+				"V2 24 V peak 50 Hz -> bridge D5..D8 at P2 -> R2",
+				"V3 V4 17 V peak 50 Hz -> dual-rail bridge D9..D12 at P3 -> R3",
+				"V3 V4 17 V peak 50 Hz -> dual-rail bridge D9..D12 at N3 -> R4",
+				"V5 35 V peak 50 Hz -> half-wave D13 at N4 -> R5",
+			}},
 		{"bridge on a transformer whose primary shares the ground", `
 V1 line 0 SIN(0 325 50)
 RF line prim 10
