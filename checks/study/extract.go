@@ -56,7 +56,11 @@ func (p *Plan) extract(out *outcome, emit func(Stress)) {
 		c.island = &solvedIsland{err: out.failed}
 		if out.low != nil {
 			dev = out.low.devices[id]
-			if i := out.islandOf(circuit, id); i >= 0 {
+			i := out.islandOf(circuit, id)
+			if out.only != nil && !out.only[i] {
+				continue
+			}
+			if i >= 0 {
 				c.island = &out.islands[i]
 			}
 		}
@@ -69,6 +73,9 @@ func (p *Plan) extract(out *outcome, emit func(Stress)) {
 		c := &collector{plan: p, out: out, element: "node:" + circuit.Nodes[k].Name, emit: emit, cond: cond}
 		c.island = &solvedIsland{err: out.failed}
 		local := 0
+		if out.only != nil && !out.only[out.nodes[k].island] {
+			continue
+		}
 		if out.low != nil && out.nodes[k].island >= 0 {
 			c.island = &out.islands[out.nodes[k].island]
 			local = out.nodes[k].index

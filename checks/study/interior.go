@@ -22,11 +22,11 @@ const (
 // path runs through the settings between two base conditions, from 0 to 1.
 type path func(position float64) Setting
 
-// paths lists the ranges to scan: all loads together and, if they are few, each alone with the others full, at low and
-// at high line; and the line with the loads light and full.
+// paths lists the ranges to scan: all loads together and, if those of an independent part are few, each alone with its
+// others full, at low and at high line; and the line with the loads light and full.
 func (p *Plan) paths() []path {
 	var list []path
-	n := len(p.loads)
+	n, groups := len(p.loads), p.loadGroups()
 	all := func(position float64) []float64 {
 		loads := make([]float64, n)
 		for k := range loads {
@@ -43,13 +43,21 @@ func (p *Plan) paths() []path {
 		if n > 0 {
 			add(line, all)
 		}
-		for k := range n {
-			if n == 1 || n > fewLoads {
+		for j := range fewLoads {
+			var alone []int // the j-th load of every part that has a few
+			for _, members := range groups {
+				if len(members) > max(1, j) && len(members) <= fewLoads {
+					alone = append(alone, members[j])
+				}
+			}
+			if alone == nil {
 				break
 			}
 			add(line, func(position float64) []float64 {
 				loads := all(1)
-				loads[k] = position
+				for _, k := range alone {
+					loads[k] = position
+				}
 				return loads
 			})
 		}

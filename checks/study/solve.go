@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"slices"
 	"time"
 
 	"railproof/checks/solver"
@@ -21,6 +22,7 @@ type outcome struct {
 	failed  error                     // no network could be built
 	read    []Stress                  // every stress, once the waveforms are given up; see settle
 	base    int                       // index among the base conditions
+	only    map[int]bool              // the islands solved, those a shorted output takes part in; nil: all
 }
 
 // place is an island and an index in it; island -1: nowhere.
@@ -109,7 +111,13 @@ func (p *Plan) solveWith(ctx context.Context, set Setting, warm states, jobs int
 	if out.failed != nil {
 		return out
 	}
+	if set.Short != nil {
+		out.only = out.joined(p.supply.Circuit, *set.Short)
+	}
 	inParallel(len(parts), jobs, func(i int) {
+		if out.only != nil && !out.only[i] {
+			return
+		}
 		is, own := &out.islands[i], effort
 		own.Start = warm[i]
 		limited, cancel := context.WithTimeout(ctx, islandTime)
@@ -126,6 +134,20 @@ func (p *Plan) solveWith(ctx context.Context, set Setting, warm states, jobs int
 		}
 	})
 	return out
+}
+
+// joined are the island of an element and those that share a source with it.
+func (o *outcome) joined(c *netlist.Circuit, id netlist.ElementID) map[int]bool {
+	home := o.islandOf(c, id)
+	joined := map[int]bool{home: true}
+	for _, places := range o.uses {
+		if slices.ContainsFunc(places, func(p place) bool { return p.island == home }) {
+			for _, p := range places {
+				joined[p.island] = true
+			}
+		}
+	}
+	return joined
 }
 
 // settle reads every stress of the outcome and gives up the waveforms, which are large; the periodic states are

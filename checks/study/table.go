@@ -324,51 +324,6 @@ func (t *Table) addUnsolved(u UnsolvedIsland) {
 	t.Unsolved = append(t.Unsolved, u)
 }
 
-// fewLoads is up to how many loads every combination of light and full is solved.
-const fewLoads = 4
-
-// baseSettings are line low and high times every combination of loads light and full (all light and all full
-// beyond four loads), nominal line full load, and the same with regulators held for their headroom.
-func (p *Plan) baseSettings() []Setting {
-	var combinations [][]float64
-	n := len(p.loads)
-	switch {
-	case n == 0:
-		combinations = [][]float64{nil}
-	case n <= fewLoads:
-		for bits := range 1 << n {
-			loads := make([]float64, n)
-			for k := range loads {
-				loads[k] = float64(bits >> k & 1)
-			}
-			combinations = append(combinations, loads)
-		}
-	default:
-		light, full := make([]float64, n), make([]float64, n)
-		for k := range full {
-			full[k] = 1
-		}
-		combinations = [][]float64{light, full}
-		for k := range n {
-			one, rest := make([]float64, n), append([]float64(nil), full...)
-			one[k], rest[k] = 1, 0
-			combinations = append(combinations, one, rest)
-		}
-	}
-	var list []Setting
-	for _, held := range []bool{false, true} {
-		if held && !p.held() {
-			continue
-		}
-		for _, line := range []LineEnd{LineLow, LineHigh} {
-			for _, loads := range combinations {
-				list = append(list, Setting{Line: line, Loads: loads, Held: held})
-			}
-		}
-	}
-	return list
-}
-
 // solveBase solves the base conditions on several cores, those with held regulators from the others; the outcomes are in
 // the order of the settings and do not depend on the number of jobs.
 func (p *Plan) solveBase(ctx context.Context, jobs int) []*outcome {
