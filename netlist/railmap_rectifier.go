@@ -70,8 +70,7 @@ func (f *railFinder) rectifiers() {
 // of its group.
 func (f *railFinder) groups() func(cluster NodeID) NodeID {
 	parent := make(map[NodeID]NodeID)
-	var first func(k NodeID) NodeID
-	first = func(k NodeID) NodeID {
+	first := func(k NodeID) NodeID {
 		for p, ok := parent[k]; ok; p, ok = parent[k] {
 			if above, ok := parent[p]; ok {
 				parent[k] = above
