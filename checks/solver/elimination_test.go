@@ -68,7 +68,7 @@ func drawSupply(t *rapid.T) (n *Network, amplitude float64) {
 
 // A period steps to the same state, with the same derivatives, whether or not laws are eliminated.
 func TestEliminationChangesNothing(t *testing.T) {
-	used := 0
+	used, unsolved, compared := 0, 0, 0
 	rapid.Check(t, func(t *rapid.T) {
 		n, amplitude := drawSupply(t)
 		sys, err := newSystem(n)
@@ -86,7 +86,8 @@ func TestEliminationChangesNothing(t *testing.T) {
 		without.stage.eliminates = false
 		for period := range 3 {
 			if err := without.period(context.Background(), 0, steps, true, nil, false); err != nil {
-				t.Skip(err)
+				unsolved++ // with elimination it may be; there is nothing to compare
+				return
 			}
 			if err := with.period(context.Background(), 0, steps, true, nil, false); err != nil {
 				t.Fatalf("with elimination alone: %v", err)
@@ -103,8 +104,9 @@ func TestEliminationChangesNothing(t *testing.T) {
 			}
 		}
 		used += len(with.stage.eliminations)
+		compared++
 	})
-	if used == 0 {
-		t.Error("nothing was eliminated")
+	if used == 0 || unsolved > compared/20 {
+		t.Errorf("%d eliminations; %d of %d supplies could not be stepped at all", used, unsolved, unsolved+compared)
 	}
 }

@@ -195,23 +195,8 @@ func (m dense) row(r int) []float64 { return m.data[r*m.cols : (r+1)*m.cols] }
 
 // times sets y = m x.
 func (m dense) times(y, x []float64) {
-	if m.rows >= blockedFrom {
-		for r := range y {
-			y[r] = 0
-		}
-		m.addTo(y, x)
-		return
-	}
-	n, data := len(x), m.data
-	for r := range y {
-		sum := 0.0
-		row := data[:n:n]
-		data = data[n:]
-		for c, v := range x {
-			sum += row[c] * v
-		}
-		y[r] = sum
-	}
+	clear(y)
+	m.addTo(y, x)
 }
 
 // addTo adds m x to y.
